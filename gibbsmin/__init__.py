@@ -1,0 +1,1 @@
+"""gibbsmin: equilibrium and speciation by Gibbs energy minimization."""

@@ -1,0 +1,1 @@
+"""Species: records, standard-state functions, the database and its data files."""
