@@ -1,0 +1,112 @@
+"""Compilation of numerical functions, and where the compiled code is kept.
+
+numba stamps a cached function by its own file only, so a change in a function that it calls would go unseen. The
+cache folder is therefore named after the contents of every file that holds compiled code, and after the versions
+of Python, numba and numpy. The package itself may be read-only: the folder lies in the user's cache, or, where
+that cannot be written, in a private temporary folder.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import os
+import platform
+import stat
+import sys
+import tempfile
+import threading
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from functools import cache, wraps
+from pathlib import Path
+from typing import Any, TypeVar, cast
+
+import numba
+import numpy as np
+
+Function = TypeVar("Function", bound=Callable[..., Any])
+
+_LOCK = threading.RLock()
+_PACKAGE = Path(__file__).parent
+_SOURCES = ("compiled.py", "species/polynomial.py", "species/table.py", "solver/*.py")
+
+
+def compiled(function: Function) -> Function:
+    """Compile an entry point on its first call from Python; it runs without the global lock and is cached on disk."""
+    with _settings():
+        dispatcher = numba.njit(cache=True, nogil=True, error_model="numpy", no_cfunc_wrapper=True)(function)
+
+    @wraps(function)
+    def call(*arguments: Any) -> Any:
+        if dispatcher.signatures:
+            return dispatcher(*arguments)
+        with _settings():
+            return dispatcher(*arguments)
+
+    return cast(Function, call)
+
+
+@contextmanager
+def _settings() -> Iterator[None]:
+    """Compile into our own cache, with the light optimization: unrolling makes the solver's short loops slower.
+
+    Measured on 53 species of 5 elements: 11.8 microseconds a state against 16.6 with numba's default, and a
+    compilation that is shorter by a tenth.
+    """
+    with _LOCK:
+        config = numba.config
+        before = config.CACHE_DIR, config.OPT
+        config.CACHE_DIR, config.OPT = str(cache_folder()), type(config.OPT)(1)
+        try:
+            yield
+        finally:
+            config.CACHE_DIR, config.OPT = before
+
+
+def inlined(function: Function) -> Function:
+    """Compile a part of an entry point: it is called from compiled code only, and cached with its caller."""
+    wrapped: Function = numba.njit(nogil=True, error_model="numpy", no_cpython_wrapper=True, no_cfunc_wrapper=True)(
+        function
+    )
+    return wrapped
+
+
+@cache
+def cache_folder() -> Path:
+    """Folder that holds the compiled code of this very version of the sources."""
+    digest = hashlib.sha256(f"{sys.version}{numba.__version__}{np.__version__}{platform.processor()}".encode())
+    for pattern in _SOURCES:
+        for path in sorted(_PACKAGE.glob(pattern)):
+            digest.update(path.read_bytes())
+    name = digest.hexdigest()[:16]
+    for base in _bases():
+        folder = base / name
+        try:
+            folder.mkdir(parents=True, exist_ok=True)
+        except OSError:
+            continue
+        if _private(folder):
+            return folder
+    return Path(tempfile.mkdtemp(prefix="gibbsmin-"))
+
+
+def cache_is_cold() -> bool:
+    """Tell whether the next solution must first compile the solver."""
+    return next(cache_folder().rglob("*.nbi"), None) is None
+
+
+def _bases() -> list[Path]:
+    """Folders to try, best first."""
+    home = os.environ.get("XDG_CACHE_HOME") or os.environ.get("LOCALAPPDATA") or os.path.expanduser("~/.cache")
+    user = os.getuid() if hasattr(os, "getuid") else os.environ.get("USERNAME", "user")
+    return [Path(home) / "gibbsmin", Path(tempfile.gettempdir()) / f"gibbsmin-{user}"]
+
+
+def _private(folder: Path) -> bool:
+    """Compiled code is run when it is loaded: take it only from a writable folder that nobody else can write."""
+    if not os.access(folder, os.W_OK):
+        return False
+    if not hasattr(os, "getuid"):
+        return True
+    status = folder.stat()
+    return status.st_uid == os.getuid() and not status.st_mode & (stat.S_IWGRP | stat.S_IWOTH)

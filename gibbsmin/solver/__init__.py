@@ -1,0 +1,40 @@
+"""The minimizer: arrays in, arrays out, compiled. It knows nothing of names, units or files.
+
+The problem
+-----------
+Indices: i element, j species, c pure condensed species. Symbols: A (m, S) atoms of i in j; b (m,) element amounts
+[mol]; n (S,) amounts [mol]; g (S,) standard potentials G°/RT, for a gas with ln(P/P°) added [-]; lam (m,) element
+potentials [-]. One ideal gas and any number of pure condensed species:
+
+    min  sum_j n_j mu_j/RT   with   A n = b,  n >= 0                                                        (1)
+         mu_j/RT = g_j + ln(n_j/N) in the gas, N its amount;  mu_c/RT = g_c
+
+is White, Johnson & Dantzig's problem (J. Chem. Phys. 28 (1958) 751). Its dual is a geometric programme (Duffin,
+Peterson & Zener, Geometric Programming, Wiley 1967) in lam only:
+
+    max  b.lam   with   a_c.lam <= g_c                             for every condensed species              (2)
+                        X(lam) = sum_gas exp(a_j.lam - g_j) <= 1   for the gas                              (3)
+
+Both are convex. The multipliers of (2) and (3) are the amounts of the condensed species and of the gas, and
+ln x_j = a_j.lam - g_j for every gas species, however rare. A pair (n, lam) that satisfies all constraints with
+sum_j n_j mu_j/RT = b.lam is the global minimum: that is what a certificate states.
+
+How it is solved
+----------------
+Coordinates. A basis of r = rank(A) species with B = A[:, basis]; nu_j = B^-1 a_j, y the logarithms of the activities
+of the basis species, u_j = nu_j.y - d_j the logarithm of the activity of species j, d_j = g_j - nu_j.g_B,
+c = B^-1 b. At the end lam = B^-T (g_B + y). Large numbers cancel once, in d, and not in every step.      (4)
+
+Basis. Condensed species that are present are always in the basis: their y is zero and their amount is what the
+gas leaves of c. What remains is Newton's method in the other coordinates ("free") and ln N:
+
+    F_i = sum_gas nu_ij n_j - c_i = 0  for free i,   ln X = 0,   n_j = N exp(u_j)                           (5)
+
+    [ H    s ] [dy   ]   [ -F        ]     H = sum_gas n_j nu_j nu_j^T,  s = sum_gas n_j nu_j
+    [ s^T  0 ] [dlnN ] = [ -N X ln X ]                                                                      (6)
+
+Files, in the order in which they are used: `layout` (the arrays), `simplex` (the basis of the linear programme, each
+species taken as a pure phase: a start that has the right condensed species in most cases), `basis` (coordinates and
+their exchange), `gas` (activities and balances), `newton` (5, 6), `phase_set` (which condensed species are present,
+and whether there is a gas), `certificate`, `minimize` (one state, many states), `status` (what an outcome means).
+"""

@@ -1,0 +1,50 @@
+"""Coordinates relative to a basis of species, eq. (4), and the exchange of one basis species for another."""
+
+from __future__ import annotations
+
+from typing import Any, Final
+
+from gibbsmin.compiled import inlined
+from gibbsmin.solver.layout import K, Work
+
+DUST: Final = 1.0e-12  # coordinates are small fractions; what is smaller is rounding
+NOISE: Final = 1.0e-15  # rounding of B^-1 b, relative to the sum of its terms
+
+
+@inlined
+def replace(place: int, j: int, b: Any, w: Work) -> None:
+    """Put candidate ``j`` into ``place`` of the basis; activities stay as they are, coordinates change.
+
+    With t = nu_k[place] / nu_j[place]: nu_k -> nu_k - t nu_j (t itself at ``place``), d_k -> d_k - t d_j. The rows
+    of B^-1 change alike, and c = B^-1 b is made afresh; what is only rounding in it becomes zero, so that exact
+    stoichiometry stays exact.
+    """
+    m = w.c.size
+    activity = -w.d[j]
+    for i in range(m):
+        w.right[i] = w.nu[j, i]
+        activity += w.nu[j, i] * w.y[i]
+    w.y[place] = activity
+    w.basis[place] = j
+    pivot, shift = w.right[place], w.d[j]
+    for k in range(w.count[K]):
+        t = w.nu[k, place] / pivot
+        if t != 0.0:
+            for i in range(m):
+                value = w.nu[k, i] - t * w.right[i]
+                w.nu[k, i] = value if abs(value) > DUST else 0.0
+            w.nu[k, place] = t
+            w.d[k] -= t * shift
+    for i in range(m):
+        w.nu[j, i] = 0.0
+        w.inverse[place, i] /= pivot
+    w.nu[j, place] = 1.0
+    w.d[j] = 0.0
+    for i in range(m):
+        total = terms = 0.0
+        for k in range(m):
+            if i != place:
+                w.inverse[i, k] -= w.right[i] * w.inverse[place, k]
+            total += w.inverse[i, k] * b[k]
+            terms += abs(w.inverse[i, k] * b[k])
+        w.c[i] = total if abs(total) > NOISE * m * terms else 0.0

@@ -1,0 +1,77 @@
+"""The arrays that the solver works in, allocated once for a whole batch of states."""
+
+from __future__ import annotations
+
+from typing import Any, Final, NamedTuple
+
+import numpy as np
+
+from gibbsmin.compiled import inlined
+
+# kind[i]: what coordinate i of the basis is
+FREE: Final = 0  # its activity is unknown
+PRESENT: Final = 1  # a condensed species that is present: its activity is one, its amount is unknown
+IDLE: Final = 2  # a row of A that depends on the others
+EMPTY: Final = 3  # nothing can hold it: c is zero and no species takes it back; its activity is next to nothing
+
+# count[...]
+K: Final = 0  # candidate species
+G: Final = 1  # of which the first G are gas
+GAS: Final = 2  # 1 where a gas is present
+STEPS: Final = 3  # Newton steps so far
+CHANGES: Final = 4  # changes of the phase set so far
+JOIN: Final = 5  # candidate that the next change puts into the basis
+
+# value[...]
+N: Final = 0  # amount of gas, mol (1 where there is none: the incipient gas)
+X: Final = 1  # sum of exp(u) over the gas
+
+
+class Work(NamedTuple):
+    """Arrays of one state; S species, m elements. Rows beyond the candidates in use hold nothing."""
+
+    count: Any  # (6,) int, see above
+    value: Any  # (2,) see above
+    species: Any  # (S,) int, number of each candidate
+    nu: Any  # (S, m) coordinates of each candidate, eq. (4)
+    d: Any  # (S,)
+    u: Any  # (S,) ln activity
+    n: Any  # (S,) mol, gas candidates
+    atoms: Any  # (S,) atoms in a formula unit, for scaling
+    inverse: Any  # (m, m) B^-1
+    basis: Any  # (m,) int, candidate in each place, or -1
+    kind: Any  # (m,) int
+    c: Any  # (m,) mol
+    y: Any  # (m,)
+    supply: Any  # (m,) sum over the gas of nu n where nu > 0, mol
+    demand: Any  # (m,) c plus the sum of |nu| n where nu < 0, mol
+    matrix: Any  # (m + 1, m + 1) eq. (6)
+    right: Any  # (m + 1,)
+    step: Any  # (m + 1,)
+    free: Any  # (m,) int, the free coordinates
+
+
+@inlined
+def new_work(S: int, m: int) -> Work:
+    """Allocate the arrays for ``S`` species and ``m`` elements."""
+    return Work(
+        np.zeros(6, np.int64),
+        np.zeros(2),
+        np.zeros(S, np.int64),
+        np.zeros((S, m)),
+        np.zeros(S),
+        np.zeros(S),
+        np.zeros(S),
+        np.zeros(S),
+        np.zeros((m, m)),
+        np.zeros(m, np.int64),
+        np.zeros(m, np.int64),
+        np.zeros(m),
+        np.zeros(m),
+        np.zeros(m),
+        np.zeros(m),
+        np.zeros((m + 1, m + 1)),
+        np.zeros(m + 1),
+        np.zeros(m + 1),
+        np.zeros(m, np.int64),
+    )

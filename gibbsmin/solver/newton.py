@@ -1,0 +1,135 @@
+"""Newton's method in the free coordinates and ln N for a fixed set of phases, eqs. (5) and (6)."""
+
+from __future__ import annotations
+
+from typing import Any, Final
+
+import numpy as np
+
+from gibbsmin.compiled import inlined
+from gibbsmin.solver.layout import FREE, GAS, G, N, Work, X
+
+MAJOR: Final = 1.0e-3  # a species above this share of the gas changes by no more than ...
+CHANGE: Final = 2.0  # ... this in ln n a step; a rarer one comes up to exp(-CHANGE) of the gas at most
+
+
+@inlined
+def newton_error(w: Work) -> float:
+    """Largest relative imbalance of a free coordinate, and of the sum of mole fractions."""
+    error = abs(np.log(w.value[X])) if w.count[GAS] == 1 else 0.0
+    for i in range(w.c.size):
+        if w.kind[i] == FREE:
+            scale = max(w.supply[i], w.demand[i])
+            if scale > 0.0:
+                error = max(error, abs(w.supply[i] - w.demand[i]) / scale)
+    return error
+
+
+@inlined
+def assemble(w: Work) -> int:
+    """Set up eq. (6), scaled to a diagonal of one; return the number of free coordinates."""
+    f = 0
+    for i in range(w.c.size):
+        if w.kind[i] == FREE:
+            w.free[f] = i
+            f += 1
+    for p in range(f + 1):
+        for q in range(f + 1):
+            w.matrix[p, q] = 0.0
+    for j in range(w.count[G]):
+        n = w.n[j]
+        if n == 0.0:
+            continue
+        for p in range(f):
+            nu = w.nu[j, w.free[p]]
+            if nu != 0.0:
+                flow = n * nu
+                w.matrix[p, f] += flow
+                for q in range(p + 1):
+                    w.matrix[p, q] += flow * w.nu[j, w.free[q]]
+    for p in range(f):
+        i = w.free[p]
+        w.right[p] = w.demand[i] - w.supply[i]
+        w.step[p] = 1.0 / np.sqrt(w.matrix[p, p]) if w.matrix[p, p] > 0.0 else 0.0
+    amount = w.value[N] * w.value[X]
+    w.right[f] = -amount * np.log(w.value[X])
+    w.step[f] = 1.0 / np.sqrt(amount)
+    for p in range(f + 1):
+        w.right[p] *= w.step[p]
+        for q in range(p):
+            w.matrix[q, p] = w.matrix[p, q] = scaled(p, q, f, w) * w.step[p] * w.step[q]
+    for p in range(f):
+        w.matrix[p, p] = 1.0
+    if w.count[GAS] == 0:
+        w.matrix[f, :f] = 0.0
+        w.matrix[:f, f] = 0.0
+        w.right[f] = 0.0
+    w.matrix[f, f] = 0.0 if w.count[GAS] == 1 else 1.0
+    return f
+
+
+@inlined
+def scaled(p: int, q: int, f: int, w: Work) -> float:
+    """Entry of the lower triangle as it was summed: the border was gathered in the last column."""
+    return float(w.matrix[q, f] if p == f else w.matrix[p, q])
+
+
+@inlined
+def solve(matrix: Any, right: Any, size: int) -> bool:
+    """Solve in place by elimination with partial pivoting; False if the matrix is singular to rounding."""
+    for k in range(size):
+        best, row = abs(matrix[k, k]), k
+        for i in range(k + 1, size):
+            if abs(matrix[i, k]) > best:
+                best, row = abs(matrix[i, k]), i
+        if best < 1.0e-15:
+            return False
+        if row != k:
+            for q in range(k, size):
+                matrix[k, q], matrix[row, q] = matrix[row, q], matrix[k, q]
+            right[k], right[row] = right[row], right[k]
+        for i in range(k + 1, size):
+            factor = matrix[i, k] / matrix[k, k]
+            if factor != 0.0:
+                for q in range(k + 1, size):
+                    matrix[i, q] -= factor * matrix[k, q]
+                right[i] -= factor * right[k]
+    for k in range(size - 1, -1, -1):
+        total = right[k]
+        for q in range(k + 1, size):
+            total -= matrix[k, q] * right[q]
+        right[k] = total / matrix[k, k]
+    return True
+
+
+@inlined
+def step_length(f: int, w: Work) -> float:
+    """Fraction of the step in ``w.right`` that may be taken."""
+    alpha, rise = 1.0, w.right[f]
+    floor = MAJOR * w.value[X]
+    for j in range(w.count[G]):
+        change = rise
+        for p in range(f):
+            change += w.nu[j, w.free[p]] * w.right[p]
+        if np.exp(min(w.u[j], 0.0)) > floor:
+            if abs(change) * alpha > CHANGE:
+                alpha = CHANGE / abs(change)
+        elif change * alpha + w.u[j] > -CHANGE:
+            alpha = max((-CHANGE - w.u[j]) / change, 1.0e-3)
+    return alpha
+
+
+@inlined
+def newton_step(w: Work) -> bool:
+    """Take one step; False if eq. (6) is singular."""
+    f = assemble(w)
+    if not solve(w.matrix, w.right, f + 1):
+        return False
+    for p in range(f + 1):
+        w.right[p] *= w.step[p]
+    alpha = step_length(f, w)
+    for p in range(f):
+        w.y[w.free[p]] += alpha * w.right[p]
+    if w.count[GAS] == 1:
+        w.value[N] *= np.exp(alpha * w.right[f])
+    return True

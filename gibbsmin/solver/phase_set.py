@@ -1,0 +1,222 @@
+"""Which condensed species are present, and whether there is a gas.
+
+Two things stay true: condensed species that are present stand in the basis (so that their number never exceeds what
+the phase rule allows), and every change is a step of the simplex method, with the gas as one more column whose
+composition is the present one. The functions here find the change; `minimize` carries it out: candidate
+``w.count[JOIN]`` goes into a place of the basis and becomes present (a condensed species) or free (a gas species).
+"""
+
+from __future__ import annotations
+
+from typing import Final
+
+import numpy as np
+
+from gibbsmin.compiled import inlined
+from gibbsmin.solver.gas import present_amount
+from gibbsmin.solver.layout import EMPTY, FREE, GAS, IDLE, JOIN, PRESENT, G, K, N, Work, X
+
+APPEARS: Final = 1.0e-11  # ln activity above which an absent phase joins
+VANISHES: Final = 1.0e-14  # share of its coordinate's turnover below which an amount is rounding
+NOTHING: Final = -3000.0  # ln activity of what cannot be held at all
+START: Final = -20.0  # first ln activity of a free species of which there is none at first
+ENTRY: Final = 1.0e-9  # smallest coordinate that can be divided by
+
+NONE: Final = -1
+STUCK: Final = -2
+
+
+@inlined
+def start_phases(w: Work) -> None:
+    """Set kinds and first activities from the simplex basis."""
+    amount = 0.0
+    for i in range(w.c.size):
+        w.y[i] = 0.0
+        w.c[i] = max(w.c[i], 0.0)
+        if w.kind[i] != IDLE:
+            w.kind[i] = PRESENT if w.basis[i] >= w.count[G] and w.c[i] > 0.0 else FREE
+            amount += w.c[i] if w.kind[i] == FREE else 0.0
+    set_gas(amount, w)
+    for i in range(w.c.size):
+        if w.kind[i] == FREE:
+            w.y[i] = np.log(w.c[i] / amount) if w.c[i] > 0.0 else START
+    changed = True
+    while changed:
+        changed = False
+        for i in range(w.c.size):
+            if w.kind[i] == FREE and w.c[i] == 0.0 and not taken_back(i, w):
+                w.kind[i], w.y[i] = EMPTY, NOTHING
+                changed = True
+
+
+@inlined
+def taken_back(i: int, w: Work) -> bool:
+    """Tell whether some species balances coordinate ``i``, of which there is none; if not, all its holders are absent."""
+    for j in range(w.count[K]):
+        if w.nu[j, i] < 0.0:
+            possible = True
+            for k in range(w.c.size):
+                possible &= not (w.kind[k] == EMPTY and w.nu[j, k] > 0.0)
+            if possible:
+                return True
+    return False
+
+
+@inlined
+def set_gas(amount: float, w: Work) -> None:
+    """Declare a gas of ``amount`` [mol], or the incipient gas where that is zero."""
+    w.count[GAS] = 1 if amount > 0.0 else 0
+    w.value[N] = amount if amount > 0.0 else 1.0
+
+
+@inlined
+def gas_for(i: int, w: Work) -> int:
+    """Gas species that holds most of coordinate ``i`` at the present activities, NONE if none does."""
+    best, found = 0.0, NONE
+    for j in range(w.count[G]):
+        share = abs(w.nu[j, i])
+        if share > ENTRY:
+            share *= np.exp(max(min(w.u[j], 0.0), -600.0))
+            if share > best:
+                best, found = share, j
+    return found
+
+
+@inlined
+def saturating(i: int, w: Work) -> int:
+    """Condensed candidate that takes up what the gas cannot balance in coordinate ``i``; moves y_i to where it saturates.
+
+    Supply without demand lowers y_i until a species with nu < 0 saturates, demand without supply raises it until one
+    with nu > 0 does.
+    """
+    sign = -1.0 if w.supply[i] > 0.0 else 1.0
+    best, found = np.inf, NONE
+    for j in range(w.count[G], w.count[K]):
+        nu = sign * w.nu[j, i]
+        if nu > ENTRY and -w.u[j] / nu < best:
+            best, found = -w.u[j] / nu, j
+    if found != NONE:
+        w.y[i] += sign * best
+    return found
+
+
+@inlined
+def place_for(k: int, w: Work) -> int:
+    """Free place for condensed ``k``: that of least turnover, so that major species stay in the basis; NONE if none."""
+    best, found = np.inf, NONE
+    for i in range(w.c.size):
+        if w.kind[i] == FREE and abs(w.nu[k, i]) > ENTRY:
+            turnover = max(w.supply[i], w.demand[i]) / abs(w.nu[k, i])
+            if turnover < best:
+                best, found = turnover, i
+    return found
+
+
+@inlined
+def gas_ends(k: int, place: int, w: Work) -> bool:
+    """Tell whether no gas could stay if ``k`` took ``place``: no free coordinate would hold anything."""
+    t = w.c[place] / w.nu[k, place]
+    for i in range(w.c.size):
+        if w.kind[i] == FREE and i != place:
+            left = w.c[i] - t * w.nu[k, i]
+            if abs(left) > VANISHES * (abs(w.c[i]) + abs(t * w.nu[k, i])):
+                return False
+    return True
+
+
+@inlined
+def first_used_up(k: int, alpha: float, w: Work) -> int:
+    """Place of the condensed species that is used up first as ``k`` grows; NONE if the gas is, STUCK if nothing is.
+
+    One mole of ``k`` takes ``alpha`` mol of gas (composition s, N s = c - amounts) and nu_k - alpha s of the condensed.
+    """
+    best, found = np.inf, STUCK
+    if alpha > 0.0:
+        best, found = w.value[N] / alpha, NONE
+    for i in range(w.c.size):
+        if w.kind[i] == PRESENT:
+            amount = present_amount(i, w)
+            taken = w.nu[k, i] - alpha * (w.c[i] - amount) / w.value[N]
+            if taken > ENTRY and max(amount, 0.0) / taken < best:
+                best, found = max(amount, 0.0) / taken, i
+    if found >= 0 and alpha != 0.0:
+        w.value[N] = max(w.value[N] - alpha * best, 1.0e-30)
+    return found
+
+
+@inlined
+def place_of_join(k: int, w: Work) -> int:
+    """Place that condensed candidate ``k`` takes; STUCK if nothing limits its growth."""
+    place = place_for(k, w)
+    if place == NONE:
+        return first_used_up(k, 0.0, w)
+    if w.count[GAS] == 0 or not gas_ends(k, place, w):
+        return place
+    used = first_used_up(k, w.nu[k, place] * w.value[N] / w.c[place], w)
+    if used == NONE:
+        set_gas(0.0, w)
+    elif used >= 0:
+        if abs(w.nu[k, used]) > ENTRY:
+            return used
+        w.kind[used] = FREE
+    return place if used != STUCK else STUCK
+
+
+@inlined
+def place_of_gas(w: Work) -> int:
+    """Place of the condensed species that the incipient gas uses up first as it grows; STUCK if there is none."""
+    best, found = np.inf, STUCK
+    for i in range(w.c.size):
+        if w.kind[i] == PRESENT:
+            taken = 0.0
+            for j in range(w.count[G]):
+                taken += w.nu[j, i] * w.n[j]
+            taken /= w.value[X]
+            if taken > ENTRY and w.c[i] / taken < best:
+                best, found = w.c[i] / taken, i
+    if found != STUCK:
+        set_gas(max(best, 1.0e-30), w)
+    return found
+
+
+@inlined
+def leaving_phase(error: float, w: Work) -> int:
+    """Place of the condensed species whose amount is most negative, NONE if none is beyond ``error``."""
+    worst, found = 0.0, NONE
+    for i in range(w.c.size):
+        if w.kind[i] == PRESENT:
+            turnover = max(w.supply[i], w.demand[i])
+            amount = present_amount(i, w)
+            if amount < -(VANISHES + 10.0 * error) * turnover and amount / turnover < worst:
+                worst, found = amount / turnover, i
+    return found
+
+
+@inlined
+def wanted_change(error: float, w: Work) -> int:
+    """Find the one change that is most wanted: the place where candidate ``w.count[JOIN]`` goes in; NONE, or STUCK.
+
+    ``error`` is that of the Newton iteration: what lies within it decides nothing.
+    """
+    place = NONE
+    for i in range(w.c.size):
+        if w.kind[i] == FREE and w.basis[i] >= w.count[G]:
+            w.count[JOIN] = gas_for(i, w)
+            if w.count[JOIN] != NONE:
+                return i
+    place = leaving_phase(error, w)
+    if place == NONE:
+        worst = APPEARS + 10.0 * error
+        for k in range(w.count[G], w.count[K]):
+            if w.u[k] / w.atoms[k] > worst:
+                worst, w.count[JOIN], place = w.u[k] / w.atoms[k], k, 0
+        if place != NONE:
+            return place_of_join(w.count[JOIN], w)
+        absent = w.count[GAS] == 0 and w.count[G] > 0
+        if not absent or np.log(w.value[X]) < APPEARS + 10.0 * error:
+            return NONE
+        place = place_of_gas(w)
+    if place != STUCK:
+        w.kind[place] = FREE
+        w.count[JOIN] = gas_for(place, w)
+    return place

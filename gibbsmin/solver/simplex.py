@@ -1,0 +1,169 @@
+"""A starting basis: the linear programme min g.n, A n = b, n >= 0, in which every species is a pure phase.
+
+Simplex method (Dantzig, Linear Programming and Extensions, Princeton 1963) in the coordinates of `basis`, where d_j is
+the price of species j; started from artificial columns of high cost. Prices are taken per atom, so that large molecules
+are not preferred; Bland's rule (Math. Oper. Res. 2 (1977) 103) after a run of degenerate steps.
+"""
+
+from __future__ import annotations
+
+from typing import Any, Final
+
+import numpy as np
+
+from gibbsmin.compiled import inlined
+from gibbsmin.solver.basis import replace
+from gibbsmin.solver.layout import FREE, IDLE, G, K, Work
+
+ARTIFICIAL: Final = 1.0e6  # cost of an artificial column; potentials lie below 1e4 an atom
+PRICE: Final = 1.0e-7
+PIVOT: Final = 1.0e-9
+LACK: Final = 1.0e-11  # share of an element that may be left over by rounding
+
+
+@inlined
+def select_candidates(A: Any, gas: Any, b: Any, g: Any, w: Work) -> None:
+    """Gather the species that can be present at all, gas first; ``g`` becomes inf for the others.
+
+    ``A`` (S, m), ``gas`` (S,) bool, ``b`` (m,), ``g`` (S,) with inf for a species that is no candidate. A species
+    leaves when it holds an element of which there is none, or charge of a sign that nothing balances.
+    """
+    S, m = A.shape
+    changed = True
+    while changed:
+        changed = False
+        for i in range(m):
+            positive = negative = b[i] != 0.0
+            for j in range(S):
+                if g[j] != np.inf:
+                    positive |= A[j, i] > 0.0
+                    negative |= A[j, i] < 0.0
+            if positive != negative:
+                changed = True
+                for j in range(S):
+                    if A[j, i] != 0.0:
+                        g[j] = np.inf
+    k = 0
+    for phase in range(2):
+        for j in range(S):
+            if g[j] != np.inf and gas[j] == (phase == 0):
+                w.species[k] = j
+                total = 0.0
+                for i in range(m):
+                    total += abs(A[j, i])
+                w.atoms[k] = max(total, 1.0e-3)
+                k += 1
+        if phase == 0:
+            w.count[G] = k
+    w.count[K] = k
+
+
+@inlined
+def start_basis(A: Any, b: Any, g: Any, w: Work) -> None:
+    """Begin with one artificial column for each element, of the sign of b."""
+    m = b.size
+    for i in range(m):
+        for k in range(m):
+            w.inverse[i, k] = 0.0
+        w.inverse[i, i] = -1.0 if b[i] < 0.0 else 1.0
+        w.basis[i], w.kind[i] = -1, FREE
+        w.c[i], w.y[i] = abs(b[i]), 0.0
+    for k in range(w.count[K]):
+        total = 0.0
+        for i in range(m):
+            w.nu[k, i] = w.inverse[i, i] * A[w.species[k], i]
+            total += w.nu[k, i]
+        w.d[k] = g[w.species[k]] - ARTIFICIAL * total
+
+
+@inlined
+def entering(bland: bool, w: Work) -> int:
+    """Return the candidate with the lowest price per atom, -1 if none is negative."""
+    best, found = -PRICE, -1
+    for j in range(w.count[K]):
+        price = w.d[j] / w.atoms[j]
+        if price < best:
+            best, found = price, j
+            if bland:
+                break
+    return found
+
+
+@inlined
+def leaving(j: int, bland: bool, w: Work) -> int:
+    """Return the place that candidate ``j`` empties first, -1 if none."""
+    best, found = np.inf, -1
+    for i in range(w.c.size):
+        entry = w.nu[j, i]
+        if entry > PIVOT:
+            ratio = max(w.c[i], 0.0) / entry
+            better = ratio < best
+            if ratio == best:
+                better = w.basis[i] < w.basis[found] if bland else entry > w.nu[j, found]
+            if better:
+                best, found = ratio, i
+    return found
+
+
+@inlined
+def real_for(place: int, w: Work) -> int:
+    """Candidate that can take the place of an artificial column of amount zero, -1 if none: a dependent row."""
+    best, found = PIVOT, -1
+    for j in range(w.count[K]):
+        if abs(w.nu[j, place]) > best:
+            best, found = abs(w.nu[j, place]), j
+    return found
+
+
+@inlined
+def optimal_basis(A: Any, b: Any, g: Any, w: Work) -> bool:
+    """Run the simplex method; False if the candidates cannot hold b (or it does not end)."""
+    m = b.size
+    start_basis(A, b, g, w)
+    stalled, artificial = 0, 0
+    for _ in range(200 + 60 * m):
+        bland = stalled > 2 * m + 10
+        j = entering(bland, w)
+        if j >= 0:
+            place = leaving(j, bland, w)
+        else:
+            while artificial < m and (w.basis[artificial] >= 0 or w.kind[artificial] == IDLE):
+                artificial += 1
+            if artificial == m:
+                return True
+            place = artificial
+            j = real_for(place, w)
+            scale = 0.0
+            for i in range(m):
+                scale = max(scale, abs(w.inverse[place, i] * b[i]))
+            if w.c[place] > LACK * scale:
+                return False
+            if j < 0:
+                w.kind[place] = IDLE
+                continue
+        if place < 0:
+            return False
+        stalled = stalled + 1 if w.c[place] <= 0.0 else 0
+        replace(place, j, b, w)
+    return False
+
+
+@inlined
+def exact_prices(g: Any, w: Work) -> None:
+    """Make d_j = g_j - nu_j.g_B afresh, free of the artificial costs, and nu zero in dependent rows."""
+    m = w.c.size
+    for i in range(m):
+        idle = w.kind[i] == IDLE
+        w.right[i] = 0.0 if idle else g[w.species[w.basis[i]]]
+        if idle:
+            w.c[i] = 0.0
+            for k in range(w.count[K]):
+                w.nu[k, i] = 0.0
+    for k in range(w.count[K]):
+        total = g[w.species[k]]
+        for i in range(m):
+            total -= w.nu[k, i] * w.right[i]
+        w.d[k] = total
+    for i in range(m):
+        if w.kind[i] != IDLE:
+            w.d[w.basis[i]] = 0.0

@@ -1,0 +1,38 @@
+"""What an outcome of the solver means, and what to do about it."""
+
+from __future__ import annotations
+
+from typing import Final
+
+SOLVED: Final = 0
+NO_FEED: Final = 1
+NO_ROOM: Final = 2
+BAD_INPUT: Final = 3
+UNSETTLED: Final = 4
+UNPROVED: Final = 5
+
+RESIDUAL_LIMIT: Final = 1.0e-10
+GAP_LIMIT: Final = 1.0e-8
+AFFINITY_LIMIT: Final = 1.0e-8
+
+MEANING: Final[dict[int, tuple[str, str]]] = {
+    SOLVED: ("", ""),
+    NO_FEED: ("The feed holds nothing.", "Give at least one species a positive amount."),
+    NO_ROOM: (
+        "The species that may form cannot hold the feed's elements at this temperature.",
+        "Allow more species, or check their ranges of temperature and the charge of the feed.",
+    ),
+    BAD_INPUT: (
+        "Temperature, pressure or an amount is not a finite positive number.",
+        "Check the inputs of this state.",
+    ),
+    UNSETTLED: (
+        "The iteration did not settle.",
+        "Move the temperature or pressure slightly; please report the state.",
+    ),
+    UNPROVED: (
+        "A composition was found, but its certificate does not hold.",
+        "Move the temperature or pressure slightly; please report the state.",
+    ),
+}
+"""For each status: the reason in a sentence, and a remedy."""
