@@ -7,8 +7,9 @@ from typing import Final
 import numpy as np
 
 from gibbsmin.compiled import inlined
-from gibbsmin.solver.layout import FREE, GAS, G, K, N, Work, X
+from gibbsmin.solver.layout import FREE, GAS, PRESENT, G, K, N, Work, X
 
+VANISHING: Final = 1.0e-280  # turnover near the smallest number there is: balanced in logarithms only
 CEILING: Final = 300.0  # largest u that is taken at its word, so that nothing overflows
 
 
@@ -48,6 +49,15 @@ def present_amount(i: int, w: Work) -> float:
 
 
 @inlined
+def overdrawn(w: Work) -> bool:
+    """Tell whether the gas takes from a condensed species more than twice what there is."""
+    for i in range(w.c.size):
+        if w.kind[i] == PRESENT and w.supply[i] > 2.0 * w.demand[i]:
+            return True
+    return False
+
+
+@inlined
 def worst_balance(w: Work) -> int:
     """Return the free coordinate whose supply and demand differ most (as a ratio), -1 if there is none."""
     worst, found = 0.0, -1
@@ -61,8 +71,8 @@ def worst_balance(w: Work) -> int:
 
 @inlined
 def imbalance(i: int, w: Work) -> float:
-    """Return abs(ln(supply/demand)) of coordinate ``i``: inf where just one of them is zero, 0 where both are."""
-    if w.supply[i] == 0.0 and w.demand[i] == 0.0:
+    """Return abs(ln(supply/demand)) of coordinate ``i``: inf where just one of them is zero, 0 where both vanish."""
+    if max(w.supply[i], w.demand[i]) < VANISHING:
         return 0.0
     if w.supply[i] == 0.0 or w.demand[i] == 0.0:
         return np.inf
@@ -70,14 +80,37 @@ def imbalance(i: int, w: Work) -> float:
 
 
 @inlined
-def balance_step(i: int, w: Work) -> None:
-    """One Newton step on ln(supply/demand) = 0 in y_i alone; nearly linear, however far the start."""
-    slope = 0.0
-    supply, demand = w.supply[i], w.demand[i]
+def side(i: int, sign: float, w: Work) -> tuple[float, float]:
+    """Logarithm of the supply (``sign`` 1) or demand (-1) of coordinate ``i``, and its derivative by y_i.
+
+    Summed relative to the largest term, so that nothing is too large or too small; -inf where there is no term.
+    """
+    c = max(-sign * w.c[i], 0.0) / w.value[N]
+    largest = np.log(c) if c > 0.0 else -np.inf
     for j in range(w.count[G]):
-        nu = w.nu[j, i]
+        if sign * w.nu[j, i] > 0.0:
+            largest = max(largest, w.u[j])
+    if largest == -np.inf:
+        return largest, 0.0
+    total, slope = c * np.exp(-largest), 0.0
+    for j in range(w.count[G]):
+        nu = sign * w.nu[j, i]
         if nu > 0.0:
-            slope += nu * nu * w.n[j] / supply
-        elif nu < 0.0:
-            slope += nu * nu * w.n[j] / demand
-    w.y[i] -= np.log(supply / demand) / slope
+            term = nu * np.exp(w.u[j] - largest)
+            total += term
+            slope += nu * term
+    return largest + np.log(total), sign * slope / total
+
+
+@inlined
+def balance_step(i: int, w: Work) -> bool:
+    """One Newton step on ln(supply/demand) = 0 in y_i alone: nearly linear, however far the start.
+
+    False if one of the two is zero whatever y_i.
+    """
+    supply, rise = side(i, 1.0, w)
+    demand, fall = side(i, -1.0, w)
+    if supply == -np.inf or demand == -np.inf:
+        return False
+    w.y[i] -= (supply - demand) / (rise - fall)
+    return True

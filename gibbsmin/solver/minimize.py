@@ -9,10 +9,10 @@ import numpy as np
 from gibbsmin.compiled import compiled, inlined
 from gibbsmin.solver.basis import replace
 from gibbsmin.solver.certificate import element_residual, optimality
-from gibbsmin.solver.gas import activities, balance_step, imbalance, present_amount, worst_balance
+from gibbsmin.solver.gas import activities, balance_step, imbalance, overdrawn, present_amount, worst_balance
 from gibbsmin.solver.layout import CHANGES, FREE, GAS, IDLE, JOIN, PRESENT, STEPS, G, K, Work, new_work
 from gibbsmin.solver.newton import newton_error, newton_step
-from gibbsmin.solver.phase_set import NONE, STUCK, saturating, set_gas, start_phases, wanted_change
+from gibbsmin.solver.phase_set import NONE, STUCK, poor_place, saturating, set_gas, start_phases, wanted_change
 from gibbsmin.solver.simplex import exact_prices, optimal_basis, select_candidates
 from gibbsmin.solver.status import (
     AFFINITY_LIMIT,
@@ -56,8 +56,7 @@ def settle(b: Any, w: Work) -> bool:
         place = NONE
         worst = worst_balance(w)
         if worst >= 0 and imbalance(worst, w) > COARSE:
-            if np.isfinite(imbalance(worst, w)):
-                balance_step(worst, w)
+            if balance_step(worst, w):
                 continue
             place = worst
             w.count[JOIN] = saturating(place, w)
@@ -65,8 +64,9 @@ def settle(b: Any, w: Work) -> bool:
                 return False
         else:
             error = newton_error(w)
-            if error < NEAR:
-                place = wanted_change(error, w)
+            place = poor_place(w)
+            if place == NONE and (error < NEAR or overdrawn(w)):
+                place = wanted_change(min(error, NEAR), w)
         if place == STUCK or w.count[CHANGES] > MOST_CHANGES:
             return False
         if place != NONE:

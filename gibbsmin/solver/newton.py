@@ -7,6 +7,7 @@ from typing import Any, Final
 import numpy as np
 
 from gibbsmin.compiled import inlined
+from gibbsmin.solver.gas import VANISHING
 from gibbsmin.solver.layout import FREE, GAS, G, N, Work, X
 
 MAJOR: Final = 1.0e-3  # a species above this share of the gas changes by no more than ...
@@ -20,7 +21,7 @@ def newton_error(w: Work) -> float:
     for i in range(w.c.size):
         if w.kind[i] == FREE:
             scale = max(w.supply[i], w.demand[i])
-            if scale > 0.0:
+            if scale > VANISHING:
                 error = max(error, abs(w.supply[i] - w.demand[i]) / scale)
     return error
 
@@ -50,7 +51,7 @@ def assemble(w: Work) -> int:
     for p in range(f):
         i = w.free[p]
         w.right[p] = w.demand[i] - w.supply[i]
-        w.step[p] = 1.0 / np.sqrt(w.matrix[p, p]) if w.matrix[p, p] > 0.0 else 0.0
+        w.step[p] = 1.0 / np.sqrt(w.matrix[p, p]) if w.matrix[p, p] > VANISHING else 0.0
     amount = w.value[N] * w.value[X]
     w.right[f] = -amount * np.log(w.value[X])
     w.step[f] = 1.0 / np.sqrt(amount)

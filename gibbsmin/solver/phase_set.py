@@ -20,6 +20,7 @@ APPEARS: Final = 1.0e-11  # ln activity above which an absent phase joins
 VANISHES: Final = 1.0e-14  # share of its coordinate's turnover below which an amount is rounding
 NOTHING: Final = -3000.0  # ln activity of what cannot be held at all
 START: Final = -20.0  # first ln activity of a free species of which there is none at first
+POOR: Final = 1.0e-3  # share of its coordinate's turnover that a basis species should hold
 ENTRY: Final = 1.0e-9  # smallest coordinate that can be divided by
 
 NONE: Final = -1
@@ -80,6 +81,22 @@ def gas_for(i: int, w: Work) -> int:
             if share > best:
                 best, found = share, j
     return found
+
+
+@inlined
+def poor_place(w: Work) -> int:
+    """Free place whose basis species holds next to nothing of its coordinate, for a gas species to take; NONE if none.
+
+    With a rare or absent species as basis, a coordinate is the small difference of large terms.
+    """
+    for i in range(w.c.size):
+        if w.kind[i] == FREE:
+            held = w.n[w.basis[i]] if w.basis[i] < w.count[G] else 0.0
+            if held <= POOR * max(w.supply[i], w.demand[i]):
+                w.count[JOIN] = gas_for(i, w)
+                if w.count[JOIN] not in (NONE, w.basis[i]):
+                    return i
+    return NONE
 
 
 @inlined
@@ -198,12 +215,6 @@ def wanted_change(error: float, w: Work) -> int:
 
     ``error`` is that of the Newton iteration: what lies within it decides nothing.
     """
-    place = NONE
-    for i in range(w.c.size):
-        if w.kind[i] == FREE and w.basis[i] >= w.count[G]:
-            w.count[JOIN] = gas_for(i, w)
-            if w.count[JOIN] != NONE:
-                return i
     place = leaving_phase(error, w)
     if place == NONE:
         worst = APPEARS + 10.0 * error

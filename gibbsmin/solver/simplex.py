@@ -107,11 +107,20 @@ def leaving(j: int, bland: bool, w: Work) -> int:
 
 @inlined
 def real_for(place: int, w: Work) -> int:
-    """Candidate that can take the place of an artificial column of amount zero, -1 if none: a dependent row."""
-    best, found = PIVOT, -1
+    """Candidate that takes the place of an artificial column of amount zero, -1 if none can: a dependent row.
+
+    It is the one with the lowest price once the artificial costs are taken out, so that others stay dear.
+    """
+    best, found = np.inf, -1
     for j in range(w.count[K]):
-        if abs(w.nu[j, place]) > best:
-            best, found = abs(w.nu[j, place]), j
+        entry = abs(w.nu[j, place])
+        if entry > PIVOT:
+            price = w.d[j]
+            for i in range(w.c.size):
+                if w.basis[i] < 0:
+                    price += ARTIFICIAL * w.nu[j, i]
+            if price < best * entry:
+                best, found = price / entry, j
     return found
 
 
