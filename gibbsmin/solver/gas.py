@@ -10,6 +10,7 @@ from gibbsmin.compiled import inlined
 from gibbsmin.solver.layout import FREE, GAS, PRESENT, G, K, N, Work, X
 
 VANISHING: Final = 1.0e-280  # turnover near the smallest number there is: balanced in logarithms only
+OVERDRAFT: Final = 0.01  # share of its turnover by which a condensed species may be overdrawn on the way
 CEILING: Final = 300.0  # largest u that is taken at its word, so that nothing overflows
 
 
@@ -50,10 +51,12 @@ def present_amount(i: int, w: Work) -> float:
 
 @inlined
 def overdrawn(w: Work) -> bool:
-    """Tell whether the gas takes from a condensed species more than twice what there is."""
+    """Tell whether the gas takes so much of a condensed species that no further step will mend it."""
     for i in range(w.c.size):
-        if w.kind[i] == PRESENT and w.supply[i] > 2.0 * w.demand[i]:
-            return True
+        if w.kind[i] == PRESENT:
+            amount = present_amount(i, w)
+            if amount < -abs(w.c[i]) and amount < -OVERDRAFT * max(w.supply[i], w.demand[i]):
+                return True
     return False
 
 
@@ -92,7 +95,7 @@ def side(i: int, sign: float, w: Work) -> tuple[float, float]:
             largest = max(largest, w.u[j])
     if largest == -np.inf:
         return largest, 0.0
-    total, slope = c * np.exp(-largest), 0.0
+    total, slope = (c * np.exp(-largest) if c > 0.0 else 0.0), 0.0
     for j in range(w.count[G]):
         nu = sign * w.nu[j, i]
         if nu > 0.0:

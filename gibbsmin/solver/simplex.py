@@ -59,8 +59,8 @@ def select_candidates(A: Any, gas: Any, b: Any, g: Any, w: Work) -> None:
 
 
 @inlined
-def start_basis(A: Any, b: Any, g: Any, w: Work) -> None:
-    """Begin with one artificial column for each element, of the sign of b."""
+def start_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> None:
+    """Begin with one artificial column for each element, of the sign of b; ``bias`` is added to the cost of gases."""
     m = b.size
     for i in range(m):
         for k in range(m):
@@ -73,7 +73,7 @@ def start_basis(A: Any, b: Any, g: Any, w: Work) -> None:
         for i in range(m):
             w.nu[k, i] = w.inverse[i, i] * A[w.species[k], i]
             total += w.nu[k, i]
-        w.d[k] = g[w.species[k]] - ARTIFICIAL * total
+        w.d[k] = g[w.species[k]] - ARTIFICIAL * total + (bias if k < w.count[G] else 0.0)
 
 
 @inlined
@@ -125,10 +125,10 @@ def real_for(place: int, w: Work) -> int:
 
 
 @inlined
-def optimal_basis(A: Any, b: Any, g: Any, w: Work) -> bool:
+def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
     """Run the simplex method; False if the candidates cannot hold b (or it does not end)."""
     m = b.size
-    start_basis(A, b, g, w)
+    start_basis(A, b, g, bias, w)
     stalled, artificial = 0, 0
     for _ in range(200 + 60 * m):
         bland = stalled > 2 * m + 10
