@@ -36,5 +36,5 @@ gas leaves of c. What remains is Newton's method in the other coordinates ("free
 Files, in the order in which they are used: `layout` (the arrays), `simplex` (the basis of the linear programme, each
 species taken as a pure phase: a start that has the right condensed species in most cases), `basis` (coordinates and
 their exchange), `gas` (activities and balances), `newton` (5, 6), `phase_set` (which condensed species are present,
-and whether there is a gas), `certificate`, `minimize` (one state, many states), `status` (what an outcome means).
+and whether there is a gas), `settle` (the iteration), `certificate`, `minimize` (one state, many states), `status` (what an outcome means).
 """

@@ -49,14 +49,14 @@ def optimality(A: Any, gas: Any, b: Any, g: Any, n: Any, lam: Any) -> tuple[floa
         if gas[j]:
             total += n[j]
     for i in range(b.size):
-        dual += b[i] * lam[i]
+        dual += b[i] * lam[i] if b[i] != 0.0 else 0.0
     worst, X = 0.0, 0.0
     for j in range(n.size):
         if not np.isfinite(g[j]):
             continue
         u = -g[j]
         for i in range(b.size):
-            u += A[j, i] * lam[i]
+            u += A[j, i] * lam[i] if A[j, i] != 0.0 else 0.0
         if gas[j]:
             X += np.exp(min(u, 300.0))
         else:

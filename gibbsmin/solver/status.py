@@ -7,9 +7,8 @@ from typing import Final
 SOLVED: Final = 0
 NO_FEED: Final = 1
 NO_ROOM: Final = 2
-BAD_INPUT: Final = 3
-UNSETTLED: Final = 4
-UNPROVED: Final = 5
+UNSETTLED: Final = 3
+UNPROVED: Final = 4
 
 RESIDUAL_LIMIT: Final = 1.0e-10
 GAP_LIMIT: Final = 1.0e-8
@@ -21,10 +20,6 @@ MEANING: Final[dict[int, tuple[str, str]]] = {
     NO_ROOM: (
         "The species that may form cannot hold the feed's elements at this temperature.",
         "Allow more species, or check their ranges of temperature and the charge of the feed.",
-    ),
-    BAD_INPUT: (
-        "Temperature, pressure or an amount is not a finite positive number.",
-        "Check the inputs of this state.",
     ),
     UNSETTLED: (
         "The iteration did not settle.",

@@ -1,0 +1,1 @@
+"""One question answered: a system, two held conditions, a state and its certificate."""
