@@ -12,17 +12,35 @@ Names are imported on first use, so that importing the package costs nothing.
 from __future__ import annotations
 
 from importlib import import_module
-from typing import TYPE_CHECKING, Any
-
-if TYPE_CHECKING:
-    from gibbsmin import interop
-    from gibbsmin.case.study import read_case
-    from gibbsmin.equilibrium.batch import Batch
-    from gibbsmin.equilibrium.solve import equilibria, equilibrium
-    from gibbsmin.equilibrium.state import State
-    from gibbsmin.equilibrium.system import System
-    from gibbsmin.species.own import read_species
-    from gibbsmin.species.record import Species
-    from gibbsmin.studies.sweep import sweep
+from typing import Any
 
 __version__ = "0.1.0"
+
+_HOMES = {
+    "Batch": "gibbsmin.equilibrium.batch",
+    "Species": "gibbsmin.species.record",
+    "State": "gibbsmin.equilibrium.state",
+    "System": "gibbsmin.equilibrium.system",
+    "equilibria": "gibbsmin.equilibrium.solve",
+    "equilibrium": "gibbsmin.equilibrium.solve",
+    "interop": "gibbsmin.interop",
+    "read_case": "gibbsmin.case.study",
+    "read_species": "gibbsmin.species.own",
+    "species": "gibbsmin.species.database",
+    "sweep": "gibbsmin.studies.sweep",
+}
+
+__all__ = sorted([*_HOMES, "__version__"])
+
+
+def __getattr__(name: str) -> Any:
+    if name not in _HOMES:
+        raise AttributeError(f"module 'gibbsmin' has no attribute {name!r}")
+    module = import_module(_HOMES[name])
+    value = module if module.__name__ == f"gibbsmin.{name}" else getattr(module, name)
+    globals()[name] = value
+    return value
+
+
+def __dir__() -> list[str]:
+    return [*globals(), *__all__]
