@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any, Final
 
 from gibbsmin.compiled import inlined
-from gibbsmin.solver.layout import K, Work
+from gibbsmin.solver.layout import IDLE, K, Work
 
 DUST: Final = 1.0e-12  # coordinates are small fractions; what is smaller is rounding
 NOISE: Final = 1.0e-15  # rounding of B^-1 b, relative to the sum of its terms
@@ -16,8 +16,7 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
     """Put candidate ``j`` into ``place`` of the basis; activities stay as they are, coordinates change.
 
     With t = nu_k[place] / nu_j[place]: nu_k -> nu_k - t nu_j (t itself at ``place``), d_k -> d_k - t d_j. The rows
-    of B^-1 change alike, and c = B^-1 b is made afresh; what is only rounding in it becomes zero, so that exact
-    stoichiometry stays exact.
+    of B^-1 change alike, and c is made afresh.
     """
     m = w.c.size
     activity = -w.d[j]
@@ -41,10 +40,40 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
     w.nu[j, place] = 1.0
     w.d[j] = 0.0
     for i in range(m):
-        total = terms = 0.0
-        for k in range(m):
-            if i != place:
+        if i != place:
+            for k in range(m):
                 w.inverse[i, k] -= w.right[i] * w.inverse[place, k]
-            total += w.inverse[i, k] * b[k]
-            terms += abs(w.inverse[i, k] * b[k])
+    basis_amounts(b, w)
+
+
+@inlined
+def basis_amounts(b: Any, w: Work) -> None:
+    """Make c = B^-1 b afresh; what is only rounding in it becomes zero, so that exact stoichiometry stays exact."""
+    m = w.c.size
+    for i in range(m):
+        total = terms = 0.0
+        if w.kind[i] != IDLE:
+            for k in range(m):
+                total += w.inverse[i, k] * b[k]
+                terms += abs(w.inverse[i, k] * b[k])
         w.c[i] = total if abs(total) > NOISE * m * terms else 0.0
+
+
+@inlined
+def exact_prices(g: Any, w: Work) -> None:
+    """Make d_j = g_j - nu_j.g_B afresh, and nu zero in dependent rows."""
+    m = w.c.size
+    for i in range(m):
+        idle = w.kind[i] == IDLE
+        w.right[i] = 0.0 if idle else g[w.species[w.basis[i]]]
+        if idle:
+            for k in range(w.count[K]):
+                w.nu[k, i] = 0.0
+    for k in range(w.count[K]):
+        total = g[w.species[k]]
+        for i in range(m):
+            total -= w.nu[k, i] * w.right[i]
+        w.d[k] = total
+    for i in range(m):
+        if w.kind[i] != IDLE:
+            w.d[w.basis[i]] = 0.0

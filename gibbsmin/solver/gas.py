@@ -34,10 +34,8 @@ def activities(w: Work) -> None:
             w.n[j] = n
             for i in range(m):
                 flow = w.nu[j, i] * n
-                if flow > 0.0:
-                    w.supply[i] += flow
-                else:
-                    w.demand[i] -= flow
+                w.supply[i] += max(flow, 0.0)
+                w.demand[i] -= min(flow, 0.0)
     w.value[X] = total
 
 

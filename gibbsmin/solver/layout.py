@@ -21,6 +21,7 @@ GAS: Final = 2  # 1 where a gas is present
 STEPS: Final = 3  # Newton steps so far
 CHANGES: Final = 4  # changes of the phase set so far
 JOIN: Final = 5  # candidate that the next change puts into the basis
+REUSES: Final = 6  # states since the coordinates were made afresh; -1 if they are not to be used again
 
 # value[...]
 N: Final = 0  # amount of gas, mol (1 where there is none: the incipient gas)
@@ -30,8 +31,11 @@ X: Final = 1  # sum of exp(u) over the gas
 class Work(NamedTuple):
     """Arrays of one state; S species, m elements. Rows beyond the candidates in use hold nothing."""
 
-    count: Any  # (6,) int, see above
+    count: Any  # (7,) int, see above
     value: Any  # (2,) see above
+    offered: Any  # (S,) bool, the species that the last state offered as candidates
+    chosen: Any  # (S,) bool, those that remained
+    lacking: Any  # (m,) bool, the elements of which it had none
     species: Any  # (S,) int, number of each candidate
     nu: Any  # (S, m) coordinates of each candidate, eq. (4)
     d: Any  # (S,)
@@ -55,8 +59,11 @@ class Work(NamedTuple):
 def new_work(S: int, m: int) -> Work:
     """Allocate the arrays for ``S`` species and ``m`` elements."""
     return Work(
-        np.zeros(6, np.int64),
+        np.zeros(7, np.int64),
         np.zeros(2),
+        np.zeros(S, np.bool_),
+        np.zeros(S, np.bool_),
+        np.zeros(m, np.bool_),
         np.zeros(S, np.int64),
         np.zeros((S, m)),
         np.zeros(S),

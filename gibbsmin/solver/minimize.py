@@ -7,12 +7,13 @@ from typing import Any, Final, NamedTuple
 import numpy as np
 
 from gibbsmin.compiled import compiled, inlined
+from gibbsmin.solver.candidates import same_candidates, select_candidates
 from gibbsmin.solver.certificate import element_residual, optimality
 from gibbsmin.solver.gas import present_amount
-from gibbsmin.solver.layout import CHANGES, GAS, IDLE, PRESENT, STEPS, G, K, Work, new_work
+from gibbsmin.solver.layout import CHANGES, GAS, IDLE, PRESENT, REUSES, STEPS, G, K, Work, new_work
 from gibbsmin.solver.phase_set import start_phases
 from gibbsmin.solver.settle import settle
-from gibbsmin.solver.simplex import exact_prices, optimal_basis, select_candidates
+from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.solver.status import (
     AFFINITY_LIMIT,
     GAP_LIMIT,
@@ -27,6 +28,9 @@ from gibbsmin.species.table import Table, standard_state
 
 STARTS: Final = (0.0, -4.0, 4.0, -12.0)
 """Added to the potentials of gases in the linear programme, one after the other until a start leads to the answer."""
+
+MOST_REUSES: Final = 50
+"""States in a row that take over the coordinates of the one before, so that rounding does not gather in them."""
 
 
 class Outcome(NamedTuple):
@@ -85,15 +89,23 @@ def one_state(A: Any, gas: Any, b: Any, g: Any, w: Work) -> int:
     ``b`` (m,) is scaled to a sum of one; ``g`` (S,) is inf where a species is no candidate, and becomes inf where it
     cannot be present.
     """
-    w.count[STEPS] = 0
-    select_candidates(A, gas, b, g, w)
+    w.count[STEPS] = w.count[CHANGES] = 0
+    again = w.count[REUSES] >= 0 and same_candidates(b, g, w)
+    if again and w.count[REUSES] < MOST_REUSES and optimal_basis_again(b, g, w):
+        w.count[REUSES] += 1
+        start_phases(w)
+        if settle(b, w):
+            return SOLVED
+    elif not again:
+        select_candidates(A, gas, b, g, w)
+    w.count[REUSES] = -1
     for bias in STARTS:
         if not optimal_basis(A, b, g, bias, w):
             return NO_ROOM
-        exact_prices(g, w)
         start_phases(w)
         w.count[CHANGES] = 0
         if settle(b, w):
+            w.count[REUSES] = 0
             return SOLVED
     return UNSETTLED
 
@@ -119,6 +131,7 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
     """
     S, m = A.shape
     w = new_work(S, m)
+    w.count[REUSES] = -1
     h, s, g, relative = np.empty(S), np.empty(S), np.empty(S), np.empty(m)
     for state in range(T.size):
         n, lam = out.n[state], out.lam[state]

@@ -12,6 +12,7 @@ from gibbsmin.solver.layout import FREE, GAS, G, N, Work, X
 
 MAJOR: Final = 1.0e-3  # a species above this share of the gas changes by no more than ...
 CHANGE: Final = 2.0  # ... this in ln n a step; a rarer one comes up to exp(-CHANGE) of the gas at most
+SINGULAR: Final = 1.0e-15
 
 
 @inlined
@@ -28,51 +29,43 @@ def newton_error(w: Work) -> float:
 
 @inlined
 def assemble(w: Work) -> int:
-    """Set up eq. (6), scaled to a diagonal of one; return the number of free coordinates."""
+    """Set up eq. (6), scaled to a diagonal of one; return the number of free coordinates f.
+
+    The border of ln N is row and column f; the scale of each row is left in ``w.step``.
+    """
     f = 0
     for i in range(w.c.size):
         if w.kind[i] == FREE:
             w.free[f] = i
             f += 1
+    H = w.matrix
     for p in range(f + 1):
-        for q in range(f + 1):
-            w.matrix[p, q] = 0.0
+        for q in range(p + 1):
+            H[p, q] = 0.0
     for j in range(w.count[G]):
         n = w.n[j]
-        if n == 0.0:
-            continue
         for p in range(f):
             nu = w.nu[j, w.free[p]]
             if nu != 0.0:
                 flow = n * nu
-                w.matrix[p, f] += flow
+                H[f, p] += flow
                 for q in range(p + 1):
-                    w.matrix[p, q] += flow * w.nu[j, w.free[q]]
+                    H[p, q] += flow * w.nu[j, w.free[q]]
     for p in range(f):
-        i = w.free[p]
-        w.right[p] = w.demand[i] - w.supply[i]
-        w.step[p] = 1.0 / np.sqrt(w.matrix[p, p]) if w.matrix[p, p] > VANISHING else 0.0
+        w.right[p] = w.demand[w.free[p]] - w.supply[w.free[p]]
+        w.step[p] = 1.0 / np.sqrt(H[p, p]) if H[p, p] > VANISHING else 0.0
     amount = w.value[N] * w.value[X]
     w.right[f] = -amount * np.log(w.value[X])
-    w.step[f] = 1.0 / np.sqrt(amount)
+    w.step[f] = 1.0 / np.sqrt(amount) if w.count[GAS] == 1 else 0.0
     for p in range(f + 1):
         w.right[p] *= w.step[p]
         for q in range(p):
-            w.matrix[q, p] = w.matrix[p, q] = scaled(p, q, f, w) * w.step[p] * w.step[q]
-    for p in range(f):
-        w.matrix[p, p] = 1.0
-    if w.count[GAS] == 0:
-        w.matrix[f, :f] = 0.0
-        w.matrix[:f, f] = 0.0
-        w.right[f] = 0.0
-    w.matrix[f, f] = 0.0 if w.count[GAS] == 1 else 1.0
+            H[p, q] *= w.step[p] * w.step[q]
+            H[q, p] = H[p, q]
+        H[p, p] = 1.0
+    if w.count[GAS] == 1:
+        H[f, f] = 0.0
     return f
-
-
-@inlined
-def scaled(p: int, q: int, f: int, w: Work) -> float:
-    """Entry of the lower triangle as it was summed: the border was gathered in the last column."""
-    return float(w.matrix[q, f] if p == f else w.matrix[p, q])
 
 
 @inlined
@@ -83,14 +76,16 @@ def solve(matrix: Any, right: Any, size: int) -> bool:
         for i in range(k + 1, size):
             if abs(matrix[i, k]) > best:
                 best, row = abs(matrix[i, k]), i
-        if best < 1.0e-15:
+        if best < SINGULAR:
             return False
         if row != k:
             for q in range(k, size):
                 matrix[k, q], matrix[row, q] = matrix[row, q], matrix[k, q]
             right[k], right[row] = right[row], right[k]
+        inverse = 1.0 / matrix[k, k]
+        matrix[k, k] = inverse
         for i in range(k + 1, size):
-            factor = matrix[i, k] / matrix[k, k]
+            factor = matrix[i, k] * inverse
             if factor != 0.0:
                 for q in range(k + 1, size):
                     matrix[i, q] -= factor * matrix[k, q]
@@ -99,7 +94,7 @@ def solve(matrix: Any, right: Any, size: int) -> bool:
         total = right[k]
         for q in range(k + 1, size):
             total -= matrix[k, q] * right[q]
-        right[k] = total / matrix[k, k]
+        right[k] = total * matrix[k, k]
     return True
 
 
@@ -107,12 +102,12 @@ def solve(matrix: Any, right: Any, size: int) -> bool:
 def step_length(f: int, w: Work) -> float:
     """Fraction of the step in ``w.right`` that may be taken."""
     alpha, rise = 1.0, w.right[f]
-    floor = MAJOR * w.value[X]
+    major = MAJOR * w.value[N] * w.value[X]
     for j in range(w.count[G]):
         change = rise
         for p in range(f):
             change += w.nu[j, w.free[p]] * w.right[p]
-        if np.exp(min(w.u[j], 0.0)) > floor:
+        if w.n[j] > major:
             if abs(change) * alpha > CHANGE:
                 alpha = CHANGE / abs(change)
         elif change * alpha + w.u[j] > -CHANGE:

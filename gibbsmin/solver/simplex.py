@@ -12,50 +12,13 @@ from typing import Any, Final
 import numpy as np
 
 from gibbsmin.compiled import inlined
-from gibbsmin.solver.basis import replace
+from gibbsmin.solver.basis import basis_amounts, exact_prices, replace
 from gibbsmin.solver.layout import FREE, IDLE, G, K, Work
 
 ARTIFICIAL: Final = 1.0e6  # cost of an artificial column; potentials lie below 1e4 an atom
 PRICE: Final = 1.0e-7
 PIVOT: Final = 1.0e-9
 LACK: Final = 1.0e-11  # share of an element that may be left over by rounding
-
-
-@inlined
-def select_candidates(A: Any, gas: Any, b: Any, g: Any, w: Work) -> None:
-    """Gather the species that can be present at all, gas first; ``g`` becomes inf for the others.
-
-    ``A`` (S, m), ``gas`` (S,) bool, ``b`` (m,), ``g`` (S,) with inf for a species that is no candidate. A species
-    leaves when it holds an element of which there is none, or charge of a sign that nothing balances.
-    """
-    S, m = A.shape
-    changed = True
-    while changed:
-        changed = False
-        for i in range(m):
-            positive = negative = b[i] != 0.0
-            for j in range(S):
-                if g[j] != np.inf:
-                    positive |= A[j, i] > 0.0
-                    negative |= A[j, i] < 0.0
-            if positive != negative:
-                changed = True
-                for j in range(S):
-                    if A[j, i] != 0.0:
-                        g[j] = np.inf
-    k = 0
-    for phase in range(2):
-        for j in range(S):
-            if g[j] != np.inf and gas[j] == (phase == 0):
-                w.species[k] = j
-                total = 0.0
-                for i in range(m):
-                    total += abs(A[j, i])
-                w.atoms[k] = max(total, 1.0e-3)
-                k += 1
-        if phase == 0:
-            w.count[G] = k
-    w.count[K] = k
 
 
 @inlined
@@ -126,30 +89,39 @@ def real_for(place: int, w: Work) -> int:
 
 @inlined
 def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
-    """Run the simplex method; False if the candidates cannot hold b (or it does not end)."""
-    m = b.size
+    """Find an optimal basis from artificial columns; False if the candidates cannot hold b (or the search does not end)."""
     start_basis(A, b, g, bias, w)
-    stalled, artificial = 0, 0
+    if not improve(b, w) or not remove_artificial(b, w):
+        return False
+    exact_prices(g, w)
+    return True
+
+
+@inlined
+def optimal_basis_again(b: Any, g: Any, w: Work) -> bool:
+    """Find an optimal basis from that of the state before, with the same candidates; False if it cannot hold b."""
+    basis_amounts(b, w)
+    for i in range(w.c.size):
+        w.y[i] = 0.0
+        if w.kind[i] != IDLE:
+            w.kind[i] = FREE
+            if w.c[i] < 0.0:
+                return False
+    exact_prices(g, w)
+    return improve(b, w)
+
+
+@inlined
+def improve(b: Any, w: Work) -> bool:
+    """Exchange basis species until no price is negative; False if the search does not end."""
+    m = b.size
+    stalled = 0
     for _ in range(200 + 60 * m):
         bland = stalled > 2 * m + 10
         j = entering(bland, w)
-        if j >= 0:
-            place = leaving(j, bland, w)
-        else:
-            while artificial < m and (w.basis[artificial] >= 0 or w.kind[artificial] == IDLE):
-                artificial += 1
-            if artificial == m:
-                return True
-            place = artificial
-            j = real_for(place, w)
-            scale = 0.0
-            for i in range(m):
-                scale = max(scale, abs(w.inverse[place, i] * b[i]))
-            if w.c[place] > LACK * scale:
-                return False
-            if j < 0:
-                w.kind[place] = IDLE
-                continue
+        if j < 0:
+            return True
+        place = leaving(j, bland, w)
         if place < 0:
             return False
         stalled = stalled + 1 if w.c[place] <= 0.0 else 0
@@ -158,21 +130,18 @@ def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
 
 
 @inlined
-def exact_prices(g: Any, w: Work) -> None:
-    """Make d_j = g_j - nu_j.g_B afresh, free of the artificial costs, and nu zero in dependent rows."""
-    m = w.c.size
-    for i in range(m):
-        idle = w.kind[i] == IDLE
-        w.right[i] = 0.0 if idle else g[w.species[w.basis[i]]]
-        if idle:
-            w.c[i] = 0.0
-            for k in range(w.count[K]):
-                w.nu[k, i] = 0.0
-    for k in range(w.count[K]):
-        total = g[w.species[k]]
-        for i in range(m):
-            total -= w.nu[k, i] * w.right[i]
-        w.d[k] = total
-    for i in range(m):
-        if w.kind[i] != IDLE:
-            w.d[w.basis[i]] = 0.0
+def remove_artificial(b: Any, w: Work) -> bool:
+    """Take artificial columns out of the basis; False if one of them holds something."""
+    for place in range(b.size):
+        if w.basis[place] < 0:
+            scale = 0.0
+            for i in range(b.size):
+                scale = max(scale, abs(w.inverse[place, i] * b[i]))
+            if w.c[place] > LACK * scale:
+                return False
+            j = real_for(place, w)
+            if j < 0:
+                w.kind[place], w.c[place] = IDLE, 0.0
+            else:
+                replace(place, j, b, w)
+    return improve(b, w)
