@@ -7,7 +7,7 @@ from typing import Any, Final
 from gibbsmin.compiled import inlined
 from gibbsmin.solver.layout import IDLE, K, Work
 
-DUST: Final = 1.0e-12  # coordinates are small fractions; what is smaller is rounding
+DUST: Final = 1.0e-9  # coordinates are ratios of small numbers of atoms; what is smaller is rounding
 NOISE: Final = 1.0e-15  # rounding of B^-1 b, relative to the sum of its terms
 
 
@@ -21,23 +21,25 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
     m = w.c.size
     activity = -w.d[j]
     for i in range(m):
-        w.right[i] = w.nu[j, i]
-        activity += w.nu[j, i] * w.y[i]
+        w.right[i] = w.nu[i, j]
+        activity += w.nu[i, j] * w.y[i]
     w.y[place] = activity
     w.basis[place] = j
-    pivot, shift = w.right[place], w.d[j]
-    for k in range(w.count[K]):
-        t = w.nu[k, place] / pivot
-        if t != 0.0:
-            for i in range(m):
-                value = w.nu[k, i] - t * w.right[i]
-                w.nu[k, i] = value if abs(value) > DUST else 0.0
-            w.nu[k, place] = t
-            w.d[k] -= t * shift
+    pivot, shift, t, candidates = w.right[place], w.d[j], w.row, w.count[K]
+    for k in range(candidates):
+        t[k] = w.nu[place, k] / pivot
+        w.nu[place, k] = t[k]
+        w.d[k] -= t[k] * shift
     for i in range(m):
-        w.nu[j, i] = 0.0
+        factor = w.right[i]
+        if i != place and factor != 0.0:
+            for k in range(candidates):
+                value = w.nu[i, k] - t[k] * factor
+                w.nu[i, k] = value if abs(value) > DUST else 0.0
+    for i in range(m):
+        w.nu[i, j] = 0.0
         w.inverse[place, i] /= pivot
-    w.nu[j, place] = 1.0
+    w.nu[place, j] = 1.0
     w.d[j] = 0.0
     for i in range(m):
         if i != place:
@@ -68,12 +70,13 @@ def exact_prices(g: Any, w: Work) -> None:
         w.right[i] = 0.0 if idle else g[w.species[w.basis[i]]]
         if idle:
             for k in range(w.count[K]):
-                w.nu[k, i] = 0.0
+                w.nu[i, k] = 0.0
     for k in range(w.count[K]):
-        total = g[w.species[k]]
-        for i in range(m):
-            total -= w.nu[k, i] * w.right[i]
-        w.d[k] = total
+        w.d[k] = g[w.species[k]]
+    for i in range(m):
+        price = w.right[i]
+        for k in range(w.count[K]):
+            w.d[k] -= w.nu[i, k] * price
     for i in range(m):
         if w.kind[i] != IDLE:
             w.d[w.basis[i]] = 0.0

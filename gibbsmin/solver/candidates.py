@@ -1,6 +1,6 @@
 """The species that a state can hold at all.
 
-Arguments throughout: ``A`` (S, m), ``gas`` (S,) bool, ``b`` (m,), ``g`` (S,) with inf for a species that is offered as no
+Arguments throughout: ``A`` (m, S), ``gas`` (S,) bool, ``b`` (m,), ``g`` (S,) with inf for a species that is offered as no
 candidate.
 """
 
@@ -35,7 +35,7 @@ def select_candidates(A: Any, gas: Any, b: Any, g: Any, w: Work) -> None:
 
     A species leaves when it holds an element of which there is none, or charge of a sign that nothing balances.
     """
-    S, m = A.shape
+    m, S = A.shape
     for j in range(S):
         w.offered[j] = g[j] != np.inf
     changed = True
@@ -45,12 +45,12 @@ def select_candidates(A: Any, gas: Any, b: Any, g: Any, w: Work) -> None:
             positive = negative = b[i] != 0.0
             for j in range(S):
                 if g[j] != np.inf:
-                    positive |= A[j, i] > 0.0
-                    negative |= A[j, i] < 0.0
+                    positive |= A[i, j] > 0.0
+                    negative |= A[i, j] < 0.0
             if positive != negative:
                 changed = True
                 for j in range(S):
-                    if A[j, i] != 0.0:
+                    if A[i, j] != 0.0:
                         g[j] = np.inf
     for i in range(m):
         w.lacking[i] = b[i] == 0.0
@@ -61,7 +61,7 @@ def select_candidates(A: Any, gas: Any, b: Any, g: Any, w: Work) -> None:
                 w.species[k] = j
                 total = 0.0
                 for i in range(m):
-                    total += abs(A[j, i])
+                    total += abs(A[i, j])
                 w.atoms[k] = max(total, 1.0e-3)
                 k += 1
         if phase == 0:

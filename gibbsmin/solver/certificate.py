@@ -6,35 +6,38 @@ from typing import Any
 
 import numpy as np
 
-from gibbsmin.compiled import inlined
+from gibbsmin.compiled import summing
+from gibbsmin.solver.gas import CEILING, FLOOR
 
 
-@inlined
+@summing
 def element_residual(A: Any, b: Any, n: Any) -> float:
     """Largest abs(A n - b), each row relative to its own b_i (or to its turnover where b_i is zero).
 
-    ``A`` (S, m), ``b`` (m,), ``n`` (S,).
+    ``A`` (m, S), ``b`` (m,), ``n`` (S,).
     """
     worst = 0.0
     for i in range(b.size):
         total, turnover = -b[i], 0.0
         for j in range(n.size):
-            total += A[j, i] * n[j]
-            turnover += abs(A[j, i]) * n[j]
+            total += A[i, j] * n[j]
+            turnover += abs(A[i, j]) * n[j]
         scale = abs(b[i]) if b[i] != 0.0 else turnover
         if scale > 0.0:
             worst = max(worst, abs(total) / scale)
     return float(worst)
 
 
-@inlined
-def optimality(A: Any, gas: Any, b: Any, g: Any, n: Any, lam: Any) -> tuple[float, float]:
+@summing
+def optimality(A: Any, gas: Any, b: Any, g: Any, n: Any, lam: Any, u: Any) -> tuple[float, float]:
     """Duality gap and worst affinity of a state.
 
     Parameters
     ----------
-    A, gas, b, g, n, lam : arrays (S, m), (S,), (m,), (S,), (S,), (m,)
+    A, gas, b, g, n, lam : arrays (m, S), (S,), (m,), (S,), (S,), (m,)
         The problem (1) with g = inf for a species that is no candidate, and the pair to be proved.
+    u : (S,) array
+        Room to work in.
 
     Returns
     -------
@@ -46,26 +49,27 @@ def optimality(A: Any, gas: Any, b: Any, g: Any, n: Any, lam: Any) -> tuple[floa
     amount = dual = primal = total = 0.0
     for j in range(n.size):
         amount += n[j]
-        if gas[j]:
-            total += n[j]
+        total += n[j] if gas[j] else 0.0
+        u[j] = -g[j]
     for i in range(b.size):
-        dual += b[i] * lam[i] if b[i] != 0.0 else 0.0
+        if np.isfinite(lam[i]):
+            dual += b[i] * lam[i]
+            for j in range(n.size):
+                u[j] += A[i, j] * lam[i]
     worst, X = 0.0, 0.0
     for j in range(n.size):
-        if not np.isfinite(g[j]):
+        if g[j] == np.inf:
             continue
-        u = -g[j]
-        for i in range(b.size):
-            u += A[j, i] * lam[i] if A[j, i] != 0.0 else 0.0
-        if gas[j]:
-            X += np.exp(min(u, 300.0))
-        else:
-            worst = max(worst, abs(u) if n[j] > 0.0 else u)
+        if not gas[j]:
+            worst = max(worst, abs(u[j]) if n[j] > 0.0 else u[j])
+            primal += n[j] * g[j]
+            continue
+        if u[j] > FLOOR:
+            X += np.exp(min(u[j], CEILING))
         if n[j] > 0.0:
-            mixing = np.log(n[j] / total) if gas[j] else 0.0
-            primal += n[j] * (g[j] + mixing)
-            if gas[j] and n[j] > 1.0e-290 * total:
-                worst = max(worst, abs(mixing - u))
+            ln_x = np.log(n[j] / total)
+            primal += n[j] * (g[j] + ln_x)
+            worst = max(worst, abs(ln_x - u[j]))
     if X > 0.0:
         worst = max(worst, abs(np.log(X)) if total > 0.0 else np.log(X))
     return abs(primal - dual) / amount, worst

@@ -6,37 +6,40 @@ from typing import Final
 
 import numpy as np
 
-from gibbsmin.compiled import inlined
+from gibbsmin.compiled import inlined, summing
 from gibbsmin.solver.layout import FREE, GAS, PRESENT, G, K, N, Work, X
 
 VANISHING: Final = 1.0e-280  # turnover near the smallest number there is: balanced in logarithms only
 OVERDRAFT: Final = 0.01  # share of its turnover by which a condensed species may be overdrawn on the way
+FLOOR: Final = -700.0  # u below which a species is taken as absent: its amount would not be a normal number
 CEILING: Final = 300.0  # largest u that is taken at its word, so that nothing overflows
 
 
-@inlined
+@summing
 def activities(w: Work) -> None:
     """Compute u of every candidate, n of the gas ones, X, and supply and demand of every coordinate, eq. (5)."""
-    m, gas = w.c.size, w.count[G]
+    m, gas, candidates, amount = w.c.size, w.count[G], w.count[K], w.value[N]
+    u, n = w.u, w.n
+    for j in range(candidates):
+        u[j] = -w.d[j]
     for i in range(m):
-        w.supply[i] = max(-w.c[i], 0.0)
-        w.demand[i] = max(w.c[i], 0.0)
-    total, amount = 0.0, w.value[N]
-    for j in range(w.count[K]):
-        u = -w.d[j]
-        for i in range(m):
-            u += w.nu[j, i] * w.y[i]
-        w.u[j] = u
-        if j < gas:
-            x = np.exp(min(u, CEILING))
-            total += x
-            n = amount * x
-            w.n[j] = n
-            for i in range(m):
-                flow = w.nu[j, i] * n
-                w.supply[i] += max(flow, 0.0)
-                w.demand[i] -= min(flow, 0.0)
+        y = w.y[i]
+        if y != 0.0:
+            for j in range(candidates):
+                u[j] += w.nu[i, j] * y
+    total = 0.0
+    for j in range(gas):
+        x = np.exp(min(u[j], CEILING)) if u[j] > FLOOR else 0.0
+        total += x
+        n[j] = amount * x
     w.value[X] = total
+    for i in range(m):
+        supply, demand = max(-w.c[i], 0.0), max(w.c[i], 0.0)
+        for j in range(gas):
+            flow = w.nu[i, j] * n[j]
+            supply += 0.5 * (abs(flow) + flow)
+            demand += 0.5 * (abs(flow) - flow)
+        w.supply[i], w.demand[i] = supply, demand
 
 
 @inlined
@@ -89,13 +92,13 @@ def side(i: int, sign: float, w: Work) -> tuple[float, float]:
     c = max(-sign * w.c[i], 0.0) / w.value[N]
     largest = np.log(c) if c > 0.0 else -np.inf
     for j in range(w.count[G]):
-        if sign * w.nu[j, i] > 0.0:
+        if sign * w.nu[i, j] > 0.0:
             largest = max(largest, w.u[j])
     if largest == -np.inf:
         return largest, 0.0
     total, slope = (c * np.exp(-largest) if c > 0.0 else 0.0), 0.0
     for j in range(w.count[G]):
-        nu = sign * w.nu[j, i]
+        nu = sign * w.nu[i, j]
         if nu > 0.0:
             term = nu * np.exp(w.u[j] - largest)
             total += term

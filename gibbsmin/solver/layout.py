@@ -29,7 +29,8 @@ X: Final = 1  # sum of exp(u) over the gas
 
 
 class Work(NamedTuple):
-    """Arrays of one state; S species, m elements. Rows beyond the candidates in use hold nothing."""
+    """Arrays of one state; S species, m elements. What lies beyond the candidates in use
+    means nothing. Long loops run over species, along rows, so that they compile to vector instructions."""
 
     count: Any  # (7,) int, see above
     value: Any  # (2,) see above
@@ -37,10 +38,11 @@ class Work(NamedTuple):
     chosen: Any  # (S,) bool, those that remained
     lacking: Any  # (m,) bool, the elements of which it had none
     species: Any  # (S,) int, number of each candidate
-    nu: Any  # (S, m) coordinates of each candidate, eq. (4)
+    nu: Any  # (m, S) coordinates of each candidate, eq. (4)
     d: Any  # (S,)
     u: Any  # (S,) ln activity
     n: Any  # (S,) mol, gas candidates
+    row: Any  # (S,) a row in the making
     atoms: Any  # (S,) atoms in a formula unit, for scaling
     inverse: Any  # (m, m) B^-1
     basis: Any  # (m,) int, candidate in each place, or -1
@@ -65,7 +67,8 @@ def new_work(S: int, m: int) -> Work:
         np.zeros(S, np.bool_),
         np.zeros(m, np.bool_),
         np.zeros(S, np.int64),
-        np.zeros((S, m)),
+        np.zeros((m, S)),
+        np.zeros(S),
         np.zeros(S),
         np.zeros(S),
         np.zeros(S),

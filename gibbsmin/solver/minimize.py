@@ -72,7 +72,7 @@ def collect(scale: float, A: Any, g: Any, w: Work, n: Any, lam: Any) -> None:
         if w.kind[i] == IDLE:
             held = False
             for k in range(w.count[K]):
-                held |= A[w.species[k], i] != 0.0
+                held |= A[i, w.species[k]] != 0.0
             lam[i] += 0.0 if held else -np.inf
             continue
         if w.kind[i] == PRESENT:
@@ -116,7 +116,7 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
 
     Parameters
     ----------
-    A : (S, m) array
+    A : (m, S) array
         Atoms of each element in each species [-].
     gas : (S,) bool array
         True for the species of the ideal gas.
@@ -129,7 +129,7 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
     out : Outcome
         Filled in place.
     """
-    S, m = A.shape
+    m, S = A.shape
     w = new_work(S, m)
     w.count[REUSES] = -1
     h, s, g, relative = np.empty(S), np.empty(S), np.empty(S), np.empty(m)
@@ -150,7 +150,7 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
         if status == SOLVED:
             collect(scale, A, g, w, n, lam)
             out.residual[state] = element_residual(A, b[state], n)
-            out.gap[state], out.affinity[state] = optimality(A, gas, b[state], g, n, lam)
+            out.gap[state], out.affinity[state] = optimality(A, gas, b[state], g, n, lam, w.u)
             proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
             if not (proved and out.affinity[state] <= AFFINITY_LIMIT):
                 status = UNPROVED

@@ -6,7 +6,7 @@ from typing import Any, Final
 
 import numpy as np
 
-from gibbsmin.compiled import inlined
+from gibbsmin.compiled import inlined, summing
 from gibbsmin.solver.gas import VANISHING
 from gibbsmin.solver.layout import FREE, GAS, G, N, Work, X
 
@@ -27,7 +27,7 @@ def newton_error(w: Work) -> float:
     return error
 
 
-@inlined
+@summing
 def assemble(w: Work) -> int:
     """Set up eq. (6), scaled to a diagonal of one; return the number of free coordinates f.
 
@@ -38,19 +38,20 @@ def assemble(w: Work) -> int:
         if w.kind[i] == FREE:
             w.free[f] = i
             f += 1
-    H = w.matrix
-    for p in range(f + 1):
+    H, row, gas = w.matrix, w.row, w.count[G]
+    for p in range(f):
+        nu = w.nu[w.free[p]]
+        total = 0.0
+        for j in range(gas):
+            row[j] = nu[j] * w.n[j]
+            total += row[j]
+        H[f, p] = total
         for q in range(p + 1):
-            H[p, q] = 0.0
-    for j in range(w.count[G]):
-        n = w.n[j]
-        for p in range(f):
-            nu = w.nu[j, w.free[p]]
-            if nu != 0.0:
-                flow = n * nu
-                H[f, p] += flow
-                for q in range(p + 1):
-                    H[p, q] += flow * w.nu[j, w.free[q]]
+            other = w.nu[w.free[q]]
+            total = 0.0
+            for j in range(gas):
+                total += row[j] * other[j]
+            H[p, q] = total
     for p in range(f):
         w.right[p] = w.demand[w.free[p]] - w.supply[w.free[p]]
         w.step[p] = 1.0 / np.sqrt(H[p, p]) if H[p, p] > VANISHING else 0.0
@@ -101,17 +102,20 @@ def solve(matrix: Any, right: Any, size: int) -> bool:
 @inlined
 def step_length(f: int, w: Work) -> float:
     """Fraction of the step in ``w.right`` that may be taken."""
-    alpha, rise = 1.0, w.right[f]
+    alpha, change, gas = 1.0, w.row, w.count[G]
+    for j in range(gas):
+        change[j] = w.right[f]
+    for p in range(f):
+        nu = w.nu[w.free[p]]
+        for j in range(gas):
+            change[j] += nu[j] * w.right[p]
     major = MAJOR * w.value[N] * w.value[X]
-    for j in range(w.count[G]):
-        change = rise
-        for p in range(f):
-            change += w.nu[j, w.free[p]] * w.right[p]
+    for j in range(gas):
         if w.n[j] > major:
-            if abs(change) * alpha > CHANGE:
-                alpha = CHANGE / abs(change)
-        elif change * alpha + w.u[j] > -CHANGE:
-            alpha = max((-CHANGE - w.u[j]) / change, 1.0e-3)
+            if abs(change[j]) * alpha > CHANGE:
+                alpha = CHANGE / abs(change[j])
+        elif change[j] * alpha + w.u[j] > -CHANGE:
+            alpha = max((-CHANGE - w.u[j]) / change[j], 1.0e-3)
     return alpha
 
 

@@ -54,10 +54,10 @@ def start_phases(w: Work) -> None:
 def taken_back(i: int, w: Work) -> bool:
     """Tell whether some species balances coordinate ``i``, of which there is none; if not, all its holders are absent."""
     for j in range(w.count[K]):
-        if w.nu[j, i] < 0.0:
+        if w.nu[i, j] < 0.0:
             possible = True
             for k in range(w.c.size):
-                possible &= not (w.kind[k] == EMPTY and w.nu[j, k] > 0.0)
+                possible &= not (w.kind[k] == EMPTY and w.nu[k, j] > 0.0)
             if possible:
                 return True
     return False
@@ -75,7 +75,7 @@ def gas_for(i: int, w: Work) -> int:
     """Gas species that holds most of coordinate ``i`` at the present activities, NONE if none does."""
     best, found = 0.0, NONE
     for j in range(w.count[G]):
-        share = abs(w.nu[j, i])
+        share = abs(w.nu[i, j])
         if share > ENTRY:
             share *= np.exp(max(min(w.u[j], 0.0), -600.0))
             if share > best:
@@ -109,7 +109,7 @@ def saturating(i: int, w: Work) -> int:
     sign = -1.0 if w.supply[i] > 0.0 else 1.0
     best, found = np.inf, NONE
     for j in range(w.count[G], w.count[K]):
-        nu = sign * w.nu[j, i]
+        nu = sign * w.nu[i, j]
         if nu > ENTRY and -w.u[j] / nu < best:
             best, found = -w.u[j] / nu, j
     if found != NONE:
@@ -122,8 +122,8 @@ def place_for(k: int, w: Work) -> int:
     """Free place for condensed ``k``: that of least turnover, so that major species stay in the basis; NONE if none."""
     best, found = np.inf, NONE
     for i in range(w.c.size):
-        if w.kind[i] == FREE and abs(w.nu[k, i]) > ENTRY:
-            turnover = max(w.supply[i], w.demand[i]) / abs(w.nu[k, i])
+        if w.kind[i] == FREE and abs(w.nu[i, k]) > ENTRY:
+            turnover = max(w.supply[i], w.demand[i]) / abs(w.nu[i, k])
             if turnover < best:
                 best, found = turnover, i
     return found
@@ -132,11 +132,11 @@ def place_for(k: int, w: Work) -> int:
 @inlined
 def gas_ends(k: int, place: int, w: Work) -> bool:
     """Tell whether no gas could stay if ``k`` took ``place``: no free coordinate would hold anything."""
-    t = w.c[place] / w.nu[k, place]
+    t = w.c[place] / w.nu[place, k]
     for i in range(w.c.size):
         if w.kind[i] == FREE and i != place:
-            left = w.c[i] - t * w.nu[k, i]
-            if abs(left) > VANISHES * (abs(w.c[i]) + abs(t * w.nu[k, i])):
+            left = w.c[i] - t * w.nu[i, k]
+            if abs(left) > VANISHES * (abs(w.c[i]) + abs(t * w.nu[i, k])):
                 return False
     return True
 
@@ -153,7 +153,7 @@ def first_used_up(k: int, alpha: float, w: Work) -> int:
     for i in range(w.c.size):
         if w.kind[i] == PRESENT:
             amount = present_amount(i, w)
-            taken = w.nu[k, i] - alpha * (w.c[i] - amount) / w.value[N]
+            taken = w.nu[i, k] - alpha * (w.c[i] - amount) / w.value[N]
             if taken > ENTRY and max(amount, 0.0) / taken < best:
                 best, found = max(amount, 0.0) / taken, i
     if found >= 0 and alpha != 0.0:
@@ -169,11 +169,11 @@ def place_of_join(k: int, w: Work) -> int:
         return first_used_up(k, 0.0, w)
     if w.count[GAS] == 0 or not gas_ends(k, place, w):
         return place
-    used = first_used_up(k, w.nu[k, place] * w.value[N] / w.c[place], w)
+    used = first_used_up(k, w.nu[place, k] * w.value[N] / w.c[place], w)
     if used == NONE:
         set_gas(0.0, w)
     elif used >= 0:
-        if abs(w.nu[k, used]) > ENTRY:
+        if abs(w.nu[used, k]) > ENTRY:
             return used
         w.kind[used] = FREE
     return place if used != STUCK else STUCK
@@ -187,7 +187,7 @@ def place_of_gas(w: Work) -> int:
         if w.kind[i] == PRESENT:
             taken = 0.0
             for j in range(w.count[G]):
-                taken += w.nu[j, i] * w.n[j]
+                taken += w.nu[i, j] * w.n[j]
             taken /= w.value[X]
             if taken > ENTRY and w.c[i] / taken < best:
                 best, found = w.c[i] / taken, i

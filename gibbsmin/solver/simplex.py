@@ -34,8 +34,8 @@ def start_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> None:
     for k in range(w.count[K]):
         total = 0.0
         for i in range(m):
-            w.nu[k, i] = w.inverse[i, i] * A[w.species[k], i]
-            total += w.nu[k, i]
+            w.nu[i, k] = w.inverse[i, i] * A[i, w.species[k]]
+            total += w.nu[i, k]
         w.d[k] = g[w.species[k]] - ARTIFICIAL * total + (bias if k < w.count[G] else 0.0)
 
 
@@ -57,12 +57,12 @@ def leaving(j: int, bland: bool, w: Work) -> int:
     """Return the place that candidate ``j`` empties first, -1 if none."""
     best, found = np.inf, -1
     for i in range(w.c.size):
-        entry = w.nu[j, i]
+        entry = w.nu[i, j]
         if entry > PIVOT:
             ratio = max(w.c[i], 0.0) / entry
             better = ratio < best
             if ratio == best:
-                better = w.basis[i] < w.basis[found] if bland else entry > w.nu[j, found]
+                better = w.basis[i] < w.basis[found] if bland else entry > w.nu[found, j]
             if better:
                 best, found = ratio, i
     return found
@@ -76,12 +76,12 @@ def real_for(place: int, w: Work) -> int:
     """
     best, found = np.inf, -1
     for j in range(w.count[K]):
-        entry = abs(w.nu[j, place])
+        entry = abs(w.nu[place, j])
         if entry > PIVOT:
             price = w.d[j]
             for i in range(w.c.size):
                 if w.basis[i] < 0:
-                    price += ARTIFICIAL * w.nu[j, i]
+                    price += ARTIFICIAL * w.nu[i, j]
             if price < best * entry:
                 best, found = price / entry, j
     return found

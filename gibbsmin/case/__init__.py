@@ -1,0 +1,1 @@
+"""The case file: schema, reading, defaults, and turning a case into a study."""

@@ -1,0 +1,64 @@
+"""Reading a case file: from a path to a study that can be run."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from pydantic import ValidationError
+
+from gibbsmin.case.complaints import complaint
+from gibbsmin.case.fields import RuleError
+from gibbsmin.case.schema import Case
+from gibbsmin.case.source import Source, open_source
+from gibbsmin.case.study import Study
+from gibbsmin.errors import InputError
+from gibbsmin.species.own import read_species
+from gibbsmin.species.record import Species
+
+
+def read_case(path: str | Path, *, outside: bool = False) -> Study:
+    """Read a case file.
+
+    Parameters
+    ----------
+    path : str or Path
+        The file.
+    outside : bool
+        Whether files that the case names may lie outside its folder.
+
+    Returns
+    -------
+    Study
+        Checked; ``run()`` solves it, ``describe()`` says what it asks for.
+
+    Raises
+    ------
+    CaseError
+        The file cannot be read, or asks for what is not possible; with file, line, key, and what would be right.
+    """
+    source = open_source(path)
+    try:
+        case = Case.model_validate(source.data)
+    except ValidationError as error:
+        raise complaint(error, source) from None
+    try:
+        return Study.of(case, _own_species(case, source, outside), str(source.path), source.sha256)
+    except RuleError as error:
+        raise source.error(error.message, error.key) from None
+
+
+def _own_species(case: Case, source: Source, outside: bool) -> list[Species]:
+    """Read the files of own species that a case names."""
+    own: list[Species] = []
+    for number, name in enumerate(case.species.files):
+        key = ("species", "files", number)
+        place = (source.folder / name).resolve()
+        if not outside and not place.is_relative_to(source.folder):
+            raise source.error(f"{name!r} lies outside the folder of the case; put a copy beside the case", key)
+        if not place.is_file():
+            raise source.error(f"there is no file {name!r} in the folder of the case", key)
+        try:
+            own += read_species(place)
+        except InputError as error:
+            raise source.error(f"{name}: {error}", key) from None
+    return own

@@ -1,0 +1,151 @@
+"""The case file: its tables and keys, the rules between them, and their JSON Schema."""
+
+from __future__ import annotations
+
+import re
+from typing import Any, Final, Literal
+
+from pydantic import Field, model_validator
+
+from gibbsmin.case.axes import MAX_STATES, Axis, axis_values
+from gibbsmin.case.feed_schema import Feed
+from gibbsmin.case.fields import Number, Pressure, RuleError, Table, Temperature, Text
+
+FROM_FEEDS: Final = "from feeds"
+MAX_AXES: Final = 2
+"""Largest number of inputs that one case may vary."""
+
+Names = list[Text]
+NAME: Final = r"^[A-Za-z0-9_-]{1,40}$"
+"""What the name of a feed may be."""
+
+
+class SpeciesTable(Table):
+    """Which species may form."""
+
+    elements: Text = Field(
+        default=FROM_FEEDS,
+        description="Elements whose species may form: 'from feeds', or symbols with blanks between them.",
+        examples=["from feeds", "C H O N"],
+    )
+    allow: Names | None = Field(
+        default=None,
+        description="The species that may form, one by one; then elements, condensed, ions and exclude are not given.",
+        examples=[["CH4", "H2O", "CO", "CO2", "H2", "N2"]],
+    )
+    condensed: bool = Field(default=True, description="Whether solids and liquids may form.", examples=[True])
+    ions: bool = Field(default=False, description="Whether ions and electrons may form.", examples=[False])
+    exclude: Names = Field(default=[], description="Species that must not form.", examples=[["C(s):graphite", "C2H2"]])
+    inert: Names = Field(
+        default=[],
+        description="Species that pass through without reacting; their atoms take no part.",
+        examples=[["Ar"]],
+    )
+    files: Names = Field(
+        default=[],
+        description="Files of own species (TOML), in the folder of the case.",
+        examples=[["my_species.toml"]],
+    )
+
+    @model_validator(mode="after")
+    def _allow_stands_alone(self) -> SpeciesTable:
+        usual = {"elements": FROM_FEEDS, "condensed": True, "ions": False, "exclude": []}
+        clash = [key for key, value in usual.items() if getattr(self, key) != value]
+        if self.allow is not None and clash:
+            raise RuleError(f"allow lists every species that may form; leave out {' and '.join(clash)}", clash[0])
+        if self.allow is not None and not self.allow:
+            raise RuleError("lists no species; name at least one, or leave allow out", "allow")
+        return self
+
+
+class Held(Table):
+    """The two conditions that stay fixed while the mixture settles."""
+
+    temperature: Temperature = Field(
+        description="Temperature of the settled mixture. A bare number is K.", examples=["870 degC", 1143.15]
+    )
+    pressure: Pressure = Field(
+        description="Pressure of the settled mixture, absolute. A bare number is Pa.", examples=["24 bar", 101325.0]
+    )
+
+
+class Show(Table):
+    """What the tables show; the files always hold everything."""
+
+    threshold: Number = Field(
+        default=1e-6,
+        gt=0.0,
+        lt=1.0,
+        description="Species below this mole fraction of their phase are summed in one line.",
+        examples=["1 ppm", 1e-4],
+        validate_default=False,
+    )
+    sort: Literal["amount", "name"] = Field(
+        default="amount", description="Order of the species in tables.", examples=["name"]
+    )
+
+
+class Case(Table):
+    """A study: what goes in, what may form, what is held, and what is varied."""
+
+    title: Text = Field(description="One line that says what the case is about.", examples=["Reformer, tube outlet"])
+    species: SpeciesTable = Field(
+        default=SpeciesTable(),
+        description="The table [species]: which species may form.",
+        examples=[{"elements": "from feeds", "condensed": True}],
+    )
+    feeds: dict[str, Feed] = Field(
+        json_schema_extra={"propertyNames": {"pattern": NAME}},
+        description="What goes in: a table a feed, [feeds.NAME].",
+        examples=[{"steam": {"species": "H2O", "flow": "300 kmol/h", "temperature": "550 degC"}}],
+    )
+    held: Held = Field(
+        description="The table [held]: the two conditions that stay fixed while the mixture settles.",
+        examples=[{"temperature": "870 degC", "pressure": "24 bar"}],
+    )
+    sweep: list[Axis] = Field(
+        default=[],
+        description="Inputs that are varied, one [[sweep]] table each; the last one varies fastest.",
+        examples=[[{"vary": "held.temperature", "from": "600 degC", "to": "1000 degC", "points": 81}]],
+    )
+    show: Show = Field(
+        default=Show(),
+        description="The table [show]: what the tables show; the files hold everything.",
+        examples=[{"threshold": "1 ppm"}],
+    )
+
+    @model_validator(mode="after")
+    def _rules_between_tables(self) -> Case:
+        if not self.feeds:
+            raise RuleError("there are no feeds; add at least one table [feeds.NAME]", "feeds")
+        if len(self.sweep) > MAX_AXES:
+            raise RuleError(f"{len(self.sweep)} inputs are varied; at most {MAX_AXES} can be", "sweep", MAX_AXES)
+        for name in self.feeds:
+            if not re.search(NAME, name):
+                message = f"{name!r} will not do as the name of a feed; use up to 40 letters, digits, _ and -"
+                raise RuleError(message, "feeds", name)
+        for number, axis in enumerate(self.sweep):
+            if axis.vary in [earlier.vary for earlier in self.sweep[:number]]:
+                raise RuleError(f"{axis.vary} is varied twice", "sweep", number, "vary")
+            try:
+                axis_values(axis, self.feeds)
+            except RuleError as error:
+                raise RuleError(error.message, "sweep", number, *error.key) from None
+        states = 1
+        for axis in self.sweep:
+            states *= axis.points or len(axis.values or [])
+        if states > MAX_STATES:
+            raise RuleError(f"the sweep has {states:,} states; at most {MAX_STATES:,} can be solved", "sweep", 0)
+        return self
+
+
+def case_schema() -> dict[str, Any]:
+    """Return the JSON Schema of case files.
+
+    Returns
+    -------
+    dict
+        Draft 2020-12, with a description and examples for every key.
+    """
+    schema = Case.model_json_schema(by_alias=True)
+    return {"$schema": "https://json-schema.org/draft/2020-12/schema", **schema, "title": "gibbsmin case file"}

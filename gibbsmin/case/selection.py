@@ -1,0 +1,156 @@
+"""Which species may form, from the ``[species]`` table and the feeds."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.case.fields import RuleError
+from gibbsmin.case.recipe import Find, Recipe
+from gibbsmin.case.schema import FROM_FEEDS, SpeciesTable
+from gibbsmin.elements import ATOMIC_WEIGHT, CHARGE
+from gibbsmin.equilibrium.system import System
+from gibbsmin.errors import InputError, SpeciesError, nearest
+from gibbsmin.species.database import load
+from gibbsmin.species.record import Species
+
+Floats = NDArray[np.float64]
+
+
+def finder(own: Sequence[Species]) -> Find:
+    """Give a look-up that knows the user's own species before those of the database."""
+    named = {label: record for record in own for label in (record.name, *record.aliases)}
+
+    def find(name: str) -> Species:
+        return named[name] if name in named else load().get(name)
+
+    return find
+
+
+def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[Species]) -> System:
+    """Make the system that a case asks for.
+
+    Parameters
+    ----------
+    table : SpeciesTable
+        The ``[species]`` table.
+    recipes : sequence of Recipe
+        The feeds, for their elements.
+    own : sequence of Species
+        Species of the user's own files.
+
+    Returns
+    -------
+    System
+
+    Raises
+    ------
+    RuleError
+        A name or an element is not known, or nothing is left to react.
+    """
+    find = finder(own)
+    allow = _found(table.allow or [], "allow", find)
+    exclude = _found(table.exclude, "exclude", find)
+    inert = _found(table.inert, "inert", find)
+    inert_names = [record.name for record in inert]
+    try:
+        if allow:
+            listed = [*allow, *(record for record in inert if record not in allow)]
+            return System.from_species(listed, inert=inert_names)
+        elements = _elements(table, recipes, inert)
+        names = [record.name for record in exclude]
+        ours = [record for record in own if record in inert or _wanted(record, table, elements)]
+        return System.from_elements(
+            elements, condensed=table.condensed, ions=table.ions, exclude=names, inert=inert_names, extra=ours
+        )
+    except RuleError:
+        raise
+    except InputError as error:
+        raise RuleError(str(error), "species") from None
+
+
+def element_row(recipe: Recipe, system: System) -> Floats:
+    """Count the elements in one unit of a feed.
+
+    Parameters
+    ----------
+    recipe : Recipe
+        The feed.
+    system : System
+        The system it goes into.
+
+    Returns
+    -------
+    array (E,)
+        Amount of each element of the system, [mol].
+
+    Raises
+    ------
+    RuleError
+        The feed holds an element that the system has no place for.
+    """
+    row = np.zeros(len(system.elements))
+    place = {name: k for k, name in enumerate(system.elements)}
+    column = {name: k for k, name in enumerate(system.species)}
+    parts: list[tuple[str, dict[str, float], float]] = []
+    for record, n in recipe.species.items():
+        if record.name in column:
+            row += n * np.asarray(system.element_matrix)[:, column[record.name]]
+        else:
+            charge = {CHARGE: float(record.charge)} if record.charge else {}
+            parts.append((record.name, {**record.elements, **charge}, n))
+    parts += [(element, {element: 1.0}, n) for element, n in recipe.atoms.items()]
+    for name, counts, n in parts:
+        missing = sorted(counts.keys() - place.keys())
+        if missing:
+            within = "" if missing == [name] else f" (in {name})"
+            raise RuleError(
+                f"the feed holds {' and '.join(missing)}{within}, which the species of the case have no place for: "
+                f"they are made of {', '.join(system.elements)}; change [species], or take it out of the feed",
+                recipe.name,
+                recipe.made_of,
+            )
+        for element, atoms in counts.items():
+            row[place[element]] += n * atoms
+    return row
+
+
+def _found(names: Sequence[str], key: str, find: Find) -> list[Species]:
+    """Look up the names of a list."""
+    records = []
+    for number, name in enumerate(names):
+        try:
+            record = find(name)
+        except SpeciesError as error:
+            raise RuleError(str(error), "species", key, number) from None
+        if record in records:
+            raise RuleError(f"{name!r} names {record.name!r}, which is named before", "species", key, number)
+        records.append(record)
+    return records
+
+
+def _wanted(record: Species, table: SpeciesTable, elements: Sequence[str]) -> bool:
+    """Tell whether a species of the user's own is one of those that the table asks for."""
+    kind = (table.condensed or not record.condensed) and (table.ions or not record.charge)
+    return kind and set(record.elements) <= set(elements)
+
+
+def _elements(table: SpeciesTable, recipes: Sequence[Recipe], inert: Sequence[Species]) -> list[str]:
+    """List the elements that take part."""
+    if table.elements != FROM_FEEDS:
+        symbols = table.elements.replace(",", " ").split()
+        for symbol in symbols:
+            if symbol not in ATOMIC_WEIGHT:
+                near = nearest(symbol, [FROM_FEEDS, *ATOMIC_WEIGHT])
+                raise RuleError(f"there is no element {symbol!r}{near}", "species", "elements")
+        return list(dict.fromkeys(symbols))
+    found: dict[str, None] = {}
+    for recipe in recipes:
+        for record in recipe.species:
+            found.update(dict.fromkeys(record.elements) if record not in inert else {})
+        found.update(dict.fromkeys(recipe.atoms))
+    if not found:
+        raise RuleError("the feeds hold nothing but inert species, so nothing can react", "species", "inert")
+    return list(found)

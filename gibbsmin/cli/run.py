@@ -1,0 +1,108 @@
+"""``gibbsmin run``: solve cases, print their tables, write their result folders."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING, Annotated, Any
+
+import typer
+
+from gibbsmin.cli.messages import NOT_CERTIFIED, WRONG, Progress, guarded, say
+from gibbsmin.cli.messages import show as show_lines
+from gibbsmin.errors import GibbsminError, InputError
+
+if TYPE_CHECKING:
+    from gibbsmin.case.study import Study
+
+_MANY = 10_000  # states from which writing takes so long that it is announced
+
+
+@guarded
+def run(
+    cases: Annotated[list[Path], typer.Argument(metavar="CASE", help="Case files (TOML).")],
+    out: Annotated[
+        Path | None,
+        typer.Option(
+            metavar="DIR", help="Result folder; for several cases the folder of their folders. Default: results/CASE."
+        ),
+    ] = None,
+    as_json: Annotated[bool, typer.Option("--json", help="Print the result as JSON and nothing else.")] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", "-q", help="Print no tables; errors still show.")] = False,
+) -> None:
+    """Solve each case, print its table, and write its result folder.
+
+    Exit code 0: all states solved and certified. 1: some state could not be certified, the rest is written. 2: a
+    case or the call is wrong, and nothing is solved.
+    """
+    folders = _folders(cases, out)
+    studies = _read(cases)
+    from gibbsmin.report.folder import as_json as written
+    from gibbsmin.report.folder import check_place
+
+    for folder in folders:
+        check_place(folder)
+    documents = []
+    certified = True
+    for number, (study, folder) in enumerate(zip(studies, folders, strict=True)):
+        if number and not as_json and not quiet:
+            typer.echo("")
+        data, good = _solve(study, folder, show=not as_json and not quiet)
+        documents.append(data)
+        certified = certified and good
+    if as_json:
+        typer.echo(written(documents[0] if len(documents) == 1 else documents), nl=False)
+    if not certified:
+        raise typer.Exit(NOT_CERTIFIED)
+
+
+def _folders(cases: list[Path], out: Path | None) -> list[Path]:
+    """Where each case's result goes."""
+    if out is not None and len(cases) == 1:
+        return [out]
+    folders = [(out or Path("results")) / case.stem for case in cases]
+    twice = sorted({str(folder) for folder in folders if folders.count(folder) > 1})
+    if twice:
+        raise InputError(f"several cases would write to {twice[0]}; run them apart, each with its own --out")
+    return folders
+
+
+def _read(cases: list[Path]) -> list[Study]:
+    """Read all cases before any is solved, and say all that is wrong."""
+    from gibbsmin.case.read import read_case
+
+    studies, wrong = [], 0
+    for case in cases:
+        try:
+            studies.append(read_case(case))
+        except GibbsminError as error:
+            say(f"gibbsmin: {error}")
+            wrong += 1
+    if wrong:
+        raise typer.Exit(WRONG)
+    return studies
+
+
+def _solve(study: Study, folder: Path, show: bool) -> tuple[dict[str, Any], bool]:
+    """Solve one case, write its folder, show it; the document, and whether all states are certified."""
+    from gibbsmin.compiled import cache_is_cold
+    from gibbsmin.report.folder import write_folder
+    from gibbsmin.report.judge import judge
+    from gibbsmin.report.summary import summary
+
+    if cache_is_cold():
+        say("Compiling the solver for this machine, once; about 15 s ...")
+    progress = Progress("solving")
+    try:
+        result = study.run(progress)
+    finally:
+        progress.close()
+    judged = judge(result)
+    if len(judged) > _MANY:
+        say(f"Writing {len(judged)} states to {folder} ...")
+    data = write_folder(result, judged, folder)
+    if show:
+        show_lines(summary(result, judged, folder))
+    good = [bool(flag) for flag in result.batch.certified]
+    if not all(good):
+        say(f"gibbsmin: {good.count(False)} of {len(good)} states could not be certified; the rest is written")
+    return data, all(good)

@@ -1,0 +1,1 @@
+"""The trade's arithmetic and its cautions, on names and plain numbers."""

@@ -1,0 +1,1 @@
+"""Results into what people read: terminal tables, spreadsheets, the result folder. Nothing is solved here."""

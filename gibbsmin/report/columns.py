@@ -1,0 +1,124 @@
+"""The columns of a sweep's table: varied inputs, heat, gas species, solids and liquids."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, Final, NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.report.fractions import gas_fractions
+from gibbsmin.report.numbers import MISSING, figures, plain
+from gibbsmin.report.words import WIDTH
+from gibbsmin.units import from_si
+
+if TYPE_CHECKING:
+    from gibbsmin.case.result import Result
+
+_GAP: Final = 2
+_IN_PPM: Final = 1e-3  # a gas species that stays below it is shown in ppm
+_SHOWN: Final = 1e-6  # one that stays below this is not shown
+
+
+class Column(NamedTuple):
+    """A column: its ``head``, its ``unit``, and a cell for each state shown."""
+
+    head: str
+    unit: str
+    cells: Sequence[str]
+
+    @property
+    def width(self) -> int:
+        """Characters it takes, the gap on its left included."""
+        return max(len(self.head), len(self.unit), *(len(cell) for cell in self.cells)) + _GAP
+
+
+def short(name: str) -> str:
+    """Last part of a dotted input."""
+    return name.rsplit(".", 1)[-1]
+
+
+def unit_word(unit: str) -> str:
+    """Write a unit as it is shown: nothing for a plain number."""
+    return "" if unit == "1" else unit
+
+
+def fitting(first: Sequence[Column], rest: Sequence[Column]) -> list[Column]:
+    """All of ``first``, and as many of ``rest`` as 80 columns have room for."""
+    kept, used = list(first), sum(column.width for column in first)
+    for column in rest:
+        if used + column.width <= WIDTH:
+            kept.append(column)
+            used += column.width
+    return kept
+
+
+def drawn(columns: Sequence[Column]) -> list[str]:
+    """Lines of a table: head, unit, and a row a state."""
+    rows = [[column.head for column in columns], [column.unit for column in columns]]
+    rows += [list(cells) for cells in zip(*(column.cells for column in columns), strict=True)]
+    return [
+        "".join(f"{text:>{column.width}}" for text, column in zip(row, columns, strict=True)).rstrip() for row in rows
+    ]
+
+
+def input_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
+    """Show the varied inputs in the units that were typed."""
+    return [
+        Column(short(name)[:16], unit_word(result.input_units.get(name, "")), [plain(float(values[i])) for i in shown])
+        for name, values in result.inputs.items()
+    ]
+
+
+def heat_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
+    """Heat to be supplied, where it is known."""
+    heats = [result.heat(int(i)) for i in shown]
+    known = [heat for heat in heats if heat is not None]
+    if not known:
+        return []
+    watt = "W" if result.basis == "mol/s" else "J"
+    largest = max(map(abs, known))
+    scale, prefix = next(((s, p) for s, p in ((1e6, "M"), (1e3, "k")) if largest >= s), (1.0, ""))
+    return [Column("heat", prefix + watt, [MISSING if h is None else figures(h / scale, 3) for h in heats])]
+
+
+def gas_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
+    """Gas species by their largest share, in mole percent, or in ppm where they stay below 0.1 %."""
+    good = np.asarray(result.batch.certified, bool)
+    gas = np.asarray(result.system.gas, bool)
+    fractions = gas_fractions(result.batch.amounts, gas)  # (states, S)
+    largest = np.where(gas, fractions[good].max(axis=0, initial=0.0), -1.0)
+    columns = []
+    for k in [int(k) for k in np.argsort(-largest) if largest[k] >= _SHOWN]:
+        ppm = bool(largest[k] < _IN_PPM)
+        cells = [_share(float(fractions[i, k]), ppm) if good[i] else MISSING for i in shown]
+        columns.append(Column(result.system.species[k], "ppm" if ppm else "%", cells))
+    return columns
+
+
+def condensed_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
+    """Solids and liquids that occur: those that come or go along the sweep first, then by amount."""
+    good = np.asarray(result.batch.certified, bool)
+    amounts = result.batch.amounts  # (states, S)
+    unit = result.display_units.get("amount", result.basis)
+    occurring = [k for k in np.flatnonzero(~np.asarray(result.system.gas, bool)) if amounts[good, k].any()]
+    occurring.sort(key=lambda k: (bool((amounts[good, k] > 0.0).all()), -float(amounts[good, k].max())))
+    return [
+        Column(
+            result.system.species[k],
+            unit,
+            [figures(from_si(float(amounts[i, k]), unit), 3) if good[i] else MISSING for i in shown],
+        )
+        for k in occurring
+    ]
+
+
+def _share(x: float, ppm: bool) -> str:
+    """Write a share of the gas; what rounds to nothing and is not says so."""
+    scaled, least = (1e6 * x, 0.01) if ppm else (100.0 * x, 0.005)
+    if 0.0 < scaled < least:
+        return "<0.01"
+    if ppm:
+        return f"{scaled:.2f}" if scaled < 10.0 else figures(scaled, 3)
+    return f"{scaled:.2f}"

@@ -1,0 +1,46 @@
+"""What ``gibbsmin run`` prints of a result: its table, its cautions, and where it was written."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from gibbsmin.practice.cautions import CLOSING, Caution, gather
+from gibbsmin.report.judge import peaks
+from gibbsmin.report.sweep_table import sweep_table
+from gibbsmin.report.table import THRESHOLD, state_table
+from gibbsmin.report.view import view
+from gibbsmin.report.words import labelled
+
+if TYPE_CHECKING:
+    from gibbsmin.case.result import Result
+
+
+def summary(result: Result, judged: Sequence[Sequence[Caution]], folder: Path) -> list[str]:
+    """Lines for the terminal.
+
+    Parameters
+    ----------
+    result : Result
+    judged : sequence of sequences of Caution
+        The cautions of each state.
+    folder : Path
+        Where the result was written.
+
+    Returns
+    -------
+    list of str
+        None longer than 80 columns, but for the name of the folder.
+    """
+    if len(result.batch) > 1:
+        lines = sweep_table(result)
+    else:
+        threshold = float(result.case.get("show", {}).get("threshold") or THRESHOLD)
+        lines = state_table(result.title, view(result, 0), result.basis, result.display_units, threshold)
+    found = gather(judged, peaks(result))
+    for caution in found:
+        lines += labelled("caution", caution.text)
+    if found:
+        lines += labelled("note", CLOSING)
+    return [*lines, f"{'written':<15}{folder}/"]

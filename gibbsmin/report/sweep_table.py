@@ -1,0 +1,146 @@
+"""The terminal table of a sweep: one row a state, the major species as columns, 80 columns wide."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import TYPE_CHECKING, Final
+
+import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.report.columns import (
+    condensed_columns,
+    drawn,
+    fitting,
+    gas_columns,
+    heat_columns,
+    input_columns,
+    short,
+    unit_word,
+)
+from gibbsmin.report.numbers import plain
+from gibbsmin.report.onsets import Onset, onsets
+from gibbsmin.report.table import certificate, heading
+from gibbsmin.report.words import labelled
+
+if TYPE_CHECKING:
+    from gibbsmin.case.result import Result
+
+ROWS: Final = 40
+"""States shown at most; a longer sweep shows evenly spaced ones."""
+
+_TOGETHER: Final = 2  # solids and liquids that still stand beside the gas; more get a table of their own
+_GROUPS: Final = 6
+
+
+def sweep_table(result: Result) -> list[str]:
+    """Lines that show a sweep.
+
+    Parameters
+    ----------
+    result : Result
+        With at least one varied input.
+
+    Returns
+    -------
+    list of str
+        None longer than 80 columns.
+    """
+    count = len(result.batch)
+    shown = chosen([len(axis.values) for axis in result.axes])
+    inputs, heat = input_columns(result, shown), heat_columns(result, shown)
+    gas, condensed = gas_columns(result, shown), condensed_columns(result, shown)
+    lines = [*heading(result.title), *_held(result, bool(gas), bool(heat)), ""]
+    if len(condensed) <= _TOGETHER:
+        lines += drawn(fitting([*inputs, *heat], [*condensed, *gas]))
+    else:
+        if gas:
+            lines += [*drawn(fitting([*inputs, *heat], gas)), ""]
+        columns = fitting(inputs, condensed)
+        lines += ["solids and liquids", *drawn(columns)]
+        hidden = [column.head for column in condensed if column not in columns]
+        if hidden:
+            lines += labelled("and", ", ".join(hidden))
+    if len(shown) < count:
+        lines.append(f"  {len(shown)} of {count} states; table.csv has them all")
+    lines.append("")
+    return [*lines, *onset_lines(onsets(result), result.input_units), *labelled("certificate", _certificate(result))]
+
+
+def chosen(sizes: Sequence[int]) -> NDArray[np.intp]:
+    """Choose the states to show: all where they fit, else evenly spaced values of each input.
+
+    Parameters
+    ----------
+    sizes : sequence of int
+        Number of values of each input; the last varies fastest.
+
+    Returns
+    -------
+    array (at most ROWS,)
+        Indices of states.
+    """
+    states = np.arange(int(np.prod(sizes)), dtype=np.intp).reshape(sizes)
+    if states.size <= ROWS:
+        return states.ravel()
+    left = ROWS
+    for place, size in enumerate(sizes):
+        kept = min(size, left if place == len(sizes) - 1 else max(2, int(left ** (1.0 / (len(sizes) - place)))))
+        states = states.take(np.unique(np.linspace(0, size - 1, kept).round().astype(int)), axis=place)
+        left //= kept
+    return states.ravel()
+
+
+def _held(result: Result, gas: bool, heat: bool) -> list[str]:
+    """Say what is varied, what stays the same in all states, and what the columns are."""
+    held = result.case.get("held", {})
+    same = [f"{key} {value}" for key, value in held.items() if f"held.{key}" not in result.inputs and value is not None]
+    lines = labelled("varied", " and ".join(result.inputs))
+    if same:
+        lines += labelled("held", ", ".join(same))
+    told = [f"gas in mole %{', wet' if 'H2O' in result.system.species else ''}"] if gas else []
+    told += ["heat to be supplied (minus: given off)"] if heat else []
+    return lines + (labelled("columns", "; ".join(told)) if told else [])
+
+
+def onset_lines(found: Sequence[Onset], units: Mapping[str, str]) -> list[str]:
+    """Say along one input where each phase comes and goes: ``from`` and ``to`` between which two states.
+
+    Parameters
+    ----------
+    found : sequence of Onset
+    units : mapping of str to str
+        Unit of each input.
+
+    Returns
+    -------
+    list of str
+        A paragraph for each value of the other inputs.
+    """
+    groups: dict[tuple[tuple[str, float], ...], dict[str, list[str]]] = {}
+    for onset in found:
+        ends = groups.setdefault(tuple(onset.others.items()), {}).setdefault(onset.phase, [])
+        ends.append(f"{'from' if onset.appears else 'to'} {plain(onset.low)}..{plain(onset.high)}")
+    lines = []
+    for others, phases in list(groups.items())[:_GROUPS]:
+        told = "; ".join(f"{phase} {', '.join(ends)}" for phase, ends in phases.items())
+        unit = f" {unit_word(units.get(found[0].axis, ''))}".rstrip()
+        where = "".join(f" at {short(name)} {plain(value)}" for name, value in others)
+        lines += labelled("onsets", f"along {short(found[0].axis)}{where}: {told}{unit}")
+    if len(groups) > _GROUPS:
+        lines += labelled("", f"and {len(groups) - _GROUPS} lines of states more")
+    return lines
+
+
+def _certificate(result: Result) -> str:
+    """Put the proof of all states, or what failed, in one line."""
+    batch = result.batch
+    good = np.asarray(batch.certified, bool)
+    if good.all():
+        worst = certificate(
+            float(batch.element_residual.max()), float(np.abs(batch.gap).max()), float(batch.worst_affinity.max())
+        )
+        return f"all {len(good)} {worst}"
+    first = int(np.flatnonzero(~good)[0])
+    bad = int((~good).sum())
+    return f"{bad} of {len(good)} states NOT certified; the first is state {first + 1}: {batch.reason[first]}"

@@ -1,0 +1,116 @@
+"""The terminal tables: 80 columns, the right numbers, nothing about states that are not certified."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+import pytest
+from report_fakes import FakeResult
+
+from gibbsmin.report.judge import judge
+from gibbsmin.report.onsets import onsets
+from gibbsmin.report.summary import summary
+from gibbsmin.report.sweep_table import ROWS, chosen
+
+
+def shown(result: Any) -> list[str]:
+    return summary(result, judge(result), Path("results/x"))
+
+
+def test_one_state_says_what_a_reader_asks() -> None:
+    text = "\n".join(shown(FakeResult()))
+    assert "A made-up reformer outlet" in text
+    assert "870 degC and 24 bar absolute" in text
+    # dry: 2.61 / (1 - 0.325) = 3.867
+    row = next(line for line in text.splitlines() if line.startswith("  CH4"))
+    assert row.split() == ["CH4", "2.610", "2.61", "3.87"]
+    assert "1 more below 1 ppm" in text
+    assert "6.800 MW to be supplied" in text
+    assert "C(s):graphite -1.72 RT (saturation 0.18)" in text
+    assert "results/x/" in text
+
+
+@pytest.mark.parametrize("count", [1, 2, 12, 300])
+def test_tables_fit_80_columns(count: int) -> None:
+    result = FakeResult(count)
+    result.title = "A title that somebody made much longer than any terminal is wide, for reasons of their own, truly"
+    assert max(len(line) for line in shown(result)) <= 80
+
+
+def test_only_ascii_is_printed() -> None:
+    assert "\n".join(shown(FakeResult(5))).isascii()
+
+
+def test_long_sweep_shows_some_states_and_says_so() -> None:
+    lines = shown(FakeResult(300))
+    rows = [line for line in lines if line.split() and line.split()[0].isdigit() and len(line.split()) == 9]
+    assert len(rows) == ROWS
+    assert any(f"{ROWS} of 300 states" in line for line in lines)
+
+
+@pytest.mark.parametrize("sizes", [[1], [40], [41], [1000], [5, 8], [40, 50], [3, 1000], [1000, 3], [2, 25]])
+def test_states_shown_are_few_and_span_every_input(sizes: list[int]) -> None:
+    shown = chosen(sizes)
+    assert 1 <= len(shown) <= ROWS
+    assert len(set(shown.tolist())) == len(shown)
+    assert (shown[0], shown[-1]) == (0, np.prod(sizes) - 1)
+    if np.prod(sizes) <= ROWS:
+        assert len(shown) == np.prod(sizes)
+
+
+def test_onset_between_the_states_where_a_solid_comes() -> None:
+    (found,) = onsets(FakeResult(12))  # temperatures 870 ... 881 degC, graphite from the seventh on
+    assert (found.phase, found.appears) == ("C(s):graphite", True)
+    assert (found.low, found.high) == pytest.approx((875.0, 876.0))
+
+
+def test_onset_on_a_falling_axis_is_told_rising() -> None:
+    result = FakeResult(12)
+    result.inputs = {"held.temperature": result.inputs["held.temperature"][::-1].copy()}
+    (found,) = onsets(result)
+    assert not found.appears
+    assert found.low < found.high
+
+
+def test_no_onset_is_read_across_a_state_without_certificate() -> None:
+    result = FakeResult(12)
+    result.batch.certified[6] = False
+    result.batch.reason[6] = "did not converge"
+    assert onsets(result) == []
+
+
+def test_state_without_certificate_shows_no_numbers() -> None:
+    result = FakeResult()
+    result.batch.certified[0] = False
+    result.batch.reason[0] = "the element balance of N did not close."
+    text = "\n".join(shown(result))
+    assert "NOT CERTIFIED" in text
+    assert "balance of N" in text
+    assert "49.40" not in text
+    assert "caution" not in text
+
+
+def test_sweep_with_a_state_without_certificate_marks_it() -> None:
+    result = FakeResult(4)
+    result.batch.certified[1] = False
+    result.batch.reason[1] = "did not converge."
+    lines = shown(result)
+    assert any("1 of 4 states NOT certified; the first is state 2" in line for line in lines)
+    row = next(line for line in lines if line.split()[:1] == ["871"])
+    assert row.split()[2:] == ["-"] * len(row.split()[2:])
+
+
+def test_no_gas_at_all() -> None:
+    result = FakeResult()
+    result.batch.amounts[0] = np.where(result.system.gas, 0.0, 2.0)
+    text = "\n".join(shown(result))
+    assert "solids and liquids" in text
+    assert "mole %" not in text
+
+
+def test_excluded_graphite_is_still_watched() -> None:
+    result = FakeResult()
+    result.batch.element_potentials[0, 0] += np.log(0.8 / 0.18)  # carbon activity 0.8
+    assert any(caution.kind == "carbon" and "0.80" in caution.text for caution in judge(result)[0])
