@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import summing
-from gibbsmin.solver.gas import CEILING, FLOOR
+from gibbsmin.solver.gas import CEILING, FLOOR, VANISHING
 
 
 @summing
@@ -69,7 +69,8 @@ def optimality(A: Any, gas: Any, b: Any, g: Any, n: Any, lam: Any, u: Any) -> tu
         if n[j] > 0.0:
             ln_x = np.log(n[j] / total)
             primal += n[j] * (g[j] + ln_x)
-            worst = max(worst, abs(ln_x - u[j]))
+            if n[j] > VANISHING * amount:
+                worst = max(worst, abs(ln_x - u[j]))
     if X > 0.0:
         worst = max(worst, abs(np.log(X)) if total > 0.0 else np.log(X))
     return abs(primal - dual) / amount, worst
