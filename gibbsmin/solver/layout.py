@@ -6,7 +6,7 @@ from typing import Any, Final, NamedTuple
 
 import numpy as np
 
-from gibbsmin.compiled import inlined
+from gibbsmin.compiled import allocating
 
 # kind[i]: what coordinate i of the basis is
 FREE: Final = 0  # its activity is unknown
@@ -57,7 +57,7 @@ class Work(NamedTuple):
     free: Any  # (m,) int, the free coordinates
 
 
-@inlined
+@allocating
 def new_work(S: int, m: int) -> Work:
     """Allocate the arrays for ``S`` species and ``m`` elements."""
     return Work(
