@@ -101,7 +101,7 @@ def equilibria(
     T, P = (np.ascontiguousarray(np.broadcast_to(value, (count,))) for value in (T, P))
     b = np.ascontiguousarray(np.broadcast_to(b, (count, b.shape[-1])))
     outcome = new_outcome(count, len(system.species), len(system.elements))
-    minimize_many(system.element_matrix, system.gas, b, T, P / STANDARD_PRESSURE, system.table, outcome)
+    minimize_many(system.element_matrix, system.gas, b, 0, False, P / STANDARD_PRESSURE, T, system.table, outcome)
     return Batch(system, T, P, outcome)
 
 

@@ -33,8 +33,22 @@ gas leaves of c. What remains is Newton's method in the other coordinates ("free
     [ H    s ] [dy   ]   [ -F        ]     H = sum_gas n_j nu_j nu_j^T,  s = sum_gas n_j nu_j
     [ s^T  0 ] [dlnN ] = [ -N X ln X ]                                                                      (6)
 
+Other held pairs. With the temperature unknown, tau = d ln T, e_j = H°_j/RT, de_j = e_j - nu_j.e_B and Cp°_j/R, the
+energy of the mixture is H/RT = c.e_B + sum_gas n_j de_j where the balances hold, and
+
+    E = H/RT - (held H)/RT = 0        (held enthalpy)          E = H/RT - c.(g_B + y) - (held S)/R = 0  (entropy)   (7)
+
+joins (5). Since du_j = nu_j.dy + de_j tau it adds to (6) the border
+
+    p = sum_gas n_j de_j nu_j,  q = sum_gas n_j de_j,  r = sum_gas n_j de_j^2 + Cp/R - E                            (8)
+
+(for a held entropy p_i - c_i stands in the row and r = sum_gas n_j de_j^2 + Cp/R - q). At held volume n_j = exp(u_j) with
+g_j = G°_j/RT + ln(RT/(P° V)), there is no ln N, and internal energies stand for enthalpies. As beta = 1/T the energy
+programme is convex where Cp > 0 (`phase_set` lets one more condensed species in at the temperature where two coexist:
+a plateau, on which its amount is the unknown that T is not).
+
 Files, in the order in which they are used: `layout` (the arrays), `candidates`, `simplex` (the basis of the linear programme, each
 species taken as a pure phase: a start that has the right condensed species in most cases), `basis` (coordinates and
-their exchange), `gas` (activities and balances), `newton` (5, 6), `phase_set` (which condensed species are present,
+their exchange), `gas` (activities and balances), `energy` (7, 8), `newton` (5, 6), `phase_set` (which condensed species are present,
 and whether there is a gas), `settle` (the iteration), `certificate`, `minimize` (one state, many states), `status` (what an outcome means).
 """

@@ -15,7 +15,7 @@ NOISE: Final = 1.0e-15  # rounding of B^-1 b, relative to the sum of its terms
 def replace(place: int, j: int, b: Any, w: Work) -> None:
     """Put candidate ``j`` into ``place`` of the basis; activities stay as they are, coordinates change.
 
-    With t = nu_k[place] / nu_j[place]: nu_k -> nu_k - t nu_j (t itself at ``place``), d_k -> d_k - t d_j. The rows
+    With t = nu_k[place] / nu_j[place]: nu_k -> nu_k - t nu_j (t itself at ``place``), d_k -> d_k - t d_j and de alike. The rows
     of B^-1 change alike, and c is made afresh.
     """
     m = w.c.size
@@ -25,11 +25,12 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
         activity += w.nu[i, j] * w.y[i]
     w.y[place] = activity
     w.basis[place] = j
-    pivot, shift, t, candidates = w.right[place], w.d[j], w.row, w.count[K]
+    pivot, shift, shift_e, t, candidates = w.right[place], w.d[j], w.de[j], w.row, w.count[K]
     for k in range(candidates):
         t[k] = w.nu[place, k] / pivot
         w.nu[place, k] = t[k]
         w.d[k] -= t[k] * shift
+        w.de[k] -= t[k] * shift_e
     for i in range(m):
         factor = w.right[i]
         if i != place and factor != 0.0:
@@ -40,7 +41,7 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
         w.nu[i, j] = 0.0
         w.inverse[place, i] /= pivot
     w.nu[place, j] = 1.0
-    w.d[j] = 0.0
+    w.d[j] = w.de[j] = 0.0
     for i in range(m):
         if i != place:
             for k in range(m):

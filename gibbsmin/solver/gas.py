@@ -7,7 +7,7 @@ from typing import Final
 import numpy as np
 
 from gibbsmin.compiled import inlined, summing
-from gibbsmin.solver.layout import FREE, GAS, PRESENT, G, K, N, Work, X
+from gibbsmin.solver.layout import EXTRA, FREE, GAS, MORE, PRESENT, G, K, N, Work, X
 
 VANISHING: Final = 1.0e-280  # turnover near the smallest number there is: balanced in logarithms only
 OVERDRAFT: Final = 0.01  # share of its turnover by which a condensed species may be overdrawn on the way
@@ -40,13 +40,19 @@ def activities(w: Work) -> None:
             supply += 0.5 * (abs(flow) + flow)
             demand += 0.5 * (abs(flow) - flow)
         w.supply[i], w.demand[i] = supply, demand
+    if w.count[EXTRA] >= 0:
+        for i in range(m):
+            flow = w.nu[i, w.count[EXTRA]] * w.value[MORE]
+            w.supply[i] += max(flow, 0.0)
+            w.demand[i] -= min(flow, 0.0)
 
 
 @inlined
 def present_amount(i: int, w: Work) -> float:
-    """Amount of the condensed species in place ``i``: what the gas leaves of c."""
+    """Amount of the condensed species in place ``i``: what the gas, and an extra species, leave of c."""
     if w.count[GAS] == 0:
-        return float(w.c[i])
+        k = w.count[EXTRA]
+        return float(w.c[i] - (w.nu[i, k] * w.value[MORE] if k >= 0 else 0.0))
     return float(w.demand[i] - w.supply[i])
 
 

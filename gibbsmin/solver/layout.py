@@ -23,23 +23,41 @@ CHANGES: Final = 4  # changes of the phase set so far
 JOIN: Final = 5  # candidate that the next change puts into the basis
 REUSES: Final = 6  # states since the coordinates were made afresh; -1 if they are not to be used again
 
+MODE: Final = 7  # what is held beside pressure or volume, see below
+VOLUME: Final = 8  # 1 where the volume is held, 0 where the pressure is
+EXTRA: Final = 9  # condensed candidate that is present beside the basis, at a temperature where two coexist; or -1
+
+# count[MODE]
+TEMPERATURE: Final = 0
+ENERGY: Final = 1  # the enthalpy at held pressure, the internal energy at held volume
+ENTROPY: Final = 2
+
 # value[...]
-N: Final = 0  # amount of gas, mol (1 where there is none: the incipient gas)
+N: Final = 0  # amount of gas, mol (1 where there is none: the incipient gas; 1 at held volume, where n = exp(u))
 X: Final = 1  # sum of exp(u) over the gas
+T: Final = 2  # temperature, K
+FIRST: Final = 3  # ln(P/P°), or ln(R/(P° V)) in J/K and mol: what the first held condition adds to g of a gas
+SECOND: Final = 4  # what the second held condition asks: H/R or U/R, mol K, or S/R, mol
+MORE: Final = 5  # amount of the candidate count[EXTRA], mol
 
 
 class Work(NamedTuple):
     """Arrays of one state; S species, m elements. What lies beyond the candidates in use
     means nothing. Long loops run over species, along rows, so that they compile to vector instructions."""
 
-    count: Any  # (7,) int, see above
-    value: Any  # (2,) see above
+    count: Any  # (10,) int, see above
+    value: Any  # (6,) see above
     offered: Any  # (S,) bool, the species that the last state offered as candidates
     chosen: Any  # (S,) bool, those that remained
     lacking: Any  # (m,) bool, the elements of which it had none
+    g: Any  # (S,) of every species: G°/RT and what the first held condition adds; inf where it is no candidate
+    e: Any  # (S,) of every species: H°/RT, at held volume U°/RT
+    s: Any  # (S,) of every species: S°/R
+    cp: Any  # (S,) of every species: Cp°/R, at held volume Cv°/R
     species: Any  # (S,) int, number of each candidate
     nu: Any  # (m, S) coordinates of each candidate, eq. (4)
     d: Any  # (S,)
+    de: Any  # (S,) energy of forming each candidate from the basis, over RT
     u: Any  # (S,) ln activity
     n: Any  # (S,) mol, gas candidates
     row: Any  # (S,) a row in the making
@@ -51,9 +69,9 @@ class Work(NamedTuple):
     y: Any  # (m,)
     supply: Any  # (m,) sum over the gas of nu n where nu > 0, mol
     demand: Any  # (m,) c plus the sum of |nu| n where nu < 0, mol
-    matrix: Any  # (m + 1, m + 1) eq. (6)
-    right: Any  # (m + 1,)
-    step: Any  # (m + 1,)
+    matrix: Any  # (m + 3, m + 3) eqs. (6) and (8)
+    right: Any  # (m + 3,)
+    step: Any  # (m + 3,)
     free: Any  # (m,) int, the free coordinates
 
 
@@ -61,13 +79,18 @@ class Work(NamedTuple):
 def new_work(S: int, m: int) -> Work:
     """Allocate the arrays for ``S`` species and ``m`` elements."""
     return Work(
-        np.zeros(7, np.int64),
-        np.zeros(2),
+        np.zeros(10, np.int64),
+        np.zeros(6),
         np.zeros(S, np.bool_),
         np.zeros(S, np.bool_),
         np.zeros(m, np.bool_),
+        np.zeros(S),
+        np.zeros(S),
+        np.zeros(S),
+        np.zeros(S),
         np.zeros(S, np.int64),
         np.zeros((m, S)),
+        np.zeros(S),
         np.zeros(S),
         np.zeros(S),
         np.zeros(S),
@@ -80,8 +103,8 @@ def new_work(S: int, m: int) -> Work:
         np.zeros(m),
         np.zeros(m),
         np.zeros(m),
-        np.zeros((m + 1, m + 1)),
-        np.zeros(m + 1),
-        np.zeros(m + 1),
+        np.zeros((m + 3, m + 3)),
+        np.zeros(m + 3),
+        np.zeros(m + 3),
         np.zeros(m, np.int64),
     )

@@ -10,13 +10,36 @@ from gibbsmin.compiled import compiled, inlined
 from gibbsmin.solver.candidates import same_candidates, select_candidates
 from gibbsmin.solver.certificate import element_residual, optimality
 from gibbsmin.solver.gas import present_amount
-from gibbsmin.solver.layout import CHANGES, GAS, IDLE, PRESENT, REUSES, STEPS, G, K, Work, new_work
-from gibbsmin.solver.phase_set import start_phases
+from gibbsmin.solver.energy import follow, potentials
+from gibbsmin.solver.layout import (
+    CHANGES,
+    ENERGY,
+    ENTROPY,
+    EXTRA,
+    FIRST,
+    GAS,
+    IDLE,
+    MODE,
+    MORE,
+    PRESENT,
+    REUSES,
+    SECOND,
+    STEPS,
+    TEMPERATURE,
+    VOLUME,
+    G,
+    K,
+    T,
+    Work,
+    new_work,
+)
+from gibbsmin.solver.phase_set import NONE, NOTHING, start_phases
 from gibbsmin.solver.settle import settle
 from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.solver.status import (
     AFFINITY_LIMIT,
     GAP_LIMIT,
+    HELD_LIMIT,
     NO_FEED,
     NO_ROOM,
     RESIDUAL_LIMIT,
@@ -24,7 +47,8 @@ from gibbsmin.solver.status import (
     UNPROVED,
     UNSETTLED,
 )
-from gibbsmin.species.table import Table, standard_state
+from gibbsmin.solver.warmth import start_temperature
+from gibbsmin.species.table import Table, standard_heat_capacity, standard_state
 
 STARTS: Final = (0.0, -4.0, 4.0, -12.0)
 """Added to the potentials of gases in the linear programme, one after the other until a start leads to the answer."""
@@ -38,6 +62,8 @@ class Outcome(NamedTuple):
 
     n: Any  # (states, S) mol
     lam: Any  # (states, m) [-], -inf for an element of which there is none
+    temperature: Any  # (states,) K
+    pressure: Any  # (states,) bar
     enthalpy: Any  # (states,) H/R, mol K
     entropy: Any  # (states,) S/R, mol
     status: Any  # (states,) int, see `status`
@@ -45,29 +71,34 @@ class Outcome(NamedTuple):
     residual: Any  # (states,)
     gap: Any  # (states,)
     affinity: Any  # (states,)
+    held: Any  # (states,) relative error of T that the second held condition leaves; zero where T is held
 
 
 def new_outcome(states: int, S: int, m: int) -> Outcome:
     """Allocate an `Outcome` of ``states`` states, ``S`` species and ``m`` elements."""
     real, whole = np.float64, np.int64
-    shapes = [(states, S), (states, m), *[(states,)] * 7]
-    types = [real, real, real, real, whole, whole, real, real, real]
+    shapes = [(states, S), (states, m), *[(states,)] * 10]
+    types = [*[real] * 6, whole, whole, *[real] * 4]
     return Outcome(*[np.zeros(shape, kind) for shape, kind in zip(shapes, types, strict=True)])
 
 
 @inlined
-def collect(scale: float, A: Any, g: Any, w: Work, n: Any, lam: Any) -> None:
+def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
     """Write amounts (times ``scale``) and element potentials of the present state, eq. (4).
 
     An idle place is still that of the artificial column of its own row: a row that depends on others has the
     potential zero, one that no candidate holds (an absent element) minus infinity.
     """
     m = lam.size
-    n[:] = 0.0
-    lam[:] = 0.0
+    for j in range(n.size):
+        n[j] = 0.0
+    for i in range(m):
+        lam[i] = 0.0
     if w.count[GAS] == 1:
         for j in range(w.count[G]):
             n[w.species[j]] = scale * w.n[j]
+    if w.count[EXTRA] >= 0:
+        n[w.species[w.count[EXTRA]]] = scale * max(w.value[MORE], 0.0)
     for i in range(m):
         if w.kind[i] == IDLE:
             held = False
@@ -77,41 +108,57 @@ def collect(scale: float, A: Any, g: Any, w: Work, n: Any, lam: Any) -> None:
             continue
         if w.kind[i] == PRESENT:
             n[w.species[w.basis[i]]] = scale * max(present_amount(i, w), 0.0)
-        potential = g[w.species[w.basis[i]]] + w.y[i]
+        potential = w.g[w.species[w.basis[i]]] + w.y[i]
         for k in range(m):
             lam[k] += w.inverse[i, k] * potential
 
 
 @inlined
-def one_state(A: Any, gas: Any, b: Any, g: Any, w: Work) -> int:
-    """Solve problem (1) for one state; return its status.
-
-    ``b`` (m,) is scaled to a sum of one; ``g`` (S,) is inf where a species is no candidate, and becomes inf where it
-    cannot be present.
-    """
-    w.count[STEPS] = w.count[CHANGES] = 0
-    again = w.count[REUSES] >= 0 and same_candidates(b, g, w)
-    if again and w.count[REUSES] < MOST_REUSES and optimal_basis_again(b, g, w):
+def at_temperature(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
+    """Solve problem (1) for one state at the T of ``w``; return its status. ``b`` (m,) is scaled to a sum of one."""
+    w.count[CHANGES], w.count[EXTRA] = 0, NONE
+    potentials(table, gas, w)
+    again = w.count[REUSES] >= 0 and same_candidates(b, w.g, w)
+    if again and w.count[REUSES] < MOST_REUSES and optimal_basis_again(b, w.g, w):
         w.count[REUSES] += 1
         start_phases(w)
-        if settle(b, w):
+        if settle(b, gas, table, w):
             return SOLVED
     elif not again:
-        select_candidates(A, gas, b, g, w)
+        select_candidates(A, gas, b, w.g, w)
     w.count[REUSES] = -1
     for bias in STARTS:
-        if not optimal_basis(A, b, g, bias, w):
+        if not optimal_basis(A, b, w.g, bias, w):
             return NO_ROOM
         start_phases(w)
         w.count[CHANGES] = 0
-        if settle(b, w):
+        if settle(b, gas, table, w):
             w.count[REUSES] = 0
             return SOLVED
     return UNSETTLED
 
 
+@inlined
+def at_energy(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
+    """Solve for one state with the temperature unknown; return its status."""
+    w.count[REUSES] = -1
+    w.count[CHANGES], w.count[EXTRA] = 0, NONE
+    for j in range(gas.size):
+        w.g[j] = 0.0
+    select_candidates(A, gas, b, w.g, w)
+    if not start_temperature(A, b, gas, table, w):
+        return NO_ROOM
+    follow(table, gas, w)
+    start_phases(w)
+    if settle(b, gas, table, w):
+        return SOLVED
+    return UNSETTLED
+
+
 @compiled
-def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: Outcome) -> None:
+def minimize_many(
+    A: Any, gas: Any, b: Any, mode: int, volume: bool, first: Any, second: Any, table: Table, out: Outcome
+) -> None:
     """Solve every state of a batch.
 
     Parameters
@@ -122,8 +169,14 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
         True for the species of the ideal gas.
     b : (states, m) array
         Element amounts [mol].
-    T, P : (states,) arrays
-        Temperature [K] and pressure [bar], finite and positive.
+    mode : int
+        What ``second`` is: TEMPERATURE, ENERGY or ENTROPY of `layout`.
+    volume : bool
+        Whether ``first`` is a volume.
+    first : (states,) array
+        Pressure [bar], or volume over R [mol K/bar], finite and positive.
+    second : (states,) array
+        Temperature [K]; enthalpy, or at held volume internal energy, over R [mol K]; or entropy over R [mol].
     table : Table
         Standard-state functions.
     out : Outcome
@@ -132,41 +185,63 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
     m, S = A.shape
     w = new_work(S, m)
     w.count[REUSES] = -1
-    h, s, g, relative = np.empty(S), np.empty(S), np.empty(S), np.empty(m)
-    for state in range(T.size):
-        n, lam = out.n[state], out.lam[state]
-        standard_state(T[state], table, h, s)
-        lnP = np.log(P[state])
-        for j in range(S):
-            usable = table.low[j] <= T[state] <= table.top[j]
-            g[j] = h[j] - s[j] + (lnP if gas[j] else 0.0) if usable else np.inf
+    w.count[MODE] = mode
+    relative = np.empty(m)
+    for state in range(first.size):
         scale = 0.0
         for i in range(m):
             scale += abs(b[state, i])
+        out.status[state] = NO_FEED
+        if scale == 0.0:
+            continue
         for i in range(m):
             relative[i] = b[state, i] / scale
-        status = NO_FEED if scale == 0.0 else one_state(A, gas, relative, g, w)
+        w.count[STEPS] = 0
+        w.count[VOLUME] = 1 if volume else 0
+        w.value[FIRST] = -np.log(first[state] / scale) if volume else np.log(first[state])
+        w.value[T] = second[state]
+        w.value[SECOND] = second[state] / scale
+        if mode == TEMPERATURE:
+            out.status[state] = at_temperature(A, gas, relative, table, w)
+        else:
+            out.status[state] = at_energy(A, gas, relative, table, w)
         out.steps[state] = w.count[STEPS]
-        if status == SOLVED:
-            collect(scale, A, g, w, n, lam)
-            out.residual[state] = element_residual(A, b[state], n)
-            out.gap[state], out.affinity[state] = optimality(A, gas, b[state], g, n, lam, w.u)
-            proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
-            if not (proved and out.affinity[state] <= AFFINITY_LIMIT):
-                status = UNPROVED
-            totals(T[state], lnP, gas, h, s, state, out)
-        out.status[state] = status
+        if out.status[state] == SOLVED:
+            collect(scale, A, w, out.n[state], out.lam[state])
+            finish(A, gas, b[state], first[state], second[state], table, w, state, out)
 
 
 @inlined
-def totals(T: float, lnP: float, gas: Any, h: Any, s: Any, state: int, out: Outcome) -> None:
-    """Write H/R and S/R of the mixture: S/R = sum n_j (s_j - ln x_j - ln P/P°) over the gas, sum n_c s_c beside it."""
-    n = out.n[state]
+def finish(A: Any, gas: Any, b: Any, first: float, second: float, table: Table, w: Work, state: int, out: Outcome) -> None:
+    """Write the totals of a state, and prove it as one at its own temperature and pressure.
+
+    H/R = T sum n_j h_j; S/R = sum n_j (s_j - ln x_j - ln P/P°) over the gas, sum n_c s_c beside it.
+    """
+    n, temperature = out.n[state], w.value[T]
     amount = 0.0
     for j in range(n.size):
         amount += n[j] if gas[j] else 0.0
+    pressure = amount * temperature / first if w.count[VOLUME] == 1 else first
+    out.temperature[state], out.pressure[state] = temperature, pressure
+    standard_state(temperature, table, w.e, w.s)
+    standard_heat_capacity(temperature, table, w.cp)
+    lnP = np.log(pressure) if pressure > 0.0 else NOTHING
+    enthalpy = entropy = capacity = 0.0
     for j in range(n.size):
+        usable = table.low[j] <= temperature <= table.top[j] and w.chosen[j]
+        w.g[j] = w.e[j] - w.s[j] + (lnP if gas[j] else 0.0) if usable else np.inf
         if n[j] > 0.0:
-            mixing = lnP + np.log(n[j] / amount) if gas[j] else 0.0
-            out.enthalpy[state] += n[j] * h[j] * T
-            out.entropy[state] += n[j] * (s[j] - mixing)
+            enthalpy += n[j] * w.e[j] * temperature
+            entropy += n[j] * (w.s[j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
+            capacity += n[j] * w.cp[j]
+    out.enthalpy[state], out.entropy[state] = enthalpy, entropy
+    if w.count[MODE] == ENERGY:
+        energy = enthalpy - (amount * temperature if w.count[VOLUME] == 1 else 0.0)
+        out.held[state] = abs(energy - second) / (capacity * temperature)
+    elif w.count[MODE] == ENTROPY:
+        out.held[state] = abs(entropy - second) / capacity
+    out.residual[state] = element_residual(A, b, n)
+    out.gap[state], out.affinity[state] = optimality(A, gas, b, w.g, n, out.lam[state], w.u)
+    proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
+    if not (proved and out.affinity[state] <= AFFINITY_LIMIT and out.held[state] <= HELD_LIMIT):
+        out.status[state] = UNPROVED

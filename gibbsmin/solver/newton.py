@@ -1,4 +1,4 @@
-"""Newton's method in the free coordinates and ln N for a fixed set of phases, eqs. (5) and (6)."""
+"""Newton's method in the free coordinates and ln N for a fixed set of phases, eqs. (5) to (8)."""
 
 from __future__ import annotations
 
@@ -7,31 +7,35 @@ from typing import Any, Final
 import numpy as np
 
 from gibbsmin.compiled import inlined, summing
+from gibbsmin.solver.energy import boiling, energy_border, energy_error
 from gibbsmin.solver.gas import VANISHING
-from gibbsmin.solver.layout import FREE, GAS, G, N, Work, X
+from gibbsmin.solver.layout import EXTRA, FREE, GAS, MODE, MORE, TEMPERATURE, VOLUME, G, N, T, Work, X
 
 MAJOR: Final = 1.0e-3  # a species above this share of the gas changes by no more than ...
 CHANGE: Final = 2.0  # ... this in ln n a step; a rarer one comes up to exp(-CHANGE) of the gas at most
+WARMING: Final = 0.22  # largest change of ln T a step
 SINGULAR: Final = 1.0e-15
 
 
 @inlined
 def newton_error(w: Work) -> float:
-    """Largest relative imbalance of a free coordinate, and of the sum of mole fractions."""
-    error = abs(np.log(w.value[X])) if w.count[GAS] == 1 else 0.0
+    """Largest relative imbalance of a free coordinate, of the sum of mole fractions, and of the energy."""
+    error = energy_error(w)
+    if w.count[GAS] == 1 and w.count[VOLUME] == 0:
+        error = max(error, abs(np.log(w.value[X])))
     for i in range(w.c.size):
         if w.kind[i] == FREE:
             scale = max(w.supply[i], w.demand[i])
             if scale > VANISHING:
                 error = max(error, abs(w.supply[i] - w.demand[i]) / scale)
-    return error
+    return float(error)
 
 
 @summing
 def assemble(w: Work) -> int:
-    """Set up eq. (6), scaled to a diagonal of one; return the number of free coordinates f.
+    """Set up eq. (6), unscaled; return the number of free coordinates f, which is the place of ln N.
 
-    The border of ln N is row and column f; the scale of each row is left in ``w.step``.
+    The scale of each row is left in ``w.step``: with it the diagonal becomes one.
     """
     f = 0
     for i in range(w.c.size):
@@ -45,28 +49,35 @@ def assemble(w: Work) -> int:
         for j in range(gas):
             row[j] = nu[j] * w.n[j]
             total += row[j]
-        H[f, p] = total
+        H[f, p] = H[p, f] = total
         for q in range(p + 1):
             other = w.nu[w.free[q]]
             total = 0.0
             for j in range(gas):
                 total += row[j] * other[j]
-            H[p, q] = total
-    for p in range(f):
+            H[p, q] = H[q, p] = total
         w.right[p] = w.demand[w.free[p]] - w.supply[w.free[p]]
         w.step[p] = 1.0 / np.sqrt(H[p, p]) if H[p, p] > VANISHING else 0.0
-    amount = w.value[N] * w.value[X]
-    w.right[f] = -amount * np.log(w.value[X])
-    w.step[f] = 1.0 / np.sqrt(amount) if w.count[GAS] == 1 else 0.0
-    for p in range(f + 1):
-        w.right[p] *= w.step[p]
-        for q in range(p):
-            H[p, q] *= w.step[p] * w.step[q]
-            H[q, p] = H[p, q]
-        H[p, p] = 1.0
-    if w.count[GAS] == 1:
-        H[f, f] = 0.0
+    if w.count[GAS] == 1 and w.count[VOLUME] == 0:
+        amount = w.value[N] * w.value[X]
+        w.right[f] = -amount * np.log(w.value[X])
+        w.step[f] = 1.0 / np.sqrt(amount)
+    else:
+        w.right[f] = w.step[f] = 0.0
+    H[f, f] = 0.0
     return f
+
+
+@inlined
+def scale(size: int, w: Work) -> None:
+    """Scale rows and columns; a row of scale zero leaves its unknown as it is."""
+    H = w.matrix
+    for p in range(size):
+        w.right[p] *= w.step[p]
+        for q in range(size):
+            H[p, q] *= w.step[p] * w.step[q]
+        if w.step[p] == 0.0:
+            H[p, p] = 1.0
 
 
 @inlined
@@ -103,12 +114,19 @@ def solve(matrix: Any, right: Any, size: int) -> bool:
 def step_length(f: int, w: Work) -> float:
     """Fraction of the step in ``w.right`` that may be taken."""
     alpha, change, gas = 1.0, w.row, w.count[G]
+    rise = 0.0 if boiling(w) else w.right[f]
     for j in range(gas):
-        change[j] = w.right[f]
+        change[j] = rise
     for p in range(f):
         nu = w.nu[w.free[p]]
         for j in range(gas):
             change[j] += nu[j] * w.right[p]
+    if w.count[MODE] != TEMPERATURE:
+        tau = w.right[f + 1]
+        for j in range(gas):
+            change[j] += w.de[j] * tau
+        if abs(tau) > WARMING:
+            alpha = WARMING / abs(tau)
     major = MAJOR * w.value[N] * w.value[X]
     for j in range(gas):
         if w.n[j] > major:
@@ -121,15 +139,28 @@ def step_length(f: int, w: Work) -> float:
 
 @inlined
 def newton_step(w: Work) -> bool:
-    """Take one step; False if eq. (6) is singular."""
+    """Take one step; False if the equations are singular. The gas goes where it would have to be negative."""
     f = assemble(w)
-    if not solve(w.matrix, w.right, f + 1):
+    size = f + 1
+    if w.count[MODE] != TEMPERATURE:
+        energy_border(f, w)
+        size += 2 if w.count[EXTRA] >= 0 else 1
+    scale(size, w)
+    if not solve(w.matrix, w.right, size):
         return False
-    for p in range(f + 1):
+    for p in range(size):
         w.right[p] *= w.step[p]
     alpha = step_length(f, w)
     for p in range(f):
         w.y[w.free[p]] += alpha * w.right[p]
-    if w.count[GAS] == 1:
+    if boiling(w):
+        w.value[N] *= 1.0 + alpha * w.right[f]
+        if w.value[N] <= 0.0:
+            w.count[GAS], w.value[N] = 0, 1.0
+    elif w.count[GAS] == 1 and w.count[VOLUME] == 0:
         w.value[N] *= np.exp(alpha * w.right[f])
+    if w.count[MODE] != TEMPERATURE:
+        w.value[T] *= np.exp(alpha * w.right[f + 1])
+        if w.count[EXTRA] >= 0:
+            w.value[MORE] += alpha * w.right[f + 2]
     return True

@@ -13,18 +13,38 @@ from typing import Final
 import numpy as np
 
 from gibbsmin.compiled import inlined
+from gibbsmin.solver.energy import plateau
 from gibbsmin.solver.gas import present_amount
-from gibbsmin.solver.layout import EMPTY, FREE, GAS, IDLE, JOIN, PRESENT, G, K, N, Work, X
+from gibbsmin.solver.layout import (
+    EMPTY,
+    EXTRA,
+    FREE,
+    GAS,
+    IDLE,
+    JOIN,
+    MODE,
+    MORE,
+    PRESENT,
+    TEMPERATURE,
+    VOLUME,
+    G,
+    K,
+    N,
+    Work,
+    X,
+)
 
 APPEARS: Final = 1.0e-11  # ln activity above which an absent phase joins
 VANISHES: Final = 1.0e-14  # share of its coordinate's turnover below which an amount is rounding
 NOTHING: Final = -3000.0  # ln activity of what cannot be held at all
 START: Final = -20.0  # first ln activity of a free species of which there is none at first
 POOR: Final = 1.0e-3  # share of its coordinate's turnover that a basis species should hold
+SEED: Final = 1.0e-6  # first amount of a gas that appears where the temperature is free to stay
 ENTRY: Final = 1.0e-9  # smallest coordinate that can be divided by
 
 NONE: Final = -1
 STUCK: Final = -2
+EXTRA_PLACE: Final = -3  # beside the basis
 
 
 @inlined
@@ -40,7 +60,7 @@ def start_phases(w: Work) -> None:
     set_gas(amount, w)
     for i in range(w.c.size):
         if w.kind[i] == FREE:
-            w.y[i] = np.log(w.c[i] / amount) if w.c[i] > 0.0 else START
+            w.y[i] = np.log(w.c[i] / w.value[N] if w.count[VOLUME] == 1 else w.c[i] / amount) if w.c[i] > 0.0 else START
     changed = True
     while changed:
         changed = False
@@ -65,7 +85,10 @@ def taken_back(i: int, w: Work) -> bool:
 
 @inlined
 def set_gas(amount: float, w: Work) -> None:
-    """Declare a gas of ``amount`` [mol], or the incipient gas where that is zero."""
+    """Declare a gas of ``amount`` [mol], or the incipient gas where that is zero; at held volume there is always one."""
+    if w.count[VOLUME] == 1:
+        w.count[GAS], w.value[N] = 1, 1.0
+        return
     w.count[GAS] = 1 if amount > 0.0 else 0
     w.value[N] = amount if amount > 0.0 else 1.0
 
@@ -165,9 +188,13 @@ def first_used_up(k: int, alpha: float, w: Work) -> int:
 def place_of_join(k: int, w: Work) -> int:
     """Place that condensed candidate ``k`` takes; STUCK if nothing limits its growth."""
     place = place_for(k, w)
+    loose = w.count[MODE] != TEMPERATURE and not plateau(w)
     if place == NONE:
+        if loose:
+            w.count[EXTRA], w.value[MORE] = k, 0.0
+            return EXTRA_PLACE
         return first_used_up(k, 0.0, w)
-    if w.count[GAS] == 0 or not gas_ends(k, place, w):
+    if loose or w.count[VOLUME] == 1 or w.count[GAS] == 0 or not gas_ends(k, place, w):
         return place
     used = first_used_up(k, w.nu[place, k] * w.value[N] / w.c[place], w)
     if used == NONE:
@@ -216,16 +243,26 @@ def wanted_change(error: float, w: Work) -> int:
     ``error`` is that of the Newton iteration: what lies within it decides nothing.
     """
     place = leaving_phase(error, w)
+    extra = w.count[EXTRA]
+    if extra >= 0 and w.value[MORE] < -(VANISHES + 10.0 * error):
+        w.count[EXTRA] = NONE
+        return EXTRA_PLACE
+    if place >= 0 and extra >= 0 and abs(w.nu[place, extra]) > ENTRY:
+        w.count[EXTRA], w.count[JOIN] = NONE, extra
+        return place
     if place == NONE:
         worst = APPEARS + 10.0 * error
         for k in range(w.count[G], w.count[K]):
-            if w.u[k] / w.atoms[k] > worst:
+            if w.u[k] / w.atoms[k] > worst and k != extra:
                 worst, w.count[JOIN], place = w.u[k] / w.atoms[k], k, 0
         if place != NONE:
             return place_of_join(w.count[JOIN], w)
         absent = w.count[GAS] == 0 and w.count[G] > 0
         if not absent or np.log(w.value[X]) < APPEARS + 10.0 * error:
             return NONE
+        if w.count[MODE] != TEMPERATURE and not plateau(w):
+            w.count[GAS], w.value[N] = 1, SEED
+            return EXTRA_PLACE
         place = place_of_gas(w)
     if place != STUCK:
         w.kind[place] = FREE

@@ -8,10 +8,12 @@ import numpy as np
 
 from gibbsmin.compiled import inlined
 from gibbsmin.solver.basis import replace
+from gibbsmin.solver.energy import boiling, follow
 from gibbsmin.solver.gas import OVERDRAFT, activities, balance_step, imbalance, overdrawn, worst_balance
-from gibbsmin.solver.layout import CHANGES, FREE, GAS, JOIN, PRESENT, STEPS, G, N, Work, X
+from gibbsmin.solver.layout import CHANGES, EXTRA, FREE, GAS, JOIN, MODE, PRESENT, STEPS, TEMPERATURE, VOLUME, G, N, T, Work, X
 from gibbsmin.solver.newton import newton_error, newton_step
-from gibbsmin.solver.phase_set import NONE, STUCK, poor_place, saturating, set_gas, wanted_change
+from gibbsmin.solver.phase_set import EXTRA_PLACE, NONE, STUCK, poor_place, saturating, set_gas, wanted_change
+from gibbsmin.species.table import Table
 
 COARSE: Final = 1.0  # abs(ln(supply/demand)) above which one balance at a time is set right
 CROWDED: Final = 3.0  # ln X above which the gas is given more room before anything else
@@ -21,10 +23,12 @@ ENOUGH: Final = 1.0e-11  # accepted where rounding forbids DONE
 MOST_STEPS: Final = 60  # from one start; 20 were the most that a start needed that led to the answer
 MOST_CHANGES: Final = 200
 MOST_ROUNDS: Final = 2000
+COLDEST: Final = 50.0  # K
+HOTTEST: Final = 20000.0
 
 
 @inlined
-def settle(b: Any, w: Work) -> bool:
+def settle(b: Any, gas: Any, table: Table, w: Work) -> bool:
     """Iterate from the start until nothing is out of balance and no phase wants to come or go."""
     last, steps = np.inf, w.count[STEPS]
     for _ in range(MOST_ROUNDS):
@@ -41,7 +45,7 @@ def settle(b: Any, w: Work) -> bool:
         else:
             error = newton_error(w)
             place = poor_place(w)
-            if place == NONE and w.count[GAS] == 1 and np.log(w.value[X]) > CROWDED and not overdrawn(w):
+            if place == NONE and crowded(w):
                 w.value[N] *= w.value[X]
                 continue
             if place == NONE and (error < NEAR or overdrawn(w)):
@@ -58,17 +62,32 @@ def settle(b: Any, w: Work) -> bool:
         w.count[STEPS] += 1
         if w.count[STEPS] - steps > MOST_STEPS or not newton_step(w):
             return False
+        if w.count[MODE] != TEMPERATURE:
+            if not COLDEST < w.value[T] < HOTTEST:
+                return False
+            follow(table, gas, w)
     return False
+
+
+@inlined
+def crowded(w: Work) -> bool:
+    """Tell whether the gas has far too little room, and no condensed species is the cause."""
+    if w.count[GAS] == 0 or w.count[VOLUME] == 1 or boiling(w):
+        return False
+    return bool(np.log(w.value[X]) > CROWDED and not overdrawn(w))
 
 
 @inlined
 def change(place: int, b: Any, w: Work) -> None:
     """Put candidate ``w.count[JOIN]`` into ``place``, present if condensed, free if gas; with NONE the place is only freed.
 
-    Then see that there is a gas just where a free coordinate holds something.
+    Then see that there is a gas where a free coordinate holds something, and, unless the temperature is free to stay
+    where gas and condensed coexist, only there.
     """
     w.count[CHANGES] += 1
     k = w.count[JOIN]
+    if place == EXTRA_PLACE:
+        return
     if k != NONE:
         replace(place, k, b, w)
         if k >= w.count[G]:
@@ -76,5 +95,6 @@ def change(place: int, b: Any, w: Work) -> None:
     held = 0.0
     for i in range(w.c.size):
         held += abs(w.c[i]) if w.kind[i] == FREE else 0.0
-    if (held > 0.0) != (w.count[GAS] == 1):
+    surplus = held == 0.0 and w.count[GAS] == 1 and (w.count[MODE] == TEMPERATURE or w.count[EXTRA] >= 0)
+    if surplus or (held > 0.0 and w.count[GAS] == 0):
         set_gas(held, w)

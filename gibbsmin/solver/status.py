@@ -13,6 +13,7 @@ UNPROVED: Final = 4
 RESIDUAL_LIMIT: Final = 1.0e-10
 GAP_LIMIT: Final = 1.0e-8
 AFFINITY_LIMIT: Final = 1.0e-8
+HELD_LIMIT: Final = 1.0e-9
 
 MEANING: Final[dict[int, tuple[str, str]]] = {
     SOLVED: ("", ""),
