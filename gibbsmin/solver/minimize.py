@@ -83,6 +83,23 @@ def collect(scale: float, A: Any, g: Any, w: Work, n: Any, lam: Any) -> None:
 
 
 @inlined
+def close_balances(b: Any, w: Work, n: Any) -> None:
+    """Let the condensed species take up what rounding left of the element balances: n_c + (B^-1 (b - A n))_c."""
+    m = b.size
+    for i in range(m):
+        total = b[i]
+        for j in range(n.size):
+            total -= w.A[i, j] * n[j]
+        w.left[i] = total
+    for i in range(m):
+        if w.kind[i] == PRESENT:
+            j, total = w.species[w.basis[i]], 0.0
+            for k in range(m):
+                total += w.inverse[i, k] * w.left[k]
+            n[j] = max(n[j] + total, 0.0)
+
+
+@inlined
 def one_state(A: Any, gas: Any, b: Any, g: Any, w: Work) -> int:
     """Solve problem (1) for one state; return its status.
 
@@ -130,7 +147,7 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
         Filled in place.
     """
     m, S = A.shape
-    w = new_work(S, m)
+    w = new_work(A)
     w.count[REUSES] = -1
     h, s, g, relative = np.empty(S), np.empty(S), np.empty(S), np.empty(m)
     for state in range(T.size):
@@ -143,12 +160,15 @@ def minimize_many(A: Any, gas: Any, b: Any, T: Any, P: Any, table: Table, out: O
         scale = 0.0
         for i in range(m):
             scale += abs(b[state, i])
+        if scale > 0.0:
+            scale = 2.0 ** np.ceil(np.log2(scale))  # a power of two: what is stoichiometric stays so to the last bit
         for i in range(m):
             relative[i] = b[state, i] / scale
-        status = NO_FEED if scale == 0.0 else one_state(A, gas, relative, g, w)
+        status = NO_FEED if not scale > 0.0 else one_state(A, gas, relative, g, w)
         out.steps[state] = w.count[STEPS]
         if status == SOLVED:
             collect(scale, A, g, w, n, lam)
+            close_balances(b[state], w, n)
             out.residual[state] = element_residual(A, b[state], n)
             out.gap[state], out.affinity[state] = optimality(A, gas, b[state], g, n, lam, w.u)
             proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
