@@ -8,7 +8,7 @@ from gibbsmin.compiled import inlined
 from gibbsmin.solver.layout import IDLE, K, Work
 
 DUST: Final = 1.0e-9  # coordinates are ratios of small numbers of atoms; what is smaller is rounding
-NOISE: Final = 1.0e-15  # rounding of B^-1 b, relative to the sum of its terms
+NOISE: Final = 4.0e-16  # rounding of B^-1 b, relative to the sum of its terms
 
 
 @inlined
@@ -45,21 +45,42 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
     for i in range(m):
         if i != place:
             for k in range(m):
-                w.inverse[i, k] -= w.right[i] * w.inverse[place, k]
+                value = w.inverse[i, k] - w.right[i] * w.inverse[place, k]
+                w.inverse[i, k] = value if abs(value) > DUST else 0.0
     basis_amounts(b, w)
 
 
 @inlined
 def basis_amounts(b: Any, w: Work) -> None:
-    """Make c = B^-1 b afresh; what is only rounding in it becomes zero, so that exact stoichiometry stays exact."""
+    """Make c = B^-1 b afresh, with one step of refinement: c + B^-1 (b - B c).
+
+    The residual of an element that is rare beside the others has only small terms, so that its balance closes relative
+    to its own amount. What is only rounding becomes zero, so that exact stoichiometry stays exact.
+    """
     m = w.c.size
     for i in range(m):
-        total = terms = 0.0
+        total = 0.0
         if w.kind[i] != IDLE:
             for k in range(m):
                 total += w.inverse[i, k] * b[k]
+        w.c[i] = total
+    for i in range(m):
+        total = b[i]
+        for k in range(m):
+            if w.basis[k] >= 0 and w.kind[k] != IDLE:
+                total -= w.A[i, w.species[w.basis[k]]] * w.c[k]
+            elif k == i:
+                total = 0.0
+                break
+        w.left[i] = total
+    for i in range(m):
+        terms = 0.0
+        if w.kind[i] != IDLE:
+            for k in range(m):
+                w.c[i] += w.inverse[i, k] * w.left[k]
                 terms += abs(w.inverse[i, k] * b[k])
-        w.c[i] = total if abs(total) > NOISE * m * terms else 0.0
+        if abs(w.c[i]) < NOISE * terms:
+            w.c[i] = 0.0
 
 
 @inlined

@@ -45,6 +45,7 @@ class Work(NamedTuple):
     """Arrays of one state; S species, m elements. What lies beyond the candidates in use
     means nothing. Long loops run over species, along rows, so that they compile to vector instructions."""
 
+    A: Any  # (m, S) atoms of each element in each species
     count: Any  # (10,) int, see above
     value: Any  # (6,) see above
     offered: Any  # (S,) bool, the species that the last state offered as candidates
@@ -68,6 +69,7 @@ class Work(NamedTuple):
     c: Any  # (m,) mol
     y: Any  # (m,)
     supply: Any  # (m,) sum over the gas of nu n where nu > 0, mol
+    left: Any  # (m,) what a basis leaves of b, mol
     demand: Any  # (m,) c plus the sum of |nu| n where nu < 0, mol
     matrix: Any  # (m + 3, m + 3) eqs. (6) and (8)
     right: Any  # (m + 3,)
@@ -76,9 +78,11 @@ class Work(NamedTuple):
 
 
 @allocating
-def new_work(S: int, m: int) -> Work:
-    """Allocate the arrays for ``S`` species and ``m`` elements."""
+def new_work(A: Any) -> Work:
+    """Allocate the arrays for the element matrix ``A`` (m, S)."""
+    m, S = A.shape
     return Work(
+        A,
         np.zeros(10, np.int64),
         np.zeros(6),
         np.zeros(S, np.bool_),
@@ -99,6 +103,7 @@ def new_work(S: int, m: int) -> Work:
         np.zeros((m, m)),
         np.zeros(m, np.int64),
         np.zeros(m, np.int64),
+        np.zeros(m),
         np.zeros(m),
         np.zeros(m),
         np.zeros(m),

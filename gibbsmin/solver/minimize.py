@@ -10,7 +10,7 @@ from gibbsmin.compiled import compiled, inlined
 from gibbsmin.solver.candidates import same_candidates, select_candidates
 from gibbsmin.solver.certificate import element_residual, optimality
 from gibbsmin.solver.gas import present_amount
-from gibbsmin.solver.energy import follow, potentials
+from gibbsmin.solver.energy import energy_excess, follow, potentials
 from gibbsmin.solver.layout import (
     CHANGES,
     ENERGY,
@@ -34,7 +34,7 @@ from gibbsmin.solver.layout import (
     new_work,
 )
 from gibbsmin.solver.phase_set import NONE, NOTHING, start_phases
-from gibbsmin.solver.settle import settle
+from gibbsmin.solver.settle import COLDEST, HOTTEST, settle
 from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.solver.status import (
     AFFINITY_LIMIT,
@@ -44,14 +44,19 @@ from gibbsmin.solver.status import (
     NO_ROOM,
     RESIDUAL_LIMIT,
     SOLVED,
+    TOO_COLD,
+    TOO_HOT,
     UNPROVED,
     UNSETTLED,
 )
-from gibbsmin.solver.warmth import start_temperature
+from gibbsmin.solver.warmth import GUESS, start_temperature
 from gibbsmin.species.table import Table, standard_heat_capacity, standard_state
 
 STARTS: Final = (0.0, -4.0, 4.0, -12.0)
 """Added to the potentials of gases in the linear programme, one after the other until a start leads to the answer."""
+
+BRACKETS: Final = (1.0e-2, 1.0e-2, 1.0e-11)
+"""Relative width of a bracket of T at which settling is tried first, factor to the next, and last width."""
 
 MOST_REUSES: Final = 50
 """States in a row that take over the coordinates of the one before, so that rounding does not gather in them."""
@@ -114,6 +119,24 @@ def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
 
 
 @inlined
+@inlined
+def close_balances(b: Any, w: Work, n: Any) -> None:
+    """Let the condensed species take up what rounding left of the element balances: n_c + (B^-1 (b - A n))_c."""
+    m = b.size
+    for i in range(m):
+        total = b[i]
+        for j in range(n.size):
+            total -= w.A[i, j] * n[j]
+        w.left[i] = total
+    for i in range(m):
+        if w.kind[i] == PRESENT:
+            j, total = w.species[w.basis[i]], 0.0
+            for k in range(m):
+                total += w.inverse[i, k] * w.left[k]
+            n[j] = max(n[j] + total, 0.0)
+
+
+@inlined
 def at_temperature(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     """Solve problem (1) for one state at the T of ``w``; return its status. ``b`` (m,) is scaled to a sum of one."""
     w.count[CHANGES], w.count[EXTRA] = 0, NONE
@@ -152,6 +175,38 @@ def at_energy(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     start_phases(w)
     if settle(b, gas, table, w):
         return SOLVED
+    return by_bracket(A, gas, b, table, w)
+
+
+@inlined
+def by_bracket(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
+    """Narrow T by states of held T, whose energy and entropy rise with T, and settle from the nearest of them."""
+    mode, low, high = w.count[MODE], COLDEST, HOTTEST
+    narrow = BRACKETS[0]
+    for _ in range(120):
+        w.value[T] = np.sqrt(low * high)
+        w.count[MODE] = TEMPERATURE
+        solved = at_temperature(A, gas, b, table, w) == SOLVED
+        w.count[MODE] = mode
+        w.count[CHANGES] = 0
+        too_warm = w.value[T] > GUESS
+        if solved:
+            follow(table, gas, w)
+            too_warm = energy_excess(w) > 0.0
+        if too_warm:
+            high = w.value[T]
+        else:
+            low = w.value[T]
+        if high / low < 1.0 + narrow:
+            if high > 0.999 * HOTTEST:
+                return TOO_HOT
+            if low < 1.001 * COLDEST:
+                return TOO_COLD
+            if solved and settle(b, gas, table, w):
+                return SOLVED
+            narrow *= BRACKETS[1]
+            if narrow < BRACKETS[2]:
+                break
     return UNSETTLED
 
 
@@ -183,7 +238,7 @@ def minimize_many(
         Filled in place.
     """
     m, S = A.shape
-    w = new_work(S, m)
+    w = new_work(A)
     w.count[REUSES] = -1
     w.count[MODE] = mode
     relative = np.empty(m)
@@ -194,6 +249,7 @@ def minimize_many(
         out.status[state] = NO_FEED
         if scale == 0.0:
             continue
+        scale = 2.0 ** np.ceil(np.log2(scale))  # a power of two: what is stoichiometric stays so to the last bit
         for i in range(m):
             relative[i] = b[state, i] / scale
         w.count[STEPS] = 0
@@ -208,6 +264,7 @@ def minimize_many(
         out.steps[state] = w.count[STEPS]
         if out.status[state] == SOLVED:
             collect(scale, A, w, out.n[state], out.lam[state])
+            close_balances(b[state], w, out.n[state])
             finish(A, gas, b[state], first[state], second[state], table, w, state, out)
 
 

@@ -8,7 +8,7 @@ composition is the present one. The functions here find the change; `minimize` c
 
 from __future__ import annotations
 
-from typing import Final
+from typing import Any, Final
 
 import numpy as np
 
@@ -141,12 +141,19 @@ def saturating(i: int, w: Work) -> int:
 
 
 @inlined
-def place_for(k: int, w: Work) -> int:
-    """Free place for condensed ``k``: that of least turnover, so that major species stay in the basis; NONE if none."""
+def place_for(k: int, b: Any, w: Work) -> int:
+    """Free place for condensed ``k``, NONE if there is none: that of least turnover, so that major species stay.
+
+    The rounding of B^-1 b counts as turnover: the coordinate of a rare element, whose terms are all small, is given to
+    a new species that holds the element before one that is the small difference of large terms.
+    """
     best, found = np.inf, NONE
     for i in range(w.c.size):
         if w.kind[i] == FREE and abs(w.nu[i, k]) > ENTRY:
-            turnover = max(w.supply[i], w.demand[i]) / abs(w.nu[i, k])
+            terms = 0.0
+            for j in range(w.c.size):
+                terms += abs(w.inverse[i, j] * b[j])
+            turnover = (max(w.supply[i], w.demand[i]) + VANISHES * terms) / abs(w.nu[i, k])
             if turnover < best:
                 best, found = turnover, i
     return found
@@ -185,9 +192,9 @@ def first_used_up(k: int, alpha: float, w: Work) -> int:
 
 
 @inlined
-def place_of_join(k: int, w: Work) -> int:
+def place_of_join(k: int, b: Any, w: Work) -> int:
     """Place that condensed candidate ``k`` takes; STUCK if nothing limits its growth."""
-    place = place_for(k, w)
+    place = place_for(k, b, w)
     loose = w.count[MODE] != TEMPERATURE and not plateau(w)
     if place == NONE:
         if loose:
@@ -237,7 +244,7 @@ def leaving_phase(error: float, w: Work) -> int:
 
 
 @inlined
-def wanted_change(error: float, w: Work) -> int:
+def wanted_change(error: float, b: Any, w: Work) -> int:
     """Find the one change that is most wanted: the place where candidate ``w.count[JOIN]`` goes in; NONE, or STUCK.
 
     ``error`` is that of the Newton iteration: what lies within it decides nothing.
@@ -256,7 +263,7 @@ def wanted_change(error: float, w: Work) -> int:
             if w.u[k] / w.atoms[k] > worst and k != extra:
                 worst, w.count[JOIN], place = w.u[k] / w.atoms[k], k, 0
         if place != NONE:
-            return place_of_join(w.count[JOIN], w)
+            return place_of_join(w.count[JOIN], b, w)
         absent = w.count[GAS] == 0 and w.count[G] > 0
         if not absent or np.log(w.value[X]) < APPEARS + 10.0 * error:
             return NONE

@@ -49,7 +49,7 @@ def settle(b: Any, gas: Any, table: Table, w: Work) -> bool:
                 w.value[N] *= w.value[X]
                 continue
             if place == NONE and (error < NEAR or overdrawn(w)):
-                place = wanted_change(min(error, 0.1 * OVERDRAFT), w)
+                place = wanted_change(min(error, 0.1 * OVERDRAFT), b, w)
         if place == STUCK or w.count[CHANGES] > MOST_CHANGES:
             return False
         if place != NONE:

@@ -9,6 +9,8 @@ NO_FEED: Final = 1
 NO_ROOM: Final = 2
 UNSETTLED: Final = 3
 UNPROVED: Final = 4
+TOO_HOT: Final = 5
+TOO_COLD: Final = 6
 
 RESIDUAL_LIMIT: Final = 1.0e-10
 GAP_LIMIT: Final = 1.0e-8
@@ -25,6 +27,14 @@ MEANING: Final[dict[int, tuple[str, str]]] = {
     UNSETTLED: (
         "The iteration did not settle.",
         "Move the temperature or pressure slightly; please report the state.",
+    ),
+    TOO_HOT: (
+        "What is held asks for a temperature above all data.",
+        "Give less heat or entropy, more feed, or more volume.",
+    ),
+    TOO_COLD: (
+        "What is held asks for a temperature below all data.",
+        "Give more heat or entropy, or check the sign of the heat and the temperatures of the feeds.",
     ),
     UNPROVED: (
         "A composition was found, but its certificate does not hold.",
