@@ -39,6 +39,8 @@ T: Final = 2  # temperature, K
 FIRST: Final = 3  # ln(P/P°), or ln(R/(P° V)) in J/K and mol: what the first held condition adds to g of a gas
 SECOND: Final = 4  # what the second held condition asks: H/R or U/R, mol K, or S/R, mol
 MORE: Final = 5  # amount of the candidate count[EXTRA], mol
+COLD: Final = 6  # lowest and highest temperature of any species' data, K
+WARM: Final = 7
 
 
 class Work(NamedTuple):
@@ -47,7 +49,7 @@ class Work(NamedTuple):
 
     A: Any  # (m, S) atoms of each element in each species
     count: Any  # (10,) int, see above
-    value: Any  # (6,) see above
+    value: Any  # (8,) see above
     offered: Any  # (S,) bool, the species that the last state offered as candidates
     chosen: Any  # (S,) bool, those that remained
     lacking: Any  # (m,) bool, the elements of which it had none
@@ -84,7 +86,7 @@ def new_work(A: Any) -> Work:
     return Work(
         A,
         np.zeros(10, np.int64),
-        np.zeros(6),
+        np.zeros(8),
         np.zeros(S, np.bool_),
         np.zeros(S, np.bool_),
         np.zeros(m, np.bool_),

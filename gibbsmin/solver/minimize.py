@@ -13,6 +13,7 @@ from gibbsmin.solver.gas import present_amount
 from gibbsmin.solver.energy import energy_excess, follow, potentials
 from gibbsmin.solver.layout import (
     CHANGES,
+    COLD,
     ENERGY,
     ENTROPY,
     EXTRA,
@@ -27,6 +28,7 @@ from gibbsmin.solver.layout import (
     STEPS,
     TEMPERATURE,
     VOLUME,
+    WARM,
     G,
     K,
     T,
@@ -34,7 +36,7 @@ from gibbsmin.solver.layout import (
     new_work,
 )
 from gibbsmin.solver.phase_set import NONE, NOTHING, start_phases
-from gibbsmin.solver.settle import COLDEST, HOTTEST, settle
+from gibbsmin.solver.settle import settle
 from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.solver.status import (
     AFFINITY_LIMIT,
@@ -119,7 +121,6 @@ def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
 
 
 @inlined
-@inlined
 def close_balances(b: Any, w: Work, n: Any) -> None:
     """Let the condensed species take up what rounding left of the element balances: n_c + (B^-1 (b - A n))_c."""
     m = b.size
@@ -169,19 +170,29 @@ def at_energy(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     for j in range(gas.size):
         w.g[j] = 0.0
     select_candidates(A, gas, b, w.g, w)
-    if not start_temperature(A, b, gas, table, w):
-        return NO_ROOM
-    follow(table, gas, w)
-    start_phases(w)
-    if settle(b, gas, table, w):
-        return SOLVED
+    if start_temperature(A, b, gas, table, w):
+        follow(table, gas, w)
+        start_phases(w)
+        if settle(b, gas, table, w) and all_usable(table, w):
+            return SOLVED
     return by_bracket(A, gas, b, table, w)
+
+
+@inlined
+def all_usable(table: Table, w: Work) -> bool:
+    """Tell whether every condensed species that is present may be used at the present T."""
+    usable = True
+    for i in range(w.c.size):
+        if w.kind[i] == PRESENT:
+            j = w.species[w.basis[i]]
+            usable &= table.low[j] <= w.value[T] <= table.top[j]
+    return usable
 
 
 @inlined
 def by_bracket(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     """Narrow T by states of held T, whose energy and entropy rise with T, and settle from the nearest of them."""
-    mode, low, high = w.count[MODE], COLDEST, HOTTEST
+    mode, low, high = w.count[MODE], w.value[COLD], w.value[WARM]
     narrow = BRACKETS[0]
     for _ in range(120):
         w.value[T] = np.sqrt(low * high)
@@ -198,11 +209,11 @@ def by_bracket(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
         else:
             low = w.value[T]
         if high / low < 1.0 + narrow:
-            if high > 0.999 * HOTTEST:
+            if high > 0.999 * w.value[WARM]:
                 return TOO_HOT
-            if low < 1.001 * COLDEST:
+            if low < 1.001 * w.value[COLD]:
                 return TOO_COLD
-            if solved and settle(b, gas, table, w):
+            if solved and settle(b, gas, table, w) and all_usable(table, w):
                 return SOLVED
             narrow *= BRACKETS[1]
             if narrow < BRACKETS[2]:
@@ -241,6 +252,9 @@ def minimize_many(
     w = new_work(A)
     w.count[REUSES] = -1
     w.count[MODE] = mode
+    w.value[COLD], w.value[WARM] = np.inf, 0.0
+    for j in range(S):
+        w.value[COLD], w.value[WARM] = min(w.value[COLD], table.low[j]), max(w.value[WARM], table.top[j])
     relative = np.empty(m)
     for state in range(first.size):
         scale = 0.0

@@ -10,7 +10,7 @@ from gibbsmin.compiled import inlined
 from gibbsmin.solver.basis import replace
 from gibbsmin.solver.energy import boiling, follow
 from gibbsmin.solver.gas import OVERDRAFT, activities, balance_step, imbalance, overdrawn, worst_balance
-from gibbsmin.solver.layout import CHANGES, EXTRA, FREE, GAS, JOIN, MODE, PRESENT, STEPS, TEMPERATURE, VOLUME, G, N, T, Work, X
+from gibbsmin.solver.layout import CHANGES, COLD, EXTRA, FREE, GAS, JOIN, MODE, PRESENT, STEPS, TEMPERATURE, VOLUME, WARM, G, N, T, Work, X
 from gibbsmin.solver.newton import newton_error, newton_step
 from gibbsmin.solver.phase_set import EXTRA_PLACE, NONE, STUCK, poor_place, saturating, set_gas, wanted_change
 from gibbsmin.species.table import Table
@@ -23,8 +23,6 @@ ENOUGH: Final = 1.0e-11  # accepted where rounding forbids DONE
 MOST_STEPS: Final = 60  # from one start; 20 were the most that a start needed that led to the answer
 MOST_CHANGES: Final = 200
 MOST_ROUNDS: Final = 2000
-COLDEST: Final = 50.0  # K
-HOTTEST: Final = 20000.0
 
 
 @inlined
@@ -63,7 +61,7 @@ def settle(b: Any, gas: Any, table: Table, w: Work) -> bool:
         if w.count[STEPS] - steps > MOST_STEPS or not newton_step(w):
             return False
         if w.count[MODE] != TEMPERATURE:
-            if not COLDEST < w.value[T] < HOTTEST:
+            if not w.value[COLD] < w.value[T] < w.value[WARM]:
                 return False
             follow(table, gas, w)
     return False

@@ -8,8 +8,7 @@ import numpy as np
 
 from gibbsmin.compiled import inlined
 from gibbsmin.solver.energy import form_energies, potentials
-from gibbsmin.solver.layout import ENTROPY, IDLE, MODE, SECOND, T, Work
-from gibbsmin.solver.settle import COLDEST, HOTTEST
+from gibbsmin.solver.layout import COLD, ENTROPY, IDLE, MODE, SECOND, WARM, T, Work
 from gibbsmin.solver.simplex import optimal_basis
 from gibbsmin.species.table import Table
 
@@ -25,7 +24,7 @@ def start_temperature(A: Any, b: Any, gas: Any, table: Table, w: Work) -> bool:
     The energy of a fixed basis is smooth in T, that of the programme jumps where the basis changes: Newton steps, kept
     within a bracket that every trial narrows.
     """
-    low, high = COLDEST, HOTTEST
+    low, high = w.value[COLD], w.value[WARM]
     w.value[T] = GUESS
     for _ in range(60):
         potentials(table, gas, w)
