@@ -94,12 +94,14 @@ def equilibria(
     if np.any((T < COLDEST) | (T > HOTTEST)):
         raise InputError(f"temperature must lie within {COLDEST:.0f} and {HOTTEST:.0f} K; got {_first(T):.6g} K")
     b = _element_amounts(system, feeds, element_amounts)
-    states = np.broadcast_shapes(T.shape, P.shape, b.shape[:-1])
-    if len(states) > 1:
-        raise InputError(f"temperature, pressure and feeds have one axis, that of the states; got shape {states}")
-    count = states[0] if states else 1
-    T, P = (np.ascontiguousarray(np.broadcast_to(value, (count,))) for value in (T, P))
-    b = np.ascontiguousarray(np.broadcast_to(b, (count, b.shape[-1])))
+    lengths = {"temperature": T.shape, "pressure": P.shape, "feeds": b.shape[:-1]}
+    counts = {shape[0] for shape in lengths.values() if shape} - {1}
+    if len(counts) > 1 or any(len(shape) > 1 for shape in lengths.values()):
+        found = ", ".join(f"{name} {shape[0] if len(shape) == 1 else shape or 'one'}" for name, shape in lengths.items())
+        raise InputError(f"temperature, pressure and feeds have one axis, that of the states, of one length; got {found}")
+    count = counts.pop() if counts else 1
+    T, P = (np.array(np.broadcast_to(value, (count,)), float) for value in (T, P))  # copies: the compiled code is one
+    b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float)  # for writable arrays in row order only
     outcome = new_outcome(count, len(system.species), len(system.elements))
     minimize_many(system.element_matrix, system.gas, b, T, P / STANDARD_PRESSURE, system.table, outcome)
     return Batch(system, T, P, outcome)
@@ -136,6 +138,7 @@ def _element_amounts(system: System, feeds: Any, element_amounts: Any) -> Array:
         return array
     if (array < 0.0).any():
         raise FeedError(f"the feed of {names[int(np.argmax((array < 0.0).reshape(-1, len(names)).any(axis=0)))]} is negative")
-    return array @ system.element_matrix.T
+    amounts: Array = array @ system.element_matrix.T
+    return amounts
 
 

@@ -60,7 +60,8 @@ class System:
             raise SpeciesError(f"species {', '.join(twice)} given more than once")
         self.inert = tuple(dict.fromkeys(self.name_of(name) for name in inert))
         self.elements = self._rows()
-        self.element_matrix = np.array([[_atoms(r, row, self.inert) for r in self.records] for row in self.elements])
+        rows = [[_atoms(record, row, self.inert) for record in self.records] for row in self.elements]
+        self.element_matrix = np.array(rows, float).reshape(len(rows), len(self.records))
         self.molar_masses = np.array([record.molar_mass for record in self.records])
         self.gas = np.array([not record.condensed for record in self.records])
 
@@ -203,10 +204,10 @@ class System:
                 raise FeedError(f"the amount of {name} is negative: {value}")
             record = self.records[self.index[name]] if name in self.index else load().get(name)
             column = [_atoms(record, row, self.inert) for row in self.elements]
-            missing = [] if record.name in self.inert else [e for e in record.elements if e not in self.elements]
-            if amount > 0.0 and (missing or (record.charge and not any(column))):
-                lacking = " and ".join(missing) or CHARGE
-                raise FeedError(f"the feed holds {name}, but no species of the system holds {lacking}")
+            parts = [*record.elements, CHARGE] if record.charge else list(record.elements)
+            missing = [] if record.name in self.inert else [part for part in parts if part not in self.elements]
+            if amount > 0.0 and missing:
+                raise FeedError(f"the feed holds {name}, but no species of the system holds {' and '.join(missing)}")
             total += amount * np.array(column)
         return total
 
