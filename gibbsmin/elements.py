@@ -143,7 +143,9 @@ def parse_formula(formula: str) -> tuple[dict[str, float], int]:
                 stack[-1][element] = stack[-1].get(element, 0.0) + atoms
         position = match.end()
     if len(stack) > 1 or not stack[0]:
-        raise FormulaError(f"formula {formula!r}: a bracket is not closed" if len(stack) > 1 else "the formula is empty")
+        raise FormulaError(
+            f"formula {formula!r}: a bracket is not closed" if len(stack) > 1 else "the formula is empty"
+        )
     return stack[0], charge
 
 

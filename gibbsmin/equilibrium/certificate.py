@@ -30,9 +30,7 @@ class Certificate:
     def ok(self) -> bool:
         """True where all three lie within their tolerances."""
         return (
-            self.element_residual <= RESIDUAL_LIMIT
-            and self.gap <= GAP_LIMIT
-            and self.worst_affinity <= AFFINITY_LIMIT
+            self.element_residual <= RESIDUAL_LIMIT and self.gap <= GAP_LIMIT and self.worst_affinity <= AFFINITY_LIMIT
         )
 
     def __str__(self) -> str:

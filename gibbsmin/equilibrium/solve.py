@@ -97,11 +97,17 @@ def equilibria(
     lengths = {"temperature": T.shape, "pressure": P.shape, "feeds": b.shape[:-1]}
     counts = {shape[0] for shape in lengths.values() if shape} - {1}
     if len(counts) > 1 or any(len(shape) > 1 for shape in lengths.values()):
-        found = ", ".join(f"{name} {shape[0] if len(shape) == 1 else shape or 'one'}" for name, shape in lengths.items())
-        raise InputError(f"temperature, pressure and feeds have one axis, that of the states, of one length; got {found}")
+        found = ", ".join(
+            f"{name} {shape[0] if len(shape) == 1 else shape or 'one'}" for name, shape in lengths.items()
+        )
+        raise InputError(
+            f"temperature, pressure and feeds have one axis, that of the states, of one length; got {found}"
+        )
     count = counts.pop() if counts else 1
-    T, P = (np.array(np.broadcast_to(value, (count,)), float) for value in (T, P))  # copies: the compiled code is one
-    b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float)  # for writable arrays in row order only
+    T, P = (
+        np.array(np.broadcast_to(value, (count,)), float, order="C") for value in (T, P)
+    )  # copies: the compiled code is one
+    b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float, order="C")  # for writable arrays in row order only
     outcome = new_outcome(count, len(system.species), len(system.elements))
     minimize_many(system.element_matrix, system.gas, b, T, P / STANDARD_PRESSURE, system.table, outcome)
     return Batch(system, T, P, outcome)
@@ -125,9 +131,7 @@ def _element_amounts(system: System, feeds: Any, element_amounts: Any) -> Array:
     if (feeds is None) == (element_amounts is None):
         raise InputError("give either feeds or element_amounts")
     given, names, what = (
-        (element_amounts, system.elements, "element_amounts")
-        if feeds is None
-        else (feeds, system.species, "feeds")
+        (element_amounts, system.elements, "element_amounts") if feeds is None else (feeds, system.species, "feeds")
     )
     array: Array = np.asarray(given, float)
     if array.ndim not in (1, 2) or array.shape[-1] != len(names):
@@ -137,8 +141,8 @@ def _element_amounts(system: System, feeds: Any, element_amounts: Any) -> Array:
     if feeds is None:
         return array
     if (array < 0.0).any():
-        raise FeedError(f"the feed of {names[int(np.argmax((array < 0.0).reshape(-1, len(names)).any(axis=0)))]} is negative")
+        raise FeedError(
+            f"the feed of {names[int(np.argmax((array < 0.0).reshape(-1, len(names)).any(axis=0)))]} is negative"
+        )
     amounts: Array = array @ system.element_matrix.T
     return amounts
-
-

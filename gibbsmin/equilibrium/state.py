@@ -192,4 +192,3 @@ def _named(values: Array, names: list[str], title: str) -> pd.Series[float]:
     import pandas as pd
 
     return pd.Series(values, index=names, name=title)
-

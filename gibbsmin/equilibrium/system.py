@@ -114,7 +114,9 @@ class System:
             records.setdefault(name, own.get(name) or data.get(name))
         left_out = {name if name in own else data.get(name).name for name in exclude}
         if clash := sorted(left_out.intersection(held)):
-            raise InputError(f"{clash[0]} is both inert and excluded; an inert species is there, an excluded one is not")
+            raise InputError(
+                f"{clash[0]} is both inert and excluded; an inert species is there, an excluded one is not"
+            )
         return cls([record for name, record in records.items() if name not in left_out], held)
 
     @classmethod
