@@ -34,7 +34,7 @@ _PART: dict[str, Any] = {
     "no_cfunc_wrapper": True,
 }
 _PACKAGE = Path(__file__).parent
-_SOURCES = ("compiled.py", "species/polynomial.py", "species/table.py", "solver/*.py")
+_SOURCES = ("compiled.py", "thermo/polynomial.py", "thermo/table.py", "solver/*.py")
 
 
 def compiled(function: Function) -> Function:

@@ -5,7 +5,7 @@ from typing import Any, NamedTuple
 import numpy as np
 
 from gibbsmin.constants import STANDARD_PRESSURE
-from gibbsmin.equilibrium.system import System
+from gibbsmin.states.system import System
 
 
 class Proof(NamedTuple):

@@ -33,8 +33,9 @@ gas leaves of c. What remains is Newton's method in the other coordinates ("free
     [ H    s ] [dy   ]   [ -F        ]     H = sum_gas n_j nu_j nu_j^T,  s = sum_gas n_j nu_j
     [ s^T  0 ] [dlnN ] = [ -N X ln X ]                                                                      (6)
 
-Files, in the order in which they are used: `layout` (the arrays), `candidates`, `simplex` (the basis of the linear programme, each
-species taken as a pure phase: a start that has the right condensed species in most cases), `basis` (coordinates and
-their exchange), `gas` (activities and balances), `newton` (5, 6), `phase_set` (which condensed species are present,
-and whether there is a gas), `settle` (the iteration), `certificate`, `minimize` (one state, many states), `status` (what an outcome means).
+Files, in the order in which they are used: `layout` (the arrays), `candidates`, `simplex` (the basis of the linear
+programme, each species taken as a pure phase: a start that has the right condensed species in most cases), `basis`
+(coordinates and their exchange), `gas` (activities and balances), `newton` (5, 6), `phase_set` (which condensed
+species are present, and whether there is a gas), `settle` (the iteration), `certificate`, `minimize` (one state, many
+states), `status` (what an outcome means).
 """

@@ -24,7 +24,7 @@ from gibbsmin.solver.status import (
     UNPROVED,
     UNSETTLED,
 )
-from gibbsmin.species.table import Table, standard_state
+from gibbsmin.thermo.table import Table, standard_state
 
 STARTS: Final = (0.0, -4.0, 4.0, -12.0)
 """Added to the potentials of gases in the linear programme, one after the other until a start leads to the answer."""

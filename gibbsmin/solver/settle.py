@@ -63,7 +63,7 @@ def settle(b: Any, w: Work) -> bool:
 
 @inlined
 def change(place: int, b: Any, w: Work) -> None:
-    """Put candidate ``w.count[JOIN]`` into ``place``, present if condensed, free if gas; with NONE the place is only freed.
+    """Put candidate ``w.count[JOIN]`` into ``place``, present if condensed, free if gas; NONE only frees the place.
 
     Then see that there is a gas just where a free coordinate holds something.
     """

@@ -13,8 +13,8 @@ from time import perf_counter
 import cantera as ct
 import numpy as np
 
-from gibbsmin.equilibrium.solve import equilibria
 from gibbsmin.interop import system_from_cantera
+from gibbsmin.states.solve import equilibria
 
 STATES, FEW, ROUNDS = 2000, 200, 7
 SOLVERS = ("element_potential", "vcs", "gibbs")

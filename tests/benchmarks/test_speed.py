@@ -11,8 +11,8 @@ from time import process_time
 import numpy as np
 import pytest
 
-from gibbsmin.equilibrium.solve import equilibria
-from gibbsmin.equilibrium.system import System
+from gibbsmin.states.solve import equilibria
+from gibbsmin.states.system import System
 
 ROOT = Path(__file__).parents[2]
 ONE_THREAD = {f"{library}_NUM_THREADS": "1" for library in ("OMP", "OPENBLAS", "MKL", "NUMBA")}
@@ -59,8 +59,8 @@ def test_time_of_a_state_with_condensed_phases(elements: str, limit: float, caps
 
 COLD = """
 from time import process_time
-from gibbsmin.equilibrium.solve import equilibrium
-from gibbsmin.equilibrium.system import System
+from gibbsmin.states.solve import equilibrium
+from gibbsmin.states.system import System
 system = System.from_species("CH4 H2O CO CO2 H2 C(s):graphite")
 start = process_time()
 equilibrium(system, {"CH4": 1.0, "H2O": 2.0}, temperature=1000.0, pressure=1e5)

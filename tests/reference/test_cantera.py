@@ -12,9 +12,9 @@ import numpy as np
 import pytest
 
 from gibbsmin.constants import R
-from gibbsmin.equilibrium.batch import Batch
-from gibbsmin.equilibrium.solve import equilibria
 from gibbsmin.interop import system_from_cantera
+from gibbsmin.states.batch import Batch
+from gibbsmin.states.solve import equilibria
 
 STATES = 300
 TRACE = 1.0e-12

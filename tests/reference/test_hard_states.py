@@ -14,13 +14,13 @@ import pytest
 from proof import Proof, prove
 
 from gibbsmin.constants import ATMOSPHERE, R
-from gibbsmin.equilibrium.batch import Batch
-from gibbsmin.equilibrium.solve import equilibria, equilibrium
-from gibbsmin.equilibrium.state import State
-from gibbsmin.equilibrium.system import System
 from gibbsmin.interop import system_from_cantera
-from gibbsmin.species.database import load
-from gibbsmin.species.record import Piece, Species
+from gibbsmin.states.batch import Batch
+from gibbsmin.states.solve import equilibria, equilibrium
+from gibbsmin.states.state import State
+from gibbsmin.states.system import System
+from gibbsmin.thermo.database import load
+from gibbsmin.thermo.record import Piece, Species
 
 
 def proof_of(state: State, feed: dict[str, float]) -> Proof:

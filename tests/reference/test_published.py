@@ -19,11 +19,11 @@ import pytest
 
 from gibbsmin.constants import ATMOSPHERE, STANDARD_PRESSURE, STANDARD_TEMPERATURE, R
 from gibbsmin.elements import parse_formula
-from gibbsmin.equilibrium.solve import equilibrium
-from gibbsmin.equilibrium.state import State
-from gibbsmin.equilibrium.system import System
-from gibbsmin.species.database import load
-from gibbsmin.species.record import Piece, Species
+from gibbsmin.states.solve import equilibrium
+from gibbsmin.states.state import State
+from gibbsmin.states.system import System
+from gibbsmin.thermo.database import load
+from gibbsmin.thermo.record import Piece, Species
 from gibbsmin.units import quantity
 
 Row = dict[str, str]

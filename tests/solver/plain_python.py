@@ -9,11 +9,11 @@ from typing import Any
 
 import numpy as np
 
-from gibbsmin.equilibrium.solve import equilibria
-from gibbsmin.equilibrium.system import System
 from gibbsmin.solver.candidates import select_candidates
 from gibbsmin.solver.layout import IDLE, new_work
 from gibbsmin.solver.simplex import optimal_basis
+from gibbsmin.states.solve import equilibria
+from gibbsmin.states.system import System
 
 
 def states(question: dict[str, Any]) -> list[dict[str, Any]]:

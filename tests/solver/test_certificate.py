@@ -8,11 +8,11 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from gibbsmin.equilibrium.solve import equilibrium
-from gibbsmin.equilibrium.state import State
-from gibbsmin.equilibrium.system import System
 from gibbsmin.solver.certificate import element_residual, optimality
 from gibbsmin.solver.status import AFFINITY_LIMIT, GAP_LIMIT, RESIDUAL_LIMIT
+from gibbsmin.states.solve import equilibrium
+from gibbsmin.states.state import State
+from gibbsmin.states.system import System
 
 FEEDS = {
     "flame": ({"CH4": 1.0, "O2": 1.8, "N2": 7.0}, 2200.0),

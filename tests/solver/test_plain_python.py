@@ -6,8 +6,8 @@ from typing import Any
 import numpy as np
 import pytest
 
-from gibbsmin.equilibrium.solve import equilibria
-from gibbsmin.equilibrium.system import System
+from gibbsmin.states.solve import equilibria
+from gibbsmin.states.system import System
 
 
 def test_plain_python_and_compiled_code_agree(in_plain_python: Callable[[dict[str, Any]], Any]) -> None:

@@ -7,7 +7,7 @@ import numpy as np
 import pytest
 from scipy.optimize import linprog
 
-from gibbsmin.equilibrium.system import System
+from gibbsmin.states.system import System
 
 Programme = tuple[np.ndarray, np.ndarray, np.ndarray]
 
