@@ -1,7 +1,7 @@
 """Thermochemical data: species records, standard-state functions, the database and its data files.
 
-Names of species: ``FORMULA`` for a gas, ``FORMULA(s)`` or ``FORMULA(l)`` condensed, then ``:form`` where the formula does
-not say enough.
+Names of species: ``FORMULA`` for a gas, ``FORMULA(s)`` or ``FORMULA(l)`` condensed, then ``:form`` where the formula
+does not say enough.
 
 1. Proper capitals, the metal or more electropositive element first, groups in brackets: ``Ca(OH)2``.
 2. The trade's order where there is one (``CH4 NH3 HCN H2SO4 C2H5OH``), else carbon, hydrogen, then the alphabet.
