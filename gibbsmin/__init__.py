@@ -12,25 +12,54 @@ Names are imported on first use, so that importing the package costs nothing.
 from __future__ import annotations
 
 from importlib import import_module
-from typing import Any
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from gibbsmin import interop as interop
+    from gibbsmin.case.read import read_case as read_case
+    from gibbsmin.results.result import Result as Result
+    from gibbsmin.states.batch import Batch as Batch
+    from gibbsmin.states.solve import equilibria as equilibria
+    from gibbsmin.states.solve import equilibrium as equilibrium
+    from gibbsmin.states.state import State as State
+    from gibbsmin.states.system import System as System
+    from gibbsmin.studies.sweep import sweep as sweep
+    from gibbsmin.thermo.database import species as species
+    from gibbsmin.thermo.own import read_species as read_species
+    from gibbsmin.thermo.record import Species as Species
 
 __version__ = "0.1.0"
 
 _HOMES = {
-    "Batch": "gibbsmin.equilibrium.batch",
-    "Species": "gibbsmin.species.record",
-    "State": "gibbsmin.equilibrium.state",
-    "System": "gibbsmin.equilibrium.system",
-    "equilibria": "gibbsmin.equilibrium.solve",
-    "equilibrium": "gibbsmin.equilibrium.solve",
+    "Batch": "gibbsmin.states.batch",
+    "Result": "gibbsmin.results.result",
+    "Species": "gibbsmin.thermo.record",
+    "State": "gibbsmin.states.state",
+    "System": "gibbsmin.states.system",
+    "equilibria": "gibbsmin.states.solve",
+    "equilibrium": "gibbsmin.states.solve",
     "interop": "gibbsmin.interop",
-    "read_case": "gibbsmin.case.study",
-    "read_species": "gibbsmin.species.own",
-    "species": "gibbsmin.species.database",
+    "read_case": "gibbsmin.case.read",
+    "read_species": "gibbsmin.thermo.own",
+    "species": "gibbsmin.thermo.database",
     "sweep": "gibbsmin.studies.sweep",
 }
 
-__all__ = sorted([*_HOMES, "__version__"])
+__all__ = [
+    "Batch",
+    "Result",
+    "Species",
+    "State",
+    "System",
+    "__version__",
+    "equilibria",
+    "equilibrium",
+    "interop",
+    "read_case",
+    "read_species",
+    "species",
+    "sweep",
+]
 
 
 def __getattr__(name: str) -> Any:

@@ -34,11 +34,13 @@ _PART: dict[str, Any] = {
     "no_cfunc_wrapper": True,
 }
 _PACKAGE = Path(__file__).parent
-_SOURCES = ("compiled.py", "species/polynomial.py", "species/table.py", "solver/*.py")
+_SOURCES = ("compiled.py", "thermo/polynomial.py", "thermo/table.py", "solver/*.py")
 
 
 def compiled(function: Function) -> Function:
     """Compile an entry point on its first call from Python; it runs without the global lock and is cached on disk."""
+    if numba.config.DISABLE_JIT:
+        return function
     with _settings():
         dispatcher = numba.njit(cache=True, nogil=True, error_model="numpy", no_cfunc_wrapper=True)(function)
 

@@ -138,12 +138,14 @@ def parse_formula(formula: str) -> tuple[dict[str, float], int]:
         else:
             if closing and (len(stack) == 1 or not stack[-1]):
                 raise FormulaError(f"formula {formula!r}: a bracket is empty or was never opened")
-            last = stack.pop() if closing else {symbol: 1.0}
+            last = stack.pop() if closing else {str(symbol): 1.0}
             for element, atoms in last.items():
                 stack[-1][element] = stack[-1].get(element, 0.0) + atoms
         position = match.end()
     if len(stack) > 1 or not stack[0]:
-        raise FormulaError(f"formula {formula!r}: a bracket is not closed" if len(stack) > 1 else "the formula is empty")
+        raise FormulaError(
+            f"formula {formula!r}: a bracket is not closed" if len(stack) > 1 else "the formula is empty"
+        )
     return stack[0], charge
 
 

@@ -88,5 +88,7 @@ def nearest(word: str, known: Iterable[str], count: int = 3) -> str:
     """Return '; did you mean ...?' with the known words nearest to ``word``, or an empty string."""
     names = list(known)
     folded = [name for name in names if name.casefold() == word.casefold()]
-    found = [*folded, *(name for name in difflib.get_close_matches(word, names, count, 0.6) if name not in folded)][:count]
+    found = [*folded, *(name for name in difflib.get_close_matches(word, names, count, 0.6) if name not in folded)][
+        :count
+    ]
     return f"; did you mean {' or '.join(repr(name) for name in found)}?" if found else ""

@@ -1,6 +1,6 @@
 """Species and systems from Cantera objects and files (extra ``interop``): ideal gases and fixed-stoichiometry phases.
 
-Cantera's own parametrizations are read into the nine-coefficient pieces of `species.polynomial`. The reference pressure
+Cantera's own parametrizations are read into the nine-coefficient pieces of `thermo.polynomial`. The reference pressure
 is that of each record: Cantera takes 1 atm for a file that does not say.
 """
 
@@ -12,12 +12,14 @@ from pathlib import Path
 from typing import Any, Final
 
 from gibbsmin.constants import R
-from gibbsmin.equilibrium.system import System
 from gibbsmin.errors import InputError, SpeciesError
-from gibbsmin.species.record import Piece, Species
+from gibbsmin.states.system import System
+from gibbsmin.thermo.record import Piece, Species
 
 GAS_MODEL: Final = "ideal-gas"
 PURE_MODEL: Final = "fixed-stoichiometry"
+CANTERA_FILES: Final = (".yaml", ".yml")
+"""Endings by which a Cantera file is known."""
 BEYOND: Final = 200.0
 """How far a condensed species may be used beyond the range of its data, [K]."""
 

@@ -12,8 +12,9 @@ from gibbsmin.case.schema import Case
 from gibbsmin.case.source import Source, open_source
 from gibbsmin.case.study import Study
 from gibbsmin.errors import InputError
-from gibbsmin.species.own import read_species
-from gibbsmin.species.record import Species
+from gibbsmin.interop import CANTERA_FILES, read_cantera_file
+from gibbsmin.thermo.own import read_species
+from gibbsmin.thermo.record import Species
 
 
 def read_case(path: str | Path, *, outside: bool = False) -> Study:
@@ -58,7 +59,7 @@ def _own_species(case: Case, source: Source, outside: bool) -> list[Species]:
         if not place.is_file():
             raise source.error(f"there is no file {name!r} in the folder of the case", key)
         try:
-            own += read_species(place)
+            own += read_cantera_file(place) if place.suffix in CANTERA_FILES else read_species(place)
         except InputError as error:
             raise source.error(f"{name}: {error}", key) from None
     return own

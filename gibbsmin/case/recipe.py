@@ -11,10 +11,10 @@ from typing import Final
 
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError, in_si
-from gibbsmin.case.ratios import counted_carbon
 from gibbsmin.elements import ATOMIC_WEIGHT
 from gibbsmin.errors import FeedError, SpeciesError
-from gibbsmin.species.record import Species
+from gibbsmin.practice.ratios import counted_carbon
+from gibbsmin.thermo.record import Species
 from gibbsmin.units import one_of
 
 DRY_AIR: Final = {"N2": 0.78084, "O2": 0.209476, "Ar": 0.00934, "CO2": 0.000314}

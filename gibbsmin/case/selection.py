@@ -11,10 +11,10 @@ from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import Find, Recipe
 from gibbsmin.case.schema import FROM_FEEDS, SpeciesTable
 from gibbsmin.elements import ATOMIC_WEIGHT, CHARGE
-from gibbsmin.equilibrium.system import System
 from gibbsmin.errors import InputError, SpeciesError, nearest
-from gibbsmin.species.database import load
-from gibbsmin.species.record import Species
+from gibbsmin.states.system import System
+from gibbsmin.thermo.database import load
+from gibbsmin.thermo.record import Species
 
 Floats = NDArray[np.float64]
 

@@ -9,9 +9,9 @@ from numpy.typing import NDArray
 
 from gibbsmin.case.feed_schema import RATIOS, Feed
 from gibbsmin.case.fields import RuleError
-from gibbsmin.case.ratios import oxygen_need
 from gibbsmin.case.recipe import ANY_SIZE, Recipe, feed_size
 from gibbsmin.errors import FeedError
+from gibbsmin.practice.ratios import oxygen_need
 from gibbsmin.units import one_of
 
 Floats = NDArray[np.float64]

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from pathlib import Path
 from typing import Any
 
 import numpy as np
@@ -13,15 +14,18 @@ from numpy.typing import NDArray
 from gibbsmin.case.axes import AxisValues, axis_values
 from gibbsmin.case.fields import RuleError, in_si
 from gibbsmin.case.recipe import Recipe, read_recipe
-from gibbsmin.case.result import FeedAmounts, Result, shown_units
 from gibbsmin.case.schema import Case
 from gibbsmin.case.selection import choose_system, element_row, finder
+from gibbsmin.case.shown import shown_units
 from gibbsmin.case.sizes import feed_units, read_basis
-from gibbsmin.equilibrium.solve import COLDEST, HOTTEST
-from gibbsmin.equilibrium.system import System
-from gibbsmin.species.record import Species
+from gibbsmin.results.folder import check_place, write_folder
+from gibbsmin.results.judge import judge
+from gibbsmin.results.result import FeedAmounts, Result
+from gibbsmin.states.solve import COLDEST, HOTTEST
+from gibbsmin.states.system import System
 from gibbsmin.studies.labelled import Axis
 from gibbsmin.studies.sweep import Progress, grid, solve_in_chunks
+from gibbsmin.thermo.record import Species
 
 Floats = NDArray[np.float64]
 
@@ -162,18 +166,34 @@ class Study:
         value = in_si(getattr(self.case.held, name), unit)
         return np.asarray(self.columns.get(f"held.{name}", np.full(self.states, value)))
 
-    def run(self, progress: Progress | None = None) -> Result:
+    def run(self, out: str | Path | None = None, progress: Progress | None = None) -> Result:
         """Solve all states.
 
         Parameters
         ----------
+        out : str or Path, optional
+            Result folder to write, as the command line does.
         progress : callable, optional
             Called with the states done and all states.
 
         Returns
         -------
         Result
+
+        Raises
+        ------
+        InputError
+            The folder cannot be written, or holds something that is not a result.
         """
+        if out is not None:
+            check_place(Path(out))
+        result = self._solve(progress)
+        if out is not None:
+            write_folder(result, judge(result), Path(out))
+        return result
+
+    def _solve(self, progress: Progress | None) -> Result:
+        """Solve all states."""
         batch = solve_in_chunks(
             self.system,
             self.units @ self.element_rows,

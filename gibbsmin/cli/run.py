@@ -36,8 +36,8 @@ def run(
     """
     folders = _folders(cases, out)
     studies = _read(cases)
-    from gibbsmin.report.folder import as_json as written
-    from gibbsmin.report.folder import check_place
+    from gibbsmin.results.folder import as_json as written
+    from gibbsmin.results.folder import check_place
 
     for folder in folders:
         check_place(folder)
@@ -85,15 +85,15 @@ def _read(cases: list[Path]) -> list[Study]:
 def _solve(study: Study, folder: Path, show: bool) -> tuple[dict[str, Any], bool]:
     """Solve one case, write its folder, show it; the document, and whether all states are certified."""
     from gibbsmin.compiled import cache_is_cold
-    from gibbsmin.report.folder import write_folder
-    from gibbsmin.report.judge import judge
     from gibbsmin.report.summary import summary
+    from gibbsmin.results.folder import write_folder
+    from gibbsmin.results.judge import judge
 
     if cache_is_cold():
         say("Compiling the solver for this machine, once; about 15 s ...")
     progress = Progress("solving")
     try:
-        result = study.run(progress)
+        result = study.run(progress=progress)
     finally:
         progress.close()
     judged = judge(result)

@@ -19,7 +19,8 @@ def species(
         list[str] | None, typer.Argument(metavar="[WORDS]...", help="A name, a formula, or words to search for.")
     ] = None,
     check: Annotated[
-        Path | None, typer.Option(metavar="FILE", help="Check the data in a file of your own species (TOML).")
+        Path | None,
+        typer.Option(metavar="FILE", help="Check a file of your own species (TOML) or a Cantera file (YAML)."),
     ] = None,
 ) -> None:
     """Find species; with one name, show its data, range, source and uncertainty."""
@@ -29,7 +30,7 @@ def species(
         _check(check)
         return
     from gibbsmin.report.species_sheet import species_list, species_sheet
-    from gibbsmin.species.database import load
+    from gibbsmin.thermo.database import load
 
     database = load()
     if not words:
@@ -54,14 +55,18 @@ def species(
 
 def _check(path: Path) -> None:
     """Check a user's species file; exit code 2 where something is wrong with it."""
+    from gibbsmin.interop import CANTERA_FILES, read_cantera_file
     from gibbsmin.report.species_sheet import findings_list, species_list
-    from gibbsmin.species.checkup import check
-    from gibbsmin.species.own import read_species
+    from gibbsmin.thermo.checkup import check
+    from gibbsmin.thermo.own import read_species
 
-    records = read_species(path)
+    cantera = path.suffix in CANTERA_FILES
+    records = read_cantera_file(path) if cantera else read_species(path, strict=False)
     typer.echo("\n".join(species_list(records)))
     findings = check(records)
     if findings:
         typer.echo("\n".join(findings_list(findings)))
         raise typer.Exit(WRONG)
+    if not cantera:
+        read_species(path)  # refuses what only the text of the file shows, J written for kJ
     typer.echo(f"{len(records)} species, nothing to object to")

@@ -1,6 +1,6 @@
 """What every phase answers, whatever its mixing model.
 
-A new model is one file beside this one with a class of these members, and one line in `equilibrium.system` that says
+A new model is one file beside this one with a class of these members, and one line in `states.system` that says
 which species it gathers. Arrays run over the species of the phase alone.
 """
 

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from gibbsmin.constants import R
-from gibbsmin.species.record import Species
+from gibbsmin.thermo.record import Species
 
 
 def carbon_activity(potential: ArrayLike, graphite: Species, temperature: ArrayLike) -> NDArray[np.float64]:

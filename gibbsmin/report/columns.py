@@ -8,13 +8,13 @@ from typing import TYPE_CHECKING, Final, NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.report.fractions import gas_fractions
 from gibbsmin.report.numbers import MISSING, figures, plain
 from gibbsmin.report.words import WIDTH
+from gibbsmin.results.fractions import gas_fractions
 from gibbsmin.units import from_si
 
 if TYPE_CHECKING:
-    from gibbsmin.case.result import Result
+    from gibbsmin.results.result import Result
 
 _GAP: Final = 2
 _IN_PPM: Final = 1e-3  # a gas species that stays below it is shown in ppm

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, NamedTuple
 import numpy as np
 
 if TYPE_CHECKING:
-    from gibbsmin.case.result import Result
+    from gibbsmin.results.result import Result
 
 
 class Onset(NamedTuple):

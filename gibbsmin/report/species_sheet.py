@@ -9,8 +9,8 @@ from gibbsmin.constants import STANDARD_TEMPERATURE
 from gibbsmin.report.numbers import MISSING, plain
 from gibbsmin.report.table import heading
 from gibbsmin.report.words import labelled, shortened
-from gibbsmin.species.checkup import Finding
-from gibbsmin.species.record import Species
+from gibbsmin.thermo.checkup import Finding
+from gibbsmin.thermo.record import Species
 
 _TEMPERATURES = (298.15, 400, 500, 600, 800, 1000, 1200, 1400, 1600, 1800, 2000, 2500, 3000, 4000, 5000, 6000)  # K
 

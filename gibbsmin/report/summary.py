@@ -7,14 +7,14 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from gibbsmin.practice.cautions import CLOSING, Caution, gather
-from gibbsmin.report.judge import peaks
 from gibbsmin.report.sweep_table import sweep_table
 from gibbsmin.report.table import THRESHOLD, state_table
 from gibbsmin.report.view import view
 from gibbsmin.report.words import labelled
+from gibbsmin.results.judge import peaks
 
 if TYPE_CHECKING:
-    from gibbsmin.case.result import Result
+    from gibbsmin.results.result import Result
 
 
 def summary(result: Result, judged: Sequence[Sequence[Caution]], folder: Path) -> list[str]:

@@ -24,7 +24,7 @@ from gibbsmin.report.table import certificate, heading
 from gibbsmin.report.words import labelled
 
 if TYPE_CHECKING:
-    from gibbsmin.case.result import Result
+    from gibbsmin.results.result import Result
 
 ROWS: Final = 40
 """States shown at most; a longer sweep shows evenly spaced ones."""

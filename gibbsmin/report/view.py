@@ -8,7 +8,7 @@ from math import nan
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from gibbsmin.case.result import Result
+    from gibbsmin.results.result import Result
 
 
 @dataclass(frozen=True, slots=True)

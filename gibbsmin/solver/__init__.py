@@ -47,8 +47,9 @@ g_j = G°_j/RT + ln(RT/(P° V)), there is no ln N, and internal energies stand f
 programme is convex where Cp > 0 (`phase_set` lets one more condensed species in at the temperature where two coexist:
 a plateau, on which its amount is the unknown that T is not).
 
-Files, in the order in which they are used: `layout` (the arrays), `candidates`, `simplex` (the basis of the linear programme, each
-species taken as a pure phase: a start that has the right condensed species in most cases), `basis` (coordinates and
-their exchange), `gas` (activities and balances), `energy` (7, 8), `newton` (5, 6), `phase_set` (which condensed species are present,
-and whether there is a gas), `settle` (the iteration), `certificate`, `minimize` (one state, many states), `status` (what an outcome means).
+Files, in the order in which they are used: `layout` (the arrays), `candidates`, `simplex` (the basis of the linear
+programme, each species taken as a pure phase: a start that has the right condensed species in most cases), `basis`
+(coordinates and their exchange), `gas` (activities and balances), `energy` (7, 8), `newton` (5, 6), `phase_set` (which
+condensed species are present, and whether there is a gas), `settle` (the iteration), `at_temperature` and `at_energy`
+(one state), `certificate`, `outcome`, `minimize` (many states), `status` (what an outcome means).
 """

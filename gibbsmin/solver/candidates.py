@@ -1,6 +1,6 @@
 """The species that a state can hold at all.
 
-Arguments throughout: ``A`` (m, S), ``gas`` (S,) bool, ``b`` (m,), ``g`` (S,) with inf for a species that is offered as no
+Arguments throughout: ``A`` (m, S), ``gas`` (S,) bool, ``b`` (m,), ``g`` (S,) with inf for a species that is no
 candidate.
 """
 

@@ -27,7 +27,7 @@ from gibbsmin.solver.layout import (
     T,
     Work,
 )
-from gibbsmin.species.table import Table, standard_heat_capacity, standard_state
+from gibbsmin.thermo.table import Table, standard_heat_capacity, standard_state
 
 
 @inlined

@@ -44,8 +44,11 @@ WARM: Final = 7
 
 
 class Work(NamedTuple):
-    """Arrays of one state; S species, m elements. What lies beyond the candidates in use
-    means nothing. Long loops run over species, along rows, so that they compile to vector instructions."""
+    """Arrays of one state; S species, m elements.
+
+    What lies beyond the candidates in use means nothing. Long loops run over species, along rows, so
+    that they compile to vector instructions.
+    """
 
     A: Any  # (m, S) atoms of each element in each species
     count: Any  # (10,) int, see above

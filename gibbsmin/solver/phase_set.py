@@ -72,7 +72,7 @@ def start_phases(w: Work) -> None:
 
 @inlined
 def taken_back(i: int, w: Work) -> bool:
-    """Tell whether some species balances coordinate ``i``, of which there is none; if not, all its holders are absent."""
+    """Tell whether some species balances coordinate ``i``, of which there is none; if not, its holders are absent."""
     for j in range(w.count[K]):
         if w.nu[i, j] < 0.0:
             possible = True
@@ -124,7 +124,7 @@ def poor_place(w: Work) -> int:
 
 @inlined
 def saturating(i: int, w: Work) -> int:
-    """Condensed candidate that takes up what the gas cannot balance in coordinate ``i``; moves y_i to where it saturates.
+    """Condensed candidate that takes up what the gas cannot balance in coordinate ``i``; y_i moves to where it does.
 
     Supply without demand lowers y_i until a species with nu < 0 saturates, demand without supply raises it until one
     with nu > 0 does.

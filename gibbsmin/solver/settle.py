@@ -10,10 +10,28 @@ from gibbsmin.compiled import inlined
 from gibbsmin.solver.basis import replace
 from gibbsmin.solver.energy import boiling, follow
 from gibbsmin.solver.gas import OVERDRAFT, activities, balance_step, imbalance, overdrawn, worst_balance
-from gibbsmin.solver.layout import CHANGES, COLD, EXTRA, FREE, GAS, JOIN, MODE, PRESENT, STEPS, TEMPERATURE, VOLUME, WARM, G, N, T, Work, X
+from gibbsmin.solver.layout import (
+    CHANGES,
+    COLD,
+    EXTRA,
+    FREE,
+    GAS,
+    JOIN,
+    MODE,
+    PRESENT,
+    STEPS,
+    TEMPERATURE,
+    VOLUME,
+    WARM,
+    G,
+    N,
+    T,
+    Work,
+    X,
+)
 from gibbsmin.solver.newton import newton_error, newton_step
 from gibbsmin.solver.phase_set import EXTRA_PLACE, NONE, STUCK, poor_place, saturating, set_gas, wanted_change
-from gibbsmin.species.table import Table
+from gibbsmin.thermo.table import Table
 
 COARSE: Final = 1.0  # abs(ln(supply/demand)) above which one balance at a time is set right
 CROWDED: Final = 3.0  # ln X above which the gas is given more room before anything else
@@ -77,7 +95,7 @@ def crowded(w: Work) -> bool:
 
 @inlined
 def change(place: int, b: Any, w: Work) -> None:
-    """Put candidate ``w.count[JOIN]`` into ``place``, present if condensed, free if gas; with NONE the place is only freed.
+    """Put candidate ``w.count[JOIN]`` into ``place``, present if condensed, free if gas; NONE only frees the place.
 
     Then see that there is a gas where a free coordinate holds something, and, unless the temperature is free to stay
     where gas and condensed coexist, only there.

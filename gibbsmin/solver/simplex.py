@@ -89,7 +89,7 @@ def real_for(place: int, w: Work) -> int:
 
 @inlined
 def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
-    """Find an optimal basis from artificial columns; False if the candidates cannot hold b (or the search does not end)."""
+    """Find an optimal basis from artificial columns; False if the candidates cannot hold b, or no end is found."""
     start_basis(A, b, g, bias, w)
     if not improve(b, w) or not remove_artificial(b, w):
         return False

@@ -9,8 +9,8 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.equilibrium.batch import Batch
-from gibbsmin.equilibrium.system import System
+from gibbsmin.states.batch import Batch
+from gibbsmin.states.system import System
 
 if TYPE_CHECKING:
     import xarray

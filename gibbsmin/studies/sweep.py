@@ -8,10 +8,10 @@ from typing import TYPE_CHECKING, Final
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from gibbsmin.equilibrium.batch import Batch
-from gibbsmin.equilibrium.solve import equilibria
-from gibbsmin.equilibrium.system import System
 from gibbsmin.errors import InputError, nearest
+from gibbsmin.states.batch import Batch
+from gibbsmin.states.solve import equilibria
+from gibbsmin.states.system import System
 from gibbsmin.studies.labelled import Axis, labelled
 from gibbsmin.units import Measurable, quantity
 

@@ -1,5 +1,7 @@
 """From a file to a study: the right system and feeds, and plain messages where they cannot be."""
 
+from pathlib import Path
+
 import numpy as np
 import pytest
 from hypothesis import HealthCheck, given, settings
@@ -221,3 +223,19 @@ def test_own_species_that_are_wrong_are_named_with_their_file(write, tmp_path):
         read_case(write((SPECIES, SPECIES + '\nfiles = ["mine.toml"]')))
     assert isinstance(caught.value, GibbsminError)
     assert caught.value.key == "species.files[1]"
+
+
+def test_species_of_a_cantera_file(write):
+    """The packaged mechanism gri30 (GRI-Mech 3.0, from the package cantera) beside the case, named in `files`."""
+    import cantera
+
+    path = write(('elements = "from feeds"', 'elements = "from feeds"\nfiles = ["mechanism.yaml"]'))
+    packaged = Path(cantera.__file__).parent / "data" / "gri30.yaml"
+    (path.parent / "mechanism.yaml").write_bytes(packaged.read_bytes())
+    study = read_case(path)
+    record = study.system.records[study.system.index["CH2(S)"]]
+    assert "gri30" in record.source
+    assert study.run().batch.certified.all()
+    (path.parent / "mechanism.yaml").write_text("phases: nothing")
+    with pytest.raises(CaseError, match=r"mechanism\.yaml.*cannot be read as a Cantera file"):
+        read_case(path)

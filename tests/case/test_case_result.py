@@ -9,7 +9,7 @@ import pytest
 from gibbsmin.case.read import read_case
 from gibbsmin.elements import parse_formula, split_name
 from gibbsmin.solver.status import MEANING, SOLVED
-from gibbsmin.species.database import load
+from gibbsmin.thermo.database import load
 
 NO_SWEEP = '[[sweep]]\nvary = "held.temperature"\nfrom = "800 degC"\nto = "900 degC"\npoints = 3\n'
 
@@ -111,7 +111,7 @@ def test_one_state_has_no_axes(single):
 
 def test_progress_is_told(write):
     told = []
-    read_case(write(("points = 3", "points = 2001"))).run(lambda done, total: told.append((done, total)))
+    read_case(write(("points = 3", "points = 2001"))).run(progress=lambda done, total: told.append((done, total)))
     assert told == [(2000, 2001), (2001, 2001)]
 
 

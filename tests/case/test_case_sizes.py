@@ -10,11 +10,11 @@ from hypothesis import strategies as st
 
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError
-from gibbsmin.case.ratios import counted_carbon, oxygen_need
 from gibbsmin.case.recipe import read_recipe
 from gibbsmin.case.sizes import feed_units, read_basis
 from gibbsmin.errors import FeedError
-from gibbsmin.species.database import load
+from gibbsmin.practice.ratios import counted_carbon, oxygen_need
+from gibbsmin.thermo.database import load
 
 AIR_O2 = 0.209476 / (0.78084 + 0.209476 + 0.00934 + 0.000314)  # mole fraction of O2, normalised
 

@@ -6,9 +6,9 @@ shipped data count: 6.197 kJ/mol for each positive charge.
 
 import pytest
 
-from gibbsmin.species.database import load
-from gibbsmin.species.making.assemble import read_names, read_toml
-from gibbsmin.species.making.sources import atct
+from gibbsmin.thermo.database import load
+from gibbsmin.thermo.making.assemble import read_names, read_toml
+from gibbsmin.thermo.making.sources import atct
 
 KEYS = {
     row["name"]: row["atct"]

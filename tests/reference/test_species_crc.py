@@ -7,8 +7,8 @@ and where the sources are known to lie further apart, the distance that the spec
 
 import pytest
 
-from gibbsmin.species.database import load
-from gibbsmin.species.making.sources import crc
+from gibbsmin.thermo.database import load
+from gibbsmin.thermo.making.sources import crc
 
 CAS = dict(
     line.split()

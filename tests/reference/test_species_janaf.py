@@ -16,10 +16,10 @@ import pytest
 
 from gibbsmin.elements import parse_formula
 from gibbsmin.errors import FormulaError
-from gibbsmin.species.database import load
-from gibbsmin.species.making.assemble import read_toml
-from gibbsmin.species.making.sources import janaf, janaf_enthalpy, package_file
-from gibbsmin.species.making.steps import STEPS
+from gibbsmin.thermo.database import load
+from gibbsmin.thermo.making.assemble import read_toml
+from gibbsmin.thermo.making.sources import janaf, janaf_enthalpy, package_file
+from gibbsmin.thermo.making.steps import STEPS
 
 POINTS = list(csv.DictReader((Path(__file__).parent / "janaf_points.csv").read_text().splitlines()))
 T0 = 298.15

@@ -9,7 +9,7 @@ from math import exp, log
 import pytest
 
 from gibbsmin.constants import ATMOSPHERE, STANDARD_PRESSURE, R
-from gibbsmin.species.database import load
+from gibbsmin.thermo.database import load
 
 
 def crossing(reaction: dict[str, float], low: float, high: float, pressure: float = STANDARD_PRESSURE) -> float:

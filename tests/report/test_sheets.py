@@ -7,7 +7,7 @@ import pytest
 from gibbsmin.report.explained import explained
 from gibbsmin.report.species_sheet import species_list, species_sheet
 from gibbsmin.report.words import labelled, shortened
-from gibbsmin.species.database import load
+from gibbsmin.thermo.database import load
 
 
 def test_every_species_has_a_sheet_of_80_columns() -> None:

@@ -9,10 +9,10 @@ import numpy as np
 import pytest
 from report_fakes import FakeResult
 
-from gibbsmin.report.judge import judge
 from gibbsmin.report.onsets import onsets
 from gibbsmin.report.summary import summary
 from gibbsmin.report.sweep_table import ROWS, chosen
+from gibbsmin.results.judge import judge
 
 
 def shown(result: Any) -> list[str]:

@@ -5,9 +5,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from gibbsmin.equilibrium.solve import equilibrium
-from gibbsmin.equilibrium.system import System
 from gibbsmin.errors import GibbsminError
+from gibbsmin.states.solve import equilibrium
+from gibbsmin.states.system import System
 from gibbsmin.studies.sweep import grid, sweep
 
 VALUES = st.lists(st.floats(-1e6, 1e6), min_size=1, max_size=5, unique=True)

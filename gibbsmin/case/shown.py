@@ -1,0 +1,33 @@
+"""The units that a case was typed in, for results to be shown in them."""
+
+from __future__ import annotations
+
+from gibbsmin.case.schema import Case
+from gibbsmin.units import unit_of
+
+
+def shown_units(case: Case, basis: str) -> dict[str, str]:
+    """Find the units to show results in: those that were typed.
+
+    Parameters
+    ----------
+    case : Case
+        The case.
+    basis : str
+        ``"mol"`` or ``"mol/s"``.
+
+    Returns
+    -------
+    dict of str to str
+        ``temperature``, ``pressure`` and ``amount``.
+    """
+    units = {"temperature": "K", "pressure": "Pa", "amount": basis}
+    units |= {key: unit for key in ("temperature", "pressure") if (unit := unit_of(getattr(case.held, key)))}
+    sizes = [feed.flow if feed.flow is not None else feed.amount for feed in case.feeds.values()]
+    typed = [unit_of(size) for size in sizes if size is not None]
+    molar = [unit for unit in typed if "mol" in unit]
+    if molar:
+        units["amount"] = molar[0]
+    elif typed and basis == "mol/s" and "/" in typed[0]:
+        units["amount"] = f"kmol/{typed[0].rpartition('/')[2]}"
+    return units

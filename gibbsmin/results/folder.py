@@ -1,0 +1,126 @@
+"""The result folder: written whole under a temporary name beside its place, then renamed; or not at all."""
+
+from __future__ import annotations
+
+import json
+import os
+import shutil
+import tempfile
+from collections.abc import Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, Final
+
+from gibbsmin.errors import InputError
+from gibbsmin.practice.cautions import Caution
+from gibbsmin.results.document import document
+from gibbsmin.results.spreadsheet import spreadsheet
+
+if TYPE_CHECKING:
+    from gibbsmin.results.result import Result
+
+SCHEMA: Final = 1
+_INDENTED: Final = 200  # states up to which result.json is indented
+FILES: Final = ("result.json", "table.csv", "result.nc")
+"""What a result folder may hold; a folder with anything else is not replaced."""
+
+
+def check_place(folder: Path) -> None:
+    """Refuse a place that a result cannot be written to, before anything is solved.
+
+    Parameters
+    ----------
+    folder : Path
+        Where the result would go.
+
+    Raises
+    ------
+    InputError
+        It is a file, or holds something that is not a result of gibbsmin, or its parent cannot be written.
+    """
+    if folder.is_symlink() or (folder.exists() and not folder.is_dir()):
+        raise InputError(f"cannot write results to {folder}: it is not a folder; choose another place with --out")
+    if folder.is_dir() and any(folder.iterdir()) and not _is_result(folder):
+        raise InputError(
+            f"cannot write results to {folder}: it holds files that gibbsmin did not write;"
+            " choose an empty or new folder with --out"
+        )
+    parent = folder.absolute().parent
+    while not parent.exists():
+        parent = parent.parent
+    if not parent.is_dir() or not os.access(parent, os.W_OK | os.X_OK):
+        raise InputError(f"cannot write results to {folder}: {parent} cannot be written to; choose another with --out")
+
+
+def write_folder(result: Result, judged: Sequence[Sequence[Caution]], folder: Path) -> dict[str, Any]:
+    """Write a result folder.
+
+    Parameters
+    ----------
+    result : Result
+    judged : sequence of sequences of Caution
+        The cautions of each state.
+    folder : Path
+        Where; made if needed, replaced only if it holds an earlier result.
+
+    Returns
+    -------
+    dict
+        What result.json holds.
+
+    Raises
+    ------
+    InputError
+        The place is taken or cannot be written.
+    """
+    check_place(folder)
+    data = document(result, judged)
+    target = folder.absolute()
+    try:
+        target.parent.mkdir(parents=True, exist_ok=True)
+        work = Path(tempfile.mkdtemp(prefix=f".{target.name}-", dir=target.parent))
+    except OSError as error:
+        raise InputError(f"cannot write results to {folder}: {error.strerror or error}") from error
+    try:
+        fresh = work / "new"
+        fresh.mkdir()
+        (fresh / "result.json").write_text(as_json(data), encoding="utf-8")
+        (fresh / "table.csv").write_text(spreadsheet(result), encoding="utf-8", newline="")
+        if result.inputs:
+            result.dataset().to_netcdf(fresh / "result.nc", engine="h5netcdf")
+        _exchange(fresh, target, work / "old")
+    except OSError as error:
+        raise InputError(f"cannot write results to {folder}: {error.strerror or error}") from error
+    finally:
+        shutil.rmtree(work, ignore_errors=True)
+    return data
+
+
+def as_json(data: Any) -> str:
+    """JSON text with a line end, indented unless it is long; a NaN is an error, not a word that JSON does not know."""
+    long = isinstance(data, dict) and len(data.get("states", ())) > _INDENTED
+    layout: dict[str, Any] = {"separators": (",", ":")} if long else {"indent": 1}
+    return json.dumps(data, ensure_ascii=False, allow_nan=False, **layout) + "\n"
+
+
+def _exchange(fresh: Path, target: Path, old: Path) -> None:
+    """Put ``fresh`` in the place of ``target``; bring the old one back if that fails."""
+    if not target.exists():
+        fresh.rename(target)
+        return
+    target.rename(old)
+    try:
+        fresh.rename(target)
+    except OSError:
+        old.rename(target)
+        raise
+
+
+def _is_result(folder: Path) -> bool:
+    """Tell an earlier result by its files and by what its result.json says of itself."""
+    if any(path.name not in FILES or not path.is_file() for path in folder.iterdir()):
+        return False
+    try:
+        data = json.loads((folder / "result.json").read_text(encoding="utf-8"))
+    except (OSError, ValueError):
+        return False
+    return isinstance(data, dict) and "gibbsmin" in data and data.get("schema") == SCHEMA

@@ -1,0 +1,210 @@
+"""What a study found: its states with all that is needed to read, file and repeat them."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping
+from dataclasses import asdict, dataclass
+from functools import cached_property
+from typing import TYPE_CHECKING, Any, Final
+
+import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.states.batch import Batch
+from gibbsmin.states.state import State
+from gibbsmin.states.system import GAS, System
+from gibbsmin.studies.labelled import Axis, labelled, mole_fractions
+from gibbsmin.thermo.database import load
+
+if TYPE_CHECKING:
+    import xarray
+
+Floats = NDArray[np.float64]
+
+SCHEMA: Final = 1
+"""Version of the layout of result.json."""
+
+FULL_STATES: Final = 1000
+"""Up to so many states result.json names every species in every state; beyond, it would grow to gigabytes."""
+
+NAMED_FRACTION: Final = 1e-12
+"""Beyond ``FULL_STATES`` states result.json leaves out species that never reach this mole fraction."""
+
+_CERTIFICATE: Final = ("element_residual", "gap", "worst_affinity")
+_PROPERTIES: Final = ("temperature", "pressure", "volume", "enthalpy", "entropy", "gibbs_energy")
+
+
+@dataclass(frozen=True)
+class FeedAmounts:
+    """A feed in numbers, as its table has it.
+
+    Attributes
+    ----------
+    name : str
+        Name of the feed.
+    amounts : dict of str to float
+        Amount of each species, [mol or mol/s].
+    atoms : dict of str to float
+        What an ultimate analysis brings, by element, [mol or mol/s].
+    element_amounts : dict of str to float
+        All of it by element, [mol or mol/s].
+    mass : float
+        Mass, [kg or kg/s].
+    temperature, pressure : float or None
+        [K] and [Pa].
+    """
+
+    name: str
+    amounts: Mapping[str, float]
+    atoms: Mapping[str, float]
+    element_amounts: Mapping[str, float]
+    mass: float
+    temperature: float | None
+    pressure: float | None
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return the same as a plain dictionary."""
+        return asdict(self)
+
+
+@dataclass(frozen=True)
+class Result:
+    """The states of a study.
+
+    Attributes
+    ----------
+    title : str
+        Title of the case.
+    case : dict
+        The case as read, with defaults.
+    case_path, case_sha256 : str
+        The file and its checksum; empty where there is none.
+    system : System
+        What might have formed.
+    basis : str
+        ``"mol"``, or ``"mol/s"`` where the feeds are flows; energies are then W, volumes m3/s.
+    inputs : dict of str to array (states,)
+        Varied inputs, in the units that were typed.
+    input_units : dict of str to str
+        Those units; ``"1"`` for a ratio.
+    axes : tuple of Axis
+        The varied inputs, each with its own values only.
+    batch : Batch
+        The states.
+    display_units : dict of str to str
+        Units that were typed, for ``temperature``, ``pressure`` and ``amount``.
+    feeds : dict of str to FeedAmounts
+        Feeds as the case has them; a swept size changes from state to state.
+    feed_enthalpy : array (states,) or None
+        Enthalpy of all feeds, [J or W]; None where that of one is not known.
+    """
+
+    title: str
+    case: dict[str, Any]
+    case_path: str
+    case_sha256: str
+    system: System
+    basis: str
+    inputs: dict[str, Floats]
+    input_units: dict[str, str]
+    axes: tuple[Axis, ...]
+    batch: Batch
+    display_units: dict[str, str]
+    feeds: dict[str, FeedAmounts]
+    feed_enthalpy: Floats | None
+
+    def state(self, index: int) -> State:
+        """Return state ``index``, counted from 0."""
+        return self.batch.state(index)
+
+    def heat(self, index: int) -> float | None:
+        """Heat that must be supplied to reach state ``index``.
+
+        Parameters
+        ----------
+        index : int
+            Which state, from 0.
+
+        Returns
+        -------
+        float or None
+            Enthalpy of the state less that of all feeds, [J or W]; negative where heat is given off. None where a
+            feed has no temperature or is known by its elements only, or where the state is not certified.
+        """
+        return None if self._heats is None else _plain(self._heats[index])
+
+    @cached_property
+    def _heats(self) -> Floats | None:
+        """Heat of every state, (states,), [J or W]; nan where a state is not certified."""
+        return None if self.feed_enthalpy is None else self.batch.enthalpy - self.feed_enthalpy
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return the result as result.json has it.
+
+        Returns
+        -------
+        dict
+            Safe for JSON: plain numbers, None for what is not known. Amounts are per ``basis``. Beyond 1000 states,
+            species that stay below a mole fraction of 1e-12 in all of them are left out and listed under
+            ``left_out``; the data set holds them.
+        """
+        batch = self.batch
+        arrays = {name: np.asarray(getattr(batch, name)) for name in (*_PROPERTIES, *_CERTIFICATE, "certified")}
+        arrays["amounts"] = batch.amounts
+        arrays["mole_fractions"] = mole_fractions(self.system, batch.amounts)
+        reasons = batch.reason
+        kept = np.ones(len(self.system.species), bool)
+        if len(batch) > FULL_STATES:
+            kept = np.nan_to_num(arrays["mole_fractions"]).max(axis=0) >= NAMED_FRACTION
+        named = np.flatnonzero(kept)
+        left_out = [name for name, flag in zip(self.system.species, kept, strict=True) if not flag]
+        return {
+            "schema": SCHEMA,
+            "title": self.title,
+            "basis": self.basis,
+            "case": self.case,
+            "input_units": self.input_units,
+            "provenance": {"case_sha256": self.case_sha256, "data_version": load().version},
+            **({"left_out": {"below_mole_fraction": NAMED_FRACTION, "species": left_out}} if left_out else {}),
+            "states": [self._state(i, arrays, named, reasons[i]) for i in range(len(batch))],
+        }
+
+    def _state(self, i: int, arrays: dict[str, Any], named: NDArray[np.intp], reason: str) -> dict[str, Any]:
+        names, amounts = self.system.species, arrays["amounts"][i]
+        gas, certified = self.system.gas, bool(arrays["certified"][i])
+        phases = {GAS: _plain(amounts[gas].sum())} if gas.any() else {}
+        phases |= {names[k]: _plain(amounts[k]) for k in np.flatnonzero(~gas) if amounts[k] > 0.0}
+        return {
+            "inputs": {name: float(values[i]) for name, values in self.inputs.items()},
+            **{name: _plain(arrays[name][i]) for name in _PROPERTIES},
+            "heat": self.heat(i),
+            "phases": phases,
+            "amounts": {names[k]: _plain(amounts[k]) for k in named},
+            "mole_fractions": {names[k]: _plain(arrays["mole_fractions"][i, k]) for k in named},
+            "certificate": {
+                **{name: _plain(arrays[name][i]) for name in _CERTIFICATE},
+                "ok": certified,
+                "reason": reason,
+            },
+            "cautions": list(self.state(i).warnings) if certified else [],
+        }
+
+    def dataset(self) -> xarray.Dataset:
+        """Return the states with named axes and units.
+
+        Returns
+        -------
+        xarray.Dataset
+            Dimensions are the varied inputs, under the names that the case gives them and in the units that were
+            typed, and ``species``.
+        """
+        unit = "W" if self.basis == "mol/s" else "J"
+        extra = {} if self._heats is None else {"heat": (self._heats, unit, "heat to be supplied")}
+        data = labelled(self.system, self.batch, self.axes, self.basis, extra)
+        return data.assign_attrs(title=self.title, case_sha256=self.case_sha256)
+
+
+def _plain(value: Any) -> float | None:
+    """Turn a number of an array into one of JSON; what is not finite into None."""
+    return float(value) if math.isfinite(value) else None

@@ -1,0 +1,140 @@
+"""What comes out: amounts, element potentials, totals and the certificate of each state."""
+
+from __future__ import annotations
+
+from typing import Any, NamedTuple
+
+import numpy as np
+
+from gibbsmin.compiled import inlined
+from gibbsmin.solver.certificate import element_residual, optimality
+from gibbsmin.solver.gas import present_amount
+from gibbsmin.solver.layout import (
+    ENERGY,
+    ENTROPY,
+    EXTRA,
+    GAS,
+    IDLE,
+    MODE,
+    MORE,
+    PRESENT,
+    VOLUME,
+    G,
+    K,
+    T,
+    Work,
+)
+from gibbsmin.solver.phase_set import NOTHING
+from gibbsmin.solver.status import AFFINITY_LIMIT, GAP_LIMIT, HELD_LIMIT, RESIDUAL_LIMIT, UNPROVED
+from gibbsmin.thermo.table import Table, standard_heat_capacity, standard_state
+
+
+class Outcome(NamedTuple):
+    """Results of ``states`` states of S species and m elements; `new_outcome` allocates them."""
+
+    n: Any  # (states, S) mol
+    lam: Any  # (states, m) [-], -inf for an element of which there is none
+    temperature: Any  # (states,) K
+    pressure: Any  # (states,) bar
+    enthalpy: Any  # (states,) H/R, mol K
+    entropy: Any  # (states,) S/R, mol
+    status: Any  # (states,) int, see `status`
+    steps: Any  # (states,) int, Newton steps
+    residual: Any  # (states,)
+    gap: Any  # (states,)
+    affinity: Any  # (states,)
+    held: Any  # (states,) relative error of T that the second held condition leaves; zero where T is held
+
+
+def new_outcome(states: int, S: int, m: int) -> Outcome:
+    """Allocate an `Outcome` of ``states`` states, ``S`` species and ``m`` elements."""
+    real, whole = np.float64, np.int64
+    shapes = [(states, S), (states, m), *[(states,)] * 10]
+    types = [*[real] * 6, whole, whole, *[real] * 4]
+    return Outcome(*[np.zeros(shape, kind) for shape, kind in zip(shapes, types, strict=True)])
+
+
+@inlined
+def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
+    """Write amounts (times ``scale``) and element potentials of the present state, eq. (4).
+
+    An idle place is still that of the artificial column of its own row: a row that depends on others has the
+    potential zero, one that no candidate holds (an absent element) minus infinity.
+    """
+    m = lam.size
+    for j in range(n.size):
+        n[j] = 0.0
+    for i in range(m):
+        lam[i] = 0.0
+    if w.count[GAS] == 1:
+        for j in range(w.count[G]):
+            n[w.species[j]] = scale * w.n[j]
+    if w.count[EXTRA] >= 0:
+        n[w.species[w.count[EXTRA]]] = scale * max(w.value[MORE], 0.0)
+    for i in range(m):
+        if w.kind[i] == IDLE:
+            held = False
+            for k in range(w.count[K]):
+                held |= A[i, w.species[k]] != 0.0
+            lam[i] += 0.0 if held else -np.inf
+            continue
+        if w.kind[i] == PRESENT:
+            n[w.species[w.basis[i]]] = scale * max(present_amount(i, w), 0.0)
+        potential = w.g[w.species[w.basis[i]]] + w.y[i]
+        for k in range(m):
+            lam[k] += w.inverse[i, k] * potential
+
+
+@inlined
+def close_balances(b: Any, w: Work, n: Any) -> None:
+    """Let the condensed species take up what rounding left of the element balances: n_c + (B^-1 (b - A n))_c."""
+    m = b.size
+    for i in range(m):
+        total = b[i]
+        for j in range(n.size):
+            total -= w.A[i, j] * n[j]
+        w.left[i] = total
+    for i in range(m):
+        if w.kind[i] == PRESENT:
+            j, total = w.species[w.basis[i]], 0.0
+            for k in range(m):
+                total += w.inverse[i, k] * w.left[k]
+            n[j] = max(n[j] + total, 0.0)
+
+
+@inlined
+def finish(
+    A: Any, gas: Any, b: Any, first: float, second: float, table: Table, w: Work, state: int, out: Outcome
+) -> None:
+    """Write the totals of a state, and prove it as one at its own temperature and pressure.
+
+    H/R = T sum n_j h_j; S/R = sum n_j (s_j - ln x_j - ln P/P°) over the gas, sum n_c s_c beside it.
+    """
+    n, temperature = out.n[state], w.value[T]
+    amount = 0.0
+    for j in range(n.size):
+        amount += n[j] if gas[j] else 0.0
+    pressure = amount * temperature / first if w.count[VOLUME] == 1 else first
+    out.temperature[state], out.pressure[state] = temperature, pressure
+    standard_state(temperature, table, w.e, w.s)
+    standard_heat_capacity(temperature, table, w.cp)
+    lnP = np.log(pressure) if pressure > 0.0 else NOTHING
+    enthalpy = entropy = capacity = 0.0
+    for j in range(n.size):
+        usable = table.low[j] <= temperature <= table.top[j] and w.chosen[j]
+        w.g[j] = w.e[j] - w.s[j] + (lnP if gas[j] else 0.0) if usable else np.inf
+        if n[j] > 0.0:
+            enthalpy += n[j] * w.e[j] * temperature
+            entropy += n[j] * (w.s[j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
+            capacity += n[j] * w.cp[j]
+    out.enthalpy[state], out.entropy[state] = enthalpy, entropy
+    if w.count[MODE] == ENERGY:
+        energy = enthalpy - (amount * temperature if w.count[VOLUME] == 1 else 0.0)
+        out.held[state] = abs(energy - second) / (capacity * temperature)
+    elif w.count[MODE] == ENTROPY:
+        out.held[state] = abs(entropy - second) / capacity
+    out.residual[state] = element_residual(A, b, n)
+    out.gap[state], out.affinity[state] = optimality(A, gas, b, w.g, n, out.lam[state], w.u)
+    proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
+    if not (proved and out.affinity[state] <= AFFINITY_LIMIT and out.held[state] <= HELD_LIMIT):
+        out.status[state] = UNPROVED

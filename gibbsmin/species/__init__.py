@@ -1,1 +1,0 @@
-"""Species: records, standard-state functions, the database and its data files."""

@@ -1,0 +1,226 @@
+"""The species and phases that may form, and their element matrix."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterable, Mapping, Sequence
+from functools import cached_property
+from typing import Final, TypeAlias
+
+import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.constants import R
+from gibbsmin.elements import ATOMIC_WEIGHT, CHARGE
+from gibbsmin.errors import FeedError, InputError, SpeciesError, nearest
+from gibbsmin.phases.ideal_gas import IdealGas
+from gibbsmin.phases.model import Phase
+from gibbsmin.phases.pure import Pure
+from gibbsmin.thermo.database import load
+from gibbsmin.thermo.record import Species
+from gibbsmin.thermo.table import Table, make_table
+from gibbsmin.units import Measurable, quantity
+
+Array: TypeAlias = NDArray[np.float64]
+GAS: Final = "gas"
+
+
+class System:
+    """The species and phases that may form.
+
+    Parameters
+    ----------
+    records : sequence of Species
+        The species, in the order that all arrays keep.
+    inert : iterable of str
+        Names of species that take no part: each is balanced as if it were an element of its own.
+
+    Attributes
+    ----------
+    records : tuple of Species
+    species, elements, phases : list of str
+        Names, in the order of the arrays. Rows of ``elements`` beyond the chemical ones are ``charge`` where a species
+        is charged, and one row for each inert species.
+    element_matrix : (E, S) array
+        Atoms of each element in each species [-].
+    molar_masses : (S,) array
+        [kg/mol].
+    gas : (S,) bool array
+        True for the species of the gas.
+    """
+
+    def __init__(self, records: Sequence[Species], inert: Iterable[str] = ()) -> None:
+        self.records = tuple(records)
+        self.species = [record.name for record in self.records]
+        if not self.records:
+            raise InputError("a system needs at least one species that may form")
+        self.index = {name: j for j, name in enumerate(self.species)}
+        if len(self.index) < len(self.species):
+            twice = sorted({name for name in self.species if self.species.count(name) > 1})
+            raise SpeciesError(f"species {', '.join(twice)} given more than once")
+        self.inert = tuple(dict.fromkeys(self.name_of(name) for name in inert))
+        self.elements = self._rows()
+        rows = [[_atoms(record, row, self.inert) for record in self.records] for row in self.elements]
+        self.element_matrix = np.array(rows, float).reshape(len(rows), len(self.records))
+        self.molar_masses = np.array([record.molar_mass for record in self.records])
+        self.gas = np.array([not record.condensed for record in self.records])
+
+    @classmethod
+    def from_elements(
+        cls,
+        elements: str | Iterable[str],
+        condensed: bool = True,
+        ions: bool = False,
+        exclude: Iterable[str] = (),
+        inert: Iterable[str] = (),
+        extra: Iterable[Species] = (),
+    ) -> System:
+        """Take every species of the data that is made of ``elements`` only.
+
+        Parameters
+        ----------
+        elements : str or iterable of str
+            Symbols, apart by blanks or commas where a text. ``D`` is an element of its own.
+        condensed : bool
+            Whether solids and liquids may form.
+        ions : bool
+            Whether charged species and the electron may form.
+        exclude : iterable of str
+            Names of species that may not form.
+        inert : iterable of str
+            Names of species that take no part.
+        extra : iterable of Species
+            Own species beside, or instead of (by the same name), those of the data.
+
+        Returns
+        -------
+        System
+
+        Raises
+        ------
+        SpeciesError
+            An unknown element or species.
+        """
+        symbols = re.split(r"[\s,;]+", elements.strip()) if isinstance(elements, str) else list(elements)
+        own = {record.name: record for record in extra}
+        unknown = [symbol for symbol in symbols if symbol not in ATOMIC_WEIGHT]
+        if unknown:
+            raise SpeciesError(f"there is no element {unknown[0]!r}{nearest(unknown[0], ATOMIC_WEIGHT)}")
+        data = load()
+        found = {record.name: record for record in data.with_elements(set(symbols), condensed, ions)}
+        records = {**found, **own}
+        held = [name if name in own else data.get(name).name for name in inert]
+        for name in held:
+            records.setdefault(name, own.get(name) or data.get(name))
+        left_out = {name if name in own else data.get(name).name for name in exclude}
+        if clash := sorted(left_out.intersection(held)):
+            raise InputError(
+                f"{clash[0]} is both inert and excluded; an inert species is there, an excluded one is not"
+            )
+        return cls([record for name, record in records.items() if name not in left_out], held)
+
+    @classmethod
+    def from_species(cls, species: Iterable[str | Species], inert: Iterable[str] = ()) -> System:
+        """Take just the species named.
+
+        Parameters
+        ----------
+        species : iterable of str or Species
+            Names or aliases in the data, or records of your own.
+        inert : iterable of str
+            Those of them that take no part.
+
+        Returns
+        -------
+        System
+
+        Raises
+        ------
+        SpeciesError
+            A name that is not in the data, or one that is there twice.
+        """
+        if isinstance(species, str):
+            species = species.split()
+        return cls([load().get(item) if isinstance(item, str) else item for item in species], inert)
+
+    def _rows(self) -> list[str]:
+        """Names of the balances: elements in the order of their first use, charge, inert species."""
+        active = [record for record in self.records if record.name not in self.inert]
+        symbols = dict.fromkeys(symbol for record in active for symbol in record.elements)
+        charge = [CHARGE] if any(record.charge for record in active) else []
+        return [*symbols, *charge, *(f"inert {name}" for name in self.inert)]
+
+    @cached_property
+    def table(self) -> Table:
+        """Standard-state functions as arrays, in the order of the species."""
+        return make_table(self.records)
+
+    @cached_property
+    def phase_models(self) -> tuple[Phase, ...]:
+        """The gas, if there is one, and every condensed species as a phase of its own."""
+        gas = tuple(int(j) for j in np.flatnonzero(self.gas))
+        pure = [Pure(self.species[j], (int(j),)) for j in np.flatnonzero(~self.gas)]
+        return (IdealGas(GAS, gas), *pure) if gas else tuple(pure)
+
+    @property
+    def phases(self) -> list[str]:
+        """Names of the phases, the gas first."""
+        return [phase.name for phase in self.phase_models]
+
+    def name_of(self, name: str) -> str:
+        """Name in this system of a species given by name or alias; SpeciesError if it is not here."""
+        if name in self.index:
+            return name
+        known = load().get(name).name
+        if known not in self.index:
+            raise SpeciesError(f"{known} is not among the species of this system{nearest(name, self.index)}")
+        return known
+
+    def standard_potentials(self, T: float) -> Array:
+        """G°/RT of every species, (S,) [-], at ``T`` [K] and 1 bar."""
+        return np.array([record.gibbs_energy(T) / (R * T) for record in self.records])
+
+    def feed(self, amounts: Mapping[str, Measurable]) -> Array:
+        """Element amounts of a feed.
+
+        Parameters
+        ----------
+        amounts : mapping of str to float or quantity
+            Amount of each species [mol]. Any species of the data whose elements the system has, whether or not it may
+            form.
+
+        Returns
+        -------
+        (E,) array
+            Amount of each element, [mol], in the order of ``elements``.
+
+        Raises
+        ------
+        FeedError
+            An amount that is negative or not finite, or an element that no species of the system holds.
+        """
+        total = np.zeros(len(self.elements))
+        for name, value in amounts.items():
+            amount = quantity(value, "mol", f"the amount of {name}")
+            if amount < 0.0:
+                raise FeedError(f"the amount of {name} is negative: {value}")
+            record = self.records[self.index[name]] if name in self.index else load().get(name)
+            column = [_atoms(record, row, self.inert) for row in self.elements]
+            parts = [*record.elements, CHARGE] if record.charge else list(record.elements)
+            missing = [] if record.name in self.inert else [part for part in parts if part not in self.elements]
+            if amount > 0.0 and missing:
+                raise FeedError(f"the feed holds {name}, but no species of the system holds {' and '.join(missing)}")
+            total += amount * np.array(column)
+        return total
+
+    def __repr__(self) -> str:
+        gases = int(self.gas.sum())
+        condensed = len(self.species) - gases
+        return f"System({' '.join(self.elements)}: {gases} gases, {condensed} condensed)"
+
+
+def _atoms(record: Species, row: str, inert: tuple[str, ...]) -> float:
+    """Entry of the element matrix: an inert species counts in its own row only."""
+    if record.name in inert:
+        return float(row == f"inert {record.name}")
+    return float(record.charge) if row == CHARGE else record.elements.get(row, 0.0)
