@@ -26,7 +26,6 @@ LOWEST = 150.0
 SOLID_OVER_LIQUID = 300.0  # K beyond the last join
 WITHOUT_LIQUID = 200.0  # K beyond the end of a condensed species that nothing follows
 LIQUID_BELOW = 300.0  # K below the join with its solid
-LIQUID_ALONE = 50.0  # K below the start of a liquid without a solid
 
 
 def read_toml(name: str) -> dict[str, Any]:
@@ -101,5 +100,5 @@ def usable(draft: Draft, phases: set[str]) -> tuple[float, float]:
         return GAS_RANGE
     if phase == "solid":
         return min(LOWEST, low), high + (SOLID_OVER_LIQUID if "liquid" in phases else WITHOUT_LIQUID)
-    below = LIQUID_BELOW if "solid" in phases else LIQUID_ALONE
-    return max(LOWEST, low - below), min(high + WITHOUT_LIQUID, draft.limit)
+    start = low - LIQUID_BELOW if "solid" in phases else LOWEST
+    return max(LOWEST, start), min(high + WITHOUT_LIQUID, draft.limit)
