@@ -42,10 +42,10 @@ joins (5). Since du_j = nu_j.dy + de_j tau it adds to (6) the border
 
     p = sum_gas n_j de_j nu_j,  q = sum_gas n_j de_j,  r = sum_gas n_j de_j^2 + Cp/R - E                            (8)
 
-(for a held entropy p_i - c_i stands in the row and r = sum_gas n_j de_j^2 + Cp/R - q). At held volume n_j = exp(u_j) with
-g_j = G°_j/RT + ln(RT/(P° V)), there is no ln N, and internal energies stand for enthalpies. As beta = 1/T the energy
-programme is convex where Cp > 0 (`phase_set` lets one more condensed species in at the temperature where two coexist:
-a plateau, on which its amount is the unknown that T is not).
+(for a held entropy p_i - c_i stands in the row and r = sum_gas n_j de_j^2 + Cp/R - q). At held volume n_j = exp(u_j)
+with g_j = G°_j/RT + ln(RT/(P° V)), there is no ln N, and internal energies stand for enthalpies. In beta = 1/T the
+energy programme is convex where Cp > 0. At the temperature where two condensed species coexist, `phase_set` lets one
+more in beside the basis: a plateau, on which its amount is the unknown that T is not.
 
 Files, in the order in which they are used: `layout` (the arrays), `candidates`, `simplex` (the basis of the linear
 programme, each species taken as a pure phase: a start that has the right condensed species in most cases), `basis`

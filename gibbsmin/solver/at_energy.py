@@ -1,7 +1,7 @@
 """One state whose temperature is unknown: energy or entropy is held, at constant pressure or volume.
 
-The start is the temperature at which the linear programme has the energy or entropy asked for; if the iteration does not
-lead home from there, T is narrowed by states of given temperature.
+The start is the temperature at which the linear programme has the energy or entropy asked for; if the iteration does
+not lead home from there, T is narrowed by states of given temperature.
 """
 
 from __future__ import annotations

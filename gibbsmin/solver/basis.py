@@ -15,8 +15,8 @@ NOISE: Final = 4.0e-16  # rounding of B^-1 b, relative to the sum of its terms
 def replace(place: int, j: int, b: Any, w: Work) -> None:
     """Put candidate ``j`` into ``place`` of the basis; activities stay as they are, coordinates change.
 
-    With t = nu_k[place] / nu_j[place]: nu_k -> nu_k - t nu_j (t itself at ``place``), d_k -> d_k - t d_j and de alike. The rows
-    of B^-1 change alike, and c is made afresh.
+    With t = nu_k[place] / nu_j[place]: nu_k -> nu_k - t nu_j (t itself at ``place``), d_k -> d_k - t d_j and de
+    alike. The rows of B^-1 change alike, and c is made afresh.
     """
     m = w.c.size
     activity = -w.d[j]

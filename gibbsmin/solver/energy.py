@@ -95,14 +95,14 @@ def energy_excess(w: Work) -> float:
     """E of eq. (7)."""
     total = energy_sum(w)
     if w.count[MODE] != ENTROPY:
-        return total - w.value[SECOND] / w.value[T]
+        return float(total - w.value[SECOND] / w.value[T])
     for i in range(w.c.size):
         if w.kind[i] != IDLE and w.c[i] != 0.0:
             total -= w.c[i] * (w.g[w.species[w.basis[i]]] + w.y[i])
     if w.count[VOLUME] == 1:
         for j in range(w.count[G]):
             total += w.n[j]
-    return total - w.value[SECOND]
+    return float(total - w.value[SECOND])
 
 
 @inlined
@@ -122,7 +122,7 @@ def heat_capacity_sum(w: Work) -> float:
 
 @summing
 def energy_border(f: int, w: Work) -> None:
-    """Write row and column f + 1 of the matrix, that of tau, and f + 2, that of the extra species; eq. (8), unscaled."""
+    """Write row and column f + 1 of the matrix, that of tau, and f + 2, that of the extra species; eq. (8)."""
     H, row, gas, tau = w.matrix, w.row, w.count[G], f + 1
     present = w.count[GAS] == 1
     entropy = w.count[MODE] == ENTROPY
@@ -181,10 +181,10 @@ def boiling(w: Work) -> bool:
     """Tell whether the gas is there because the temperature is where it coexists with what is condensed."""
     if w.count[MODE] == TEMPERATURE or w.count[GAS] == 0 or w.count[VOLUME] == 1:
         return False
+    held = 0.0
     for i in range(w.c.size):
-        if w.kind[i] == FREE and w.c[i] != 0.0:
-            return False
-    return True
+        held += abs(w.c[i]) if w.kind[i] == FREE else 0.0
+    return held == 0.0
 
 
 @inlined

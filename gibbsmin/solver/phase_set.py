@@ -85,7 +85,7 @@ def taken_back(i: int, w: Work) -> bool:
 
 @inlined
 def set_gas(amount: float, w: Work) -> None:
-    """Declare a gas of ``amount`` [mol], or the incipient gas where that is zero; at held volume there is always one."""
+    """Declare a gas of ``amount`` [mol], or the incipient gas where that is zero; at held volume there is one."""
     if w.count[VOLUME] == 1:
         w.count[GAS], w.value[N] = 1, 1.0
         return

@@ -8,9 +8,9 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.constants import R
+from gibbsmin.constants import STANDARD_PRESSURE, R
 from gibbsmin.errors import NotCertified
-from gibbsmin.solver.minimize import Outcome
+from gibbsmin.solver.outcome import Outcome
 from gibbsmin.solver.status import MEANING, SOLVED
 from gibbsmin.states.certificate import Certificate
 from gibbsmin.states.state import State
@@ -24,19 +24,25 @@ class Batch:
     Attributes
     ----------
     system : System
-    temperature, pressure : (states,) arrays
-        [K], [Pa].
     outcome : Outcome
         What the solver gave.
     """
 
     system: System
-    temperature: Array
-    pressure: Array
     outcome: Outcome
 
     def __len__(self) -> int:
-        return int(self.temperature.size)
+        return int(self.outcome.status.size)
+
+    @property
+    def temperature(self) -> Array:
+        """Temperature, (states,) [K]."""
+        return self._found(self.outcome.temperature)
+
+    @property
+    def pressure(self) -> Array:
+        """Pressure, (states,) [Pa]."""
+        return self._found(STANDARD_PRESSURE * self.outcome.pressure)
 
     @property
     def certified(self) -> NDArray[np.bool_]:
@@ -68,6 +74,11 @@ class Batch:
     def gap(self) -> Array:
         """Duality gap a mole of mixture, (states,) [RT]."""
         return self._found(self.outcome.gap)
+
+    @property
+    def held_residual(self) -> Array:
+        """What the held energy or entropy leaves unmet, as a relative error of T, (states,) [-]; zero for held T."""
+        return self._found(self.outcome.held)
 
     @property
     def worst_affinity(self) -> Array:
@@ -117,13 +128,13 @@ class Batch:
             raise NotCertified(*MEANING[status])
         return State(
             self.system,
-            float(self.temperature[i]),
-            float(self.pressure[i]),
+            float(out.temperature[i]),
+            STANDARD_PRESSURE * float(out.pressure[i]),
             out.n[i],
             out.lam[i],
             R * float(out.enthalpy[i]),
             R * float(out.entropy[i]),
-            Certificate(float(out.residual[i]), float(out.gap[i]), float(out.affinity[i])),
+            Certificate(float(out.residual[i]), float(out.gap[i]), float(out.affinity[i]), float(out.held[i])),
         )
 
     def _found(self, values: Array) -> Array:

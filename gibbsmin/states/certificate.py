@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from gibbsmin.solver.status import AFFINITY_LIMIT, GAP_LIMIT, RESIDUAL_LIMIT
+from gibbsmin.solver.status import AFFINITY_LIMIT, GAP_LIMIT, HELD_LIMIT, RESIDUAL_LIMIT
 
 
 @dataclass(frozen=True)
@@ -20,17 +20,23 @@ class Certificate:
     worst_affinity : float
         Largest ln activity (in units of RT) by which a species or phase that is absent would like to appear, or by
         which a present one is off its potential.
+    held_residual : float
+        What the held energy or entropy leaves unmet, as a relative error of the temperature; zero where T is held.
     """
 
     element_residual: float
     gap: float
     worst_affinity: float
+    held_residual: float = 0.0
 
     @property
     def ok(self) -> bool:
-        """True where all three lie within their tolerances."""
+        """True where all lie within their tolerances."""
         return (
-            self.element_residual <= RESIDUAL_LIMIT and self.gap <= GAP_LIMIT and self.worst_affinity <= AFFINITY_LIMIT
+            self.element_residual <= RESIDUAL_LIMIT
+            and self.gap <= GAP_LIMIT
+            and self.worst_affinity <= AFFINITY_LIMIT
+            and self.held_residual <= HELD_LIMIT
         )
 
     def __str__(self) -> str:

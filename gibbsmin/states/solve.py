@@ -8,10 +8,12 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike
 
-from gibbsmin.constants import STANDARD_PRESSURE
+from gibbsmin.constants import STANDARD_PRESSURE, R
 from gibbsmin.errors import FeedError, InputError
-from gibbsmin.solver.minimize import minimize_many, new_outcome
+from gibbsmin.solver.minimize import minimize_many
+from gibbsmin.solver.outcome import new_outcome
 from gibbsmin.states.batch import Batch
+from gibbsmin.states.held import UNIT, which_pair
 from gibbsmin.states.state import State
 from gibbsmin.states.system import Array, System
 from gibbsmin.units import Measurable, quantity
@@ -21,12 +23,20 @@ COLDEST, HOTTEST = 50.0, 20000.0
 
 
 def equilibrium(
-    system: System, feed: Mapping[str, Measurable], *, temperature: Measurable, pressure: Measurable
+    system: System,
+    feed: Mapping[str, Measurable],
+    *,
+    temperature: Measurable | None = None,
+    pressure: Measurable | None = None,
+    volume: Measurable | None = None,
+    enthalpy: Measurable | None = None,
+    internal_energy: Measurable | None = None,
+    entropy: Measurable | None = None,
 ) -> State:
-    """Find the state in which a feed settles at a held temperature and pressure.
+    """Find the state in which a feed settles while two conditions are held.
 
     The method is the dual programme of `gibbsmin.solver` (White, Johnson & Dantzig 1958; Duffin, Peterson & Zener
-    1967).
+    1967), with the temperature as one more unknown where it is not held.
 
     Parameters
     ----------
@@ -34,8 +44,10 @@ def equilibrium(
         What may form.
     feed : mapping of str to float or quantity
         Amount of each species that goes in, [mol].
-    temperature, pressure : float, str or pint quantity
-        Held conditions; a bare number is in [K] and [Pa]. Pressures are absolute.
+    temperature, pressure, volume, enthalpy, internal_energy, entropy : float, str or pint quantity
+        Two held conditions: pressure with temperature, enthalpy or entropy; or volume with temperature, internal
+        energy or entropy. A bare number is in [K], [Pa], [m3], [J], [J], [J/K]. Pressures are absolute; elements at
+        298.15 K are the zero of energy.
 
     Returns
     -------
@@ -45,28 +57,37 @@ def equilibrium(
     Raises
     ------
     InputError
-        A quantity with the wrong dimension or out of range, or a feed that the system cannot hold.
+        A pair that cannot be held, a quantity with the wrong dimension or out of range, or a feed that the system
+        cannot hold.
     NotCertified
         No state was found and proved; the text says why and what to try.
     """
-    batch = equilibria(
-        system,
-        element_amounts=system.feed(feed)[None, :],
-        temperature=quantity(temperature, "K", "temperature"),
-        pressure=quantity(pressure, "Pa", "pressure"),
-    )
-    return batch.state(0)
+    given = {
+        "temperature": temperature,
+        "pressure": pressure,
+        "volume": volume,
+        "enthalpy": enthalpy,
+        "internal_energy": internal_energy,
+        "entropy": entropy,
+    }
+    pair, first, second = which_pair(given)
+    values = {name: quantity(value, UNIT[name], name) for name, value in ((pair.first, first), (pair.second, second))}
+    return equilibria(system, element_amounts=system.feed(feed)[None, :], **values).state(0)
 
 
 def equilibria(
     system: System,
     feeds: ArrayLike | None = None,
     *,
-    temperature: ArrayLike,
-    pressure: ArrayLike,
     element_amounts: ArrayLike | None = None,
+    temperature: ArrayLike | None = None,
+    pressure: ArrayLike | None = None,
+    volume: ArrayLike | None = None,
+    enthalpy: ArrayLike | None = None,
+    internal_energy: ArrayLike | None = None,
+    entropy: ArrayLike | None = None,
 ) -> Batch:
-    """Find many states at held temperatures and pressures in one call.
+    """Find many states in one call.
 
     Parameters
     ----------
@@ -74,10 +95,10 @@ def equilibria(
         What may form.
     feeds : (states, S) or (S,) array
         Amounts of the species that go in, in the order of ``system.species``, [mol].
-    temperature, pressure : (states,) arrays or scalars
-        [K], [Pa].
     element_amounts : (states, E) or (E,) array
         Instead of ``feeds``: amounts of the elements, in the order of ``system.elements``, [mol].
+    temperature, pressure, volume, enthalpy, internal_energy, entropy : (states,) arrays or scalars
+        Two held conditions, as in `equilibrium`: [K], [Pa], [m3], [J], [J], [J/K].
 
     Returns
     -------
@@ -87,30 +108,47 @@ def equilibria(
     Raises
     ------
     InputError
-        Shapes that do not go together, or a value that is not finite or out of range.
+        A pair that cannot be held, shapes that do not go together, or a value that is not finite or out of range.
     """
-    T = _positive(temperature, "temperature")
-    P = _positive(pressure, "pressure")
-    if np.any((T < COLDEST) | (T > HOTTEST)):
-        raise InputError(f"temperature must lie within {COLDEST:.0f} and {HOTTEST:.0f} K; got {_first(T):.6g} K")
+    given = {
+        "temperature": temperature,
+        "pressure": pressure,
+        "volume": volume,
+        "enthalpy": enthalpy,
+        "internal_energy": internal_energy,
+        "entropy": entropy,
+    }
+    pair, first, second = which_pair(given)
+    one, two = _finite(first, pair.first), _finite(second, pair.second)
     b = _element_amounts(system, feeds, element_amounts)
-    lengths = {"temperature": T.shape, "pressure": P.shape, "feeds": b.shape[:-1]}
+    lengths = {pair.second: two.shape, pair.first: one.shape, "feeds": b.shape[:-1]}
     counts = {shape[0] for shape in lengths.values() if shape} - {1}
     if len(counts) > 1 or any(len(shape) > 1 for shape in lengths.values()):
-        found = ", ".join(
-            f"{name} {shape[0] if len(shape) == 1 else shape or 'one'}" for name, shape in lengths.items()
-        )
-        raise InputError(
-            f"temperature, pressure and feeds have one axis, that of the states, of one length; got {found}"
-        )
+        told = {name: shape[0] if len(shape) == 1 else shape or "one" for name, shape in lengths.items()}
+        found = ", ".join(f"{name} {length}" for name, length in told.items())
+        raise InputError(f"held conditions and feeds have one axis, that of the states, of one length; got {found}")
     count = counts.pop() if counts else 1
-    T, P = (
-        np.array(np.broadcast_to(value, (count,)), float, order="C") for value in (T, P)
-    )  # copies: the compiled code is one
-    b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float, order="C")  # for writable arrays in row order only
+    # copies: the compiled code is one for writable arrays in row order only
+    one, two = (np.array(np.broadcast_to(value, (count,)), float, order="C") for value in (one, two))
+    b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float, order="C")
     outcome = new_outcome(count, len(system.species), len(system.elements))
-    minimize_many(system.element_matrix, system.gas, b, 0, False, P / STANDARD_PRESSURE, T, system.table, outcome)
-    return Batch(system, T, P, outcome)
+    one = one * STANDARD_PRESSURE / R if pair.volume else one / STANDARD_PRESSURE
+    if pair.second != "temperature":
+        two = two / R
+    minimize_many(system.element_matrix, system.gas, b, pair.mode, pair.volume, one, two, system.table, outcome)
+    return Batch(system, outcome)
+
+
+def _finite(value: ArrayLike, what: str) -> Array:
+    """Return ``value`` as an array of finite numbers, positive where that is needed, T within all data."""
+    array: Array = np.asarray(value, float)
+    if what in ("temperature", "pressure", "volume"):
+        array = _positive(value, what)
+    elif not np.isfinite(array).all():
+        raise InputError(f"{what} must be finite; got {array[~np.isfinite(array)][0]}")
+    if what == "temperature" and np.any((array < COLDEST) | (array > HOTTEST)):
+        raise InputError(f"temperature must lie within {COLDEST:.0f} and {HOTTEST:.0f} K; got {_first(array):.6g} K")
+    return array
 
 
 def _positive(value: ArrayLike, what: str) -> Array:

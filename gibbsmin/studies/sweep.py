@@ -90,8 +90,7 @@ def _joined(parts: Sequence[Batch]) -> Batch:
     """Put the states of several batches of one system behind each other."""
     first = parts[0]
     outcome = type(first.outcome)(*map(np.concatenate, zip(*(part.outcome for part in parts), strict=True)))
-    temperature = np.concatenate([part.temperature for part in parts])
-    return Batch(first.system, temperature, np.concatenate([part.pressure for part in parts]), outcome)
+    return Batch(first.system, outcome)
 
 
 def sweep(

@@ -156,7 +156,9 @@ def test_compiled_code_is_handed_arrays_of_one_kind(
 ) -> None:
     """Read-only arrays are another type to numba, for which it would compile the solver once more."""
     seen: list[np.ndarray] = []
-    monkeypatch.setattr(solve, "minimize_many", lambda *arguments: seen.extend(arguments[:5]))
+    monkeypatch.setattr(
+        solve, "minimize_many", lambda A, gas, b, mode, volume, *held: seen.extend([A, gas, b, *held[:2]])
+    )
     equilibria(GAS, feed, temperature=T, pressure=P)  # type: ignore[arg-type]
     assert len(seen) == 5
     assert all(array.flags.c_contiguous and array.flags.writeable for array in seen)
