@@ -50,6 +50,6 @@ more in beside the basis: a plateau, on which its amount is the unknown that T i
 Files, in the order in which they are used: `layout` (the arrays), `candidates`, `simplex` (the basis of the linear
 programme, each species taken as a pure phase: a start that has the right condensed species in most cases), `basis`
 (coordinates and their exchange), `gas` (activities and balances), `energy` (7, 8), `newton` (5, 6), `phase_set` (which
-condensed species are present, and whether there is a gas), `settle` (the iteration), `at_temperature` and `at_energy`
-(one state), `certificate`, `outcome`, `minimize` (many states), `status` (what an outcome means).
+condensed species are present, and whether there is a gas), `settle` (the iteration), `warmth` (a first
+temperature), `one_state`, `certificate`, `outcome`, `minimize` (many states), `status` (what an outcome means).
 """

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any, Final
 
 from gibbsmin.compiled import inlined
-from gibbsmin.solver.layout import IDLE, K, Work
+from gibbsmin.solver.layout import IDLE, MODE, TEMPERATURE, K, Work
 
 DUST: Final = 1.0e-9  # coordinates are ratios of small numbers of atoms; what is smaller is rounding
 NOISE: Final = 4.0e-16  # rounding of B^-1 b, relative to the sum of its terms
@@ -30,7 +30,9 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
         t[k] = w.nu[place, k] / pivot
         w.nu[place, k] = t[k]
         w.d[k] -= t[k] * shift
-        w.de[k] -= t[k] * shift_e
+    if w.count[MODE] != TEMPERATURE:
+        for k in range(candidates):
+            w.de[k] -= t[k] * shift_e
     for i in range(m):
         factor = w.right[i]
         if i != place and factor != 0.0:

@@ -7,8 +7,6 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import compiled
-from gibbsmin.solver.at_energy import at_energy
-from gibbsmin.solver.at_temperature import at_temperature
 from gibbsmin.solver.layout import (
     COLD,
     FIRST,
@@ -16,12 +14,12 @@ from gibbsmin.solver.layout import (
     REUSES,
     SECOND,
     STEPS,
-    TEMPERATURE,
     VOLUME,
     WARM,
     T,
     new_work,
 )
+from gibbsmin.solver.one_state import one_state
 from gibbsmin.solver.outcome import Outcome, close_balances, collect, finish
 from gibbsmin.solver.status import NO_FEED, SOLVED
 from gibbsmin.thermo.table import Table
@@ -57,7 +55,6 @@ def minimize_many(
     m, S = A.shape
     w = new_work(A)
     w.count[REUSES] = -1
-    w.count[MODE] = mode
     w.value[COLD], w.value[WARM] = np.inf, 0.0
     for j in range(S):
         w.value[COLD], w.value[WARM] = min(w.value[COLD], table.low[j]), max(w.value[WARM], table.top[j])
@@ -77,10 +74,8 @@ def minimize_many(
         w.value[FIRST] = -np.log(first[state] / scale) if volume else np.log(first[state])
         w.value[T] = second[state]
         w.value[SECOND] = second[state] / scale
-        if mode == TEMPERATURE:
-            out.status[state] = at_temperature(A, gas, relative, table, w)
-        else:
-            out.status[state] = at_energy(A, gas, relative, table, w)
+        w.count[MODE] = mode
+        out.status[state] = one_state(A, gas, relative, table, w)
         out.steps[state] = w.count[STEPS]
         if out.status[state] == SOLVED:
             collect(scale, A, w, out.n[state], out.lam[state])

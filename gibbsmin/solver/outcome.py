@@ -18,6 +18,7 @@ from gibbsmin.solver.layout import (
     MODE,
     MORE,
     PRESENT,
+    TEMPERATURE,
     VOLUME,
     G,
     K,
@@ -116,8 +117,11 @@ def finish(
         amount += n[j] if gas[j] else 0.0
     pressure = amount * temperature / first if w.count[VOLUME] == 1 else first
     out.temperature[state], out.pressure[state] = temperature, pressure
-    standard_state(temperature, table, w.e, w.s)
-    standard_heat_capacity(temperature, table, w.cp)
+    free = w.count[MODE] != TEMPERATURE
+    if free or w.count[VOLUME] == 1:
+        standard_state(temperature, table, w.e, w.s)
+    if free:
+        standard_heat_capacity(temperature, table, w.cp)
     lnP = np.log(pressure) if pressure > 0.0 else NOTHING
     enthalpy = entropy = capacity = 0.0
     for j in range(n.size):
@@ -126,7 +130,7 @@ def finish(
         if n[j] > 0.0:
             enthalpy += n[j] * w.e[j] * temperature
             entropy += n[j] * (w.s[j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
-            capacity += n[j] * w.cp[j]
+            capacity += n[j] * w.cp[j] if free else 0.0
     out.enthalpy[state], out.entropy[state] = enthalpy, entropy
     if w.count[MODE] == ENERGY:
         energy = enthalpy - (amount * temperature if w.count[VOLUME] == 1 else 0.0)
