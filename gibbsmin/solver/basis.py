@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any, Final
 
 from gibbsmin.compiled import inlined
-from gibbsmin.solver.layout import IDLE, MODE, TEMPERATURE, K, Work
+from gibbsmin.solver.layout import BASIS, DE, IDLE, KIND, LEFT, MODE, RIGHT, ROW, TEMPERATURE, C, D, K, Work, Y
 
 DUST: Final = 1.0e-9  # coordinates are ratios of small numbers of atoms; what is smaller is rounding
 NOISE: Final = 4.0e-16  # rounding of B^-1 b, relative to the sum of its terms
@@ -18,23 +18,23 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
     With t = nu_k[place] / nu_j[place]: nu_k -> nu_k - t nu_j (t itself at ``place``), d_k -> d_k - t d_j and de
     alike. The rows of B^-1 change alike, and c is made afresh.
     """
-    m = w.c.size
-    activity = -w.d[j]
+    m = w.nu.shape[0]
+    activity = -w.of[D, j]
     for i in range(m):
-        w.right[i] = w.nu[i, j]
-        activity += w.nu[i, j] * w.y[i]
-    w.y[place] = activity
-    w.basis[place] = j
-    pivot, shift, shift_e, t, candidates = w.right[place], w.d[j], w.de[j], w.row, w.count[K]
+        w.at[RIGHT, i] = w.nu[i, j]
+        activity += w.nu[i, j] * w.at[Y, i]
+    w.at[Y, place] = activity
+    w.what[BASIS, place] = j
+    pivot, shift, shift_e, t, candidates = w.at[RIGHT, place], w.of[D, j], w.of[DE, j], w.of[ROW], w.count[K]
     for k in range(candidates):
         t[k] = w.nu[place, k] / pivot
         w.nu[place, k] = t[k]
-        w.d[k] -= t[k] * shift
+        w.of[D, k] -= t[k] * shift
     if w.count[MODE] != TEMPERATURE:
         for k in range(candidates):
-            w.de[k] -= t[k] * shift_e
+            w.of[DE, k] -= t[k] * shift_e
     for i in range(m):
-        factor = w.right[i]
+        factor = w.at[RIGHT, i]
         if i != place and factor != 0.0:
             for k in range(candidates):
                 value = w.nu[i, k] - t[k] * factor
@@ -43,11 +43,11 @@ def replace(place: int, j: int, b: Any, w: Work) -> None:
         w.nu[i, j] = 0.0
         w.inverse[place, i] /= pivot
     w.nu[place, j] = 1.0
-    w.d[j] = w.de[j] = 0.0
+    w.of[D, j] = w.of[DE, j] = 0.0
     for i in range(m):
         if i != place:
             for k in range(m):
-                value = w.inverse[i, k] - w.right[i] * w.inverse[place, k]
+                value = w.inverse[i, k] - w.at[RIGHT, i] * w.inverse[place, k]
                 w.inverse[i, k] = value if abs(value) > DUST else 0.0
     basis_amounts(b, w)
 
@@ -59,48 +59,48 @@ def basis_amounts(b: Any, w: Work) -> None:
     The residual of an element that is rare beside the others has only small terms, so that its balance closes relative
     to its own amount. What is only rounding becomes zero, so that exact stoichiometry stays exact.
     """
-    m = w.c.size
+    m = w.nu.shape[0]
     for i in range(m):
         total = 0.0
-        if w.kind[i] != IDLE:
+        if w.what[KIND, i] != IDLE:
             for k in range(m):
                 total += w.inverse[i, k] * b[k]
-        w.c[i] = total
+        w.at[C, i] = total
     for i in range(m):
         total = b[i]
         for k in range(m):
-            if w.basis[k] >= 0 and w.kind[k] != IDLE:
-                total -= w.A[i, w.species[w.basis[k]]] * w.c[k]
+            if w.what[BASIS, k] >= 0 and w.what[KIND, k] != IDLE:
+                total -= w.A[i, w.species[w.what[BASIS, k]]] * w.at[C, k]
             elif k == i:
                 total = 0.0
                 break
-        w.left[i] = total
+        w.at[LEFT, i] = total
     for i in range(m):
         terms = 0.0
-        if w.kind[i] != IDLE:
+        if w.what[KIND, i] != IDLE:
             for k in range(m):
-                w.c[i] += w.inverse[i, k] * w.left[k]
+                w.at[C, i] += w.inverse[i, k] * w.at[LEFT, k]
                 terms += abs(w.inverse[i, k] * b[k])
-        if abs(w.c[i]) < NOISE * terms:
-            w.c[i] = 0.0
+        if abs(w.at[C, i]) < NOISE * terms:
+            w.at[C, i] = 0.0
 
 
 @inlined
 def exact_prices(g: Any, w: Work) -> None:
     """Make d_j = g_j - nu_j.g_B afresh, and nu zero in dependent rows."""
-    m = w.c.size
+    m = w.nu.shape[0]
     for i in range(m):
-        idle = w.kind[i] == IDLE
-        w.right[i] = 0.0 if idle else g[w.species[w.basis[i]]]
+        idle = w.what[KIND, i] == IDLE
+        w.at[RIGHT, i] = 0.0 if idle else g[w.species[w.what[BASIS, i]]]
         if idle:
             for k in range(w.count[K]):
                 w.nu[i, k] = 0.0
     for k in range(w.count[K]):
-        w.d[k] = g[w.species[k]]
+        w.of[D, k] = g[w.species[k]]
     for i in range(m):
-        price = w.right[i]
+        price = w.at[RIGHT, i]
         for k in range(w.count[K]):
-            w.d[k] -= w.nu[i, k] * price
+            w.of[D, k] -= w.nu[i, k] * price
     for i in range(m):
-        if w.kind[i] != IDLE:
-            w.d[w.basis[i]] = 0.0
+        if w.what[KIND, i] != IDLE:
+            w.of[D, w.what[BASIS, i]] = 0.0

@@ -11,7 +11,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import inlined
-from gibbsmin.solver.layout import G, K, Work
+from gibbsmin.solver.layout import ATOMS, G, K, Work
 
 
 @inlined
@@ -62,7 +62,7 @@ def select_candidates(A: Any, gas: Any, b: Any, g: Any, w: Work) -> None:
                 total = 0.0
                 for i in range(m):
                     total += abs(A[i, j])
-                w.atoms[k] = max(total, 1.0e-3)
+                w.of[ATOMS, k] = max(total, 1.0e-3)
                 k += 1
         if phase == 0:
             w.count[G] = k

@@ -8,7 +8,7 @@ import numpy as np
 
 from gibbsmin.compiled import allocating
 
-# kind[i]: what coordinate i of the basis is
+# what[KIND, i]: what coordinate i of the basis is
 FREE: Final = 0  # its activity is unknown
 PRESENT: Final = 1  # a condensed species that is present: its activity is one, its amount is unknown
 IDLE: Final = 2  # a row of A that depends on the others
@@ -42,12 +42,40 @@ MORE: Final = 5  # amount of the candidate count[EXTRA], mol
 COLD: Final = 6  # lowest and highest temperature of any species' data, K
 WARM: Final = 7
 
+# at[...]: rows of what belongs to a place of the basis
+C: Final = 0  # mol
+Y: Final = 1  # ln activity of the basis species
+SUPPLY: Final = 2  # sum over the gas of nu n where nu > 0, mol
+DEMAND: Final = 3  # c plus the sum of |nu| n where nu < 0, mol
+LEFT: Final = 4  # what a basis leaves of b, mol
+RIGHT: Final = 5  # right-hand side of eq. (6) and (8), then the step; three more than places
+STEP: Final = 6  # scale of its rows
+
+# what[...]: rows of integers that belong to a place of the basis
+KIND: Final = 0
+BASIS: Final = 1  # candidate in the place, or -1
+LIST: Final = 2  # the free places, one after the other
+
+# of[...]: rows of what belongs to a candidate
+D: Final = 0  # d of eq. (4)
+DE: Final = 1  # energy of forming it from the basis, over RT, eq. (7)
+U: Final = 2  # ln activity
+AMOUNT: Final = 3  # mol, gas candidates
+ROW: Final = 4  # a row in the making
+ATOMS: Final = 5  # atoms in a formula unit, for scaling
+
+# std[...]: rows of what belongs to a species at the present T
+GIBBS: Final = 0  # G°/RT and what the first held condition adds; inf where it is no candidate
+HEAT: Final = 1  # H°/RT, at held volume U°/RT
+DISORDER: Final = 2  # S°/R
+CAPACITY: Final = 3  # Cp°/R, at held volume Cv°/R
+
 
 class Work(NamedTuple):
     """Arrays of one state; S species, m elements.
 
-    What lies beyond the candidates in use means nothing. Long loops run over species, along rows, so
-    that they compile to vector instructions.
+    What lies beyond the candidates in use means nothing. Long loops run over species, along rows, so that they compile
+    to vector instructions. Few arrays, because each costs every function that gets them time to compile.
     """
 
     A: Any  # (m, S) atoms of each element in each species
@@ -56,30 +84,14 @@ class Work(NamedTuple):
     offered: Any  # (S,) bool, the species that the last state offered as candidates
     chosen: Any  # (S,) bool, those that remained
     lacking: Any  # (m,) bool, the elements of which it had none
-    g: Any  # (S,) of every species: G°/RT and what the first held condition adds; inf where it is no candidate
-    e: Any  # (S,) of every species: H°/RT, at held volume U°/RT
-    s: Any  # (S,) of every species: S°/R
-    cp: Any  # (S,) of every species: Cp°/R, at held volume Cv°/R
     species: Any  # (S,) int, number of each candidate
+    std: Any  # (4, S) see above
+    of: Any  # (6, S) see above
     nu: Any  # (m, S) coordinates of each candidate, eq. (4)
-    d: Any  # (S,)
-    de: Any  # (S,) energy of forming each candidate from the basis, over RT
-    u: Any  # (S,) ln activity
-    n: Any  # (S,) mol, gas candidates
-    row: Any  # (S,) a row in the making
-    atoms: Any  # (S,) atoms in a formula unit, for scaling
+    at: Any  # (7, m + 3) see above
+    what: Any  # (3, m) int, see above
     inverse: Any  # (m, m) B^-1
-    basis: Any  # (m,) int, candidate in each place, or -1
-    kind: Any  # (m,) int
-    c: Any  # (m,) mol
-    y: Any  # (m,)
-    supply: Any  # (m,) sum over the gas of nu n where nu > 0, mol
-    left: Any  # (m,) what a basis leaves of b, mol
-    demand: Any  # (m,) c plus the sum of |nu| n where nu < 0, mol
     matrix: Any  # (m + 3, m + 3) eqs. (6) and (8)
-    right: Any  # (m + 3,)
-    step: Any  # (m + 3,)
-    free: Any  # (m,) int, the free coordinates
 
 
 @allocating
@@ -93,28 +105,12 @@ def new_work(A: Any) -> Work:
         np.zeros(S, np.bool_),
         np.zeros(S, np.bool_),
         np.zeros(m, np.bool_),
-        np.zeros(S),
-        np.zeros(S),
-        np.zeros(S),
-        np.zeros(S),
         np.zeros(S, np.int64),
+        np.zeros((4, S)),
+        np.zeros((6, S)),
         np.zeros((m, S)),
-        np.zeros(S),
-        np.zeros(S),
-        np.zeros(S),
-        np.zeros(S),
-        np.zeros(S),
-        np.zeros(S),
+        np.zeros((7, m + 3)),
+        np.zeros((3, m), np.int64),
         np.zeros((m, m)),
-        np.zeros(m, np.int64),
-        np.zeros(m, np.int64),
-        np.zeros(m),
-        np.zeros(m),
-        np.zeros(m),
-        np.zeros(m),
-        np.zeros(m),
         np.zeros((m + 3, m + 3)),
-        np.zeros(m + 3),
-        np.zeros(m + 3),
-        np.zeros(m, np.int64),
     )

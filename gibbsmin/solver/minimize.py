@@ -7,18 +7,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import compiled
-from gibbsmin.solver.layout import (
-    COLD,
-    FIRST,
-    MODE,
-    REUSES,
-    SECOND,
-    STEPS,
-    VOLUME,
-    WARM,
-    T,
-    new_work,
-)
+from gibbsmin.solver.layout import COLD, FIRST, MODE, REUSES, SECOND, STEPS, VOLUME, WARM, T, new_work
 from gibbsmin.solver.one_state import one_state
 from gibbsmin.solver.outcome import Outcome, close_balances, collect, finish
 from gibbsmin.solver.status import NO_FEED, SOLVED

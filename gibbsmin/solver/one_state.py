@@ -15,7 +15,21 @@ import numpy as np
 from gibbsmin.compiled import inlined
 from gibbsmin.solver.candidates import same_candidates, select_candidates
 from gibbsmin.solver.energy import energy_excess, follow, potentials
-from gibbsmin.solver.layout import CHANGES, COLD, EXTRA, MODE, PRESENT, REUSES, TEMPERATURE, WARM, T, Work
+from gibbsmin.solver.layout import (
+    BASIS,
+    CHANGES,
+    COLD,
+    EXTRA,
+    GIBBS,
+    KIND,
+    MODE,
+    PRESENT,
+    REUSES,
+    TEMPERATURE,
+    WARM,
+    T,
+    Work,
+)
 from gibbsmin.solver.phase_set import NONE, start_phases
 from gibbsmin.solver.settle import settle
 from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
@@ -80,16 +94,16 @@ def begin(attempt: int, A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     w.count[CHANGES], w.count[EXTRA] = 0, NONE
     if attempt == 0:
         potentials(table, gas, w)
-        again = w.count[REUSES] >= 0 and same_candidates(b, w.g, w)
-        usable = again and w.count[REUSES] < MOST_REUSES and optimal_basis_again(b, w.g, w)
+        again = w.count[REUSES] >= 0 and same_candidates(b, w.std[GIBBS], w)
+        usable = again and w.count[REUSES] < MOST_REUSES and optimal_basis_again(b, w.std[GIBBS], w)
         w.count[REUSES] = w.count[REUSES] + 1 if usable else -1
         if usable:
             start_phases(w)
             return READY
         if not again:
-            select_candidates(A, gas, b, w.g, w)
+            select_candidates(A, gas, b, w.std[GIBBS], w)
         return 0
-    if not optimal_basis(A, b, w.g, STARTS[attempt - 1], w):
+    if not optimal_basis(A, b, w.std[GIBBS], STARTS[attempt - 1], w):
         w.count[REUSES] = -1
         return NO_ROOM
     w.count[REUSES] = 0
@@ -103,8 +117,8 @@ def begin_joint(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     w.count[REUSES] = -1
     w.count[CHANGES], w.count[EXTRA] = 0, NONE
     for j in range(gas.size):
-        w.g[j] = 0.0
-    select_candidates(A, gas, b, w.g, w)
+        w.std[GIBBS, j] = 0.0
+    select_candidates(A, gas, b, w.std[GIBBS], w)
     if not start_temperature(A, b, gas, table, w):
         return 0
     follow(table, gas, w)
@@ -116,8 +130,8 @@ def begin_joint(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
 def all_usable(table: Table, w: Work) -> bool:
     """Tell whether every condensed species that is present may be used at the present T."""
     usable = True
-    for i in range(w.c.size):
-        if w.kind[i] == PRESENT:
-            j = w.species[w.basis[i]]
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == PRESENT:
+            j = w.species[w.what[BASIS, i]]
             usable &= table.low[j] <= w.value[T] <= table.top[j]
     return usable

@@ -10,11 +10,19 @@ from gibbsmin.compiled import inlined
 from gibbsmin.solver.certificate import element_residual, optimality
 from gibbsmin.solver.gas import present_amount
 from gibbsmin.solver.layout import (
+    AMOUNT,
+    BASIS,
+    CAPACITY,
+    DISORDER,
     ENERGY,
     ENTROPY,
     EXTRA,
     GAS,
+    GIBBS,
+    HEAT,
     IDLE,
+    KIND,
+    LEFT,
     MODE,
     MORE,
     PRESENT,
@@ -23,7 +31,9 @@ from gibbsmin.solver.layout import (
     G,
     K,
     T,
+    U,
     Work,
+    Y,
 )
 from gibbsmin.solver.phase_set import NOTHING
 from gibbsmin.solver.status import AFFINITY_LIMIT, GAP_LIMIT, HELD_LIMIT, RESIDUAL_LIMIT, UNPROVED
@@ -69,19 +79,19 @@ def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
         lam[i] = 0.0
     if w.count[GAS] == 1:
         for j in range(w.count[G]):
-            n[w.species[j]] = scale * w.n[j]
+            n[w.species[j]] = scale * w.of[AMOUNT, j]
     if w.count[EXTRA] >= 0:
         n[w.species[w.count[EXTRA]]] = scale * max(w.value[MORE], 0.0)
     for i in range(m):
-        if w.kind[i] == IDLE:
+        if w.what[KIND, i] == IDLE:
             held = False
             for k in range(w.count[K]):
                 held |= A[i, w.species[k]] != 0.0
             lam[i] += 0.0 if held else -np.inf
             continue
-        if w.kind[i] == PRESENT:
-            n[w.species[w.basis[i]]] = scale * max(present_amount(i, w), 0.0)
-        potential = w.g[w.species[w.basis[i]]] + w.y[i]
+        if w.what[KIND, i] == PRESENT:
+            n[w.species[w.what[BASIS, i]]] = scale * max(present_amount(i, w), 0.0)
+        potential = w.std[GIBBS, w.species[w.what[BASIS, i]]] + w.at[Y, i]
         for k in range(m):
             lam[k] += w.inverse[i, k] * potential
 
@@ -94,12 +104,12 @@ def close_balances(b: Any, w: Work, n: Any) -> None:
         total = b[i]
         for j in range(n.size):
             total -= w.A[i, j] * n[j]
-        w.left[i] = total
+        w.at[LEFT, i] = total
     for i in range(m):
-        if w.kind[i] == PRESENT:
-            j, total = w.species[w.basis[i]], 0.0
+        if w.what[KIND, i] == PRESENT:
+            j, total = w.species[w.what[BASIS, i]], 0.0
             for k in range(m):
-                total += w.inverse[i, k] * w.left[k]
+                total += w.inverse[i, k] * w.at[LEFT, k]
             n[j] = max(n[j] + total, 0.0)
 
 
@@ -119,18 +129,18 @@ def finish(
     out.temperature[state], out.pressure[state] = temperature, pressure
     free = w.count[MODE] != TEMPERATURE
     if free or w.count[VOLUME] == 1:
-        standard_state(temperature, table, w.e, w.s)
+        standard_state(temperature, table, w.std[HEAT], w.std[DISORDER])
     if free:
-        standard_heat_capacity(temperature, table, w.cp)
+        standard_heat_capacity(temperature, table, w.std[CAPACITY])
     lnP = np.log(pressure) if pressure > 0.0 else NOTHING
     enthalpy = entropy = capacity = 0.0
     for j in range(n.size):
         usable = table.low[j] <= temperature <= table.top[j] and w.chosen[j]
-        w.g[j] = w.e[j] - w.s[j] + (lnP if gas[j] else 0.0) if usable else np.inf
+        w.std[GIBBS, j] = w.std[HEAT, j] - w.std[DISORDER, j] + (lnP if gas[j] else 0.0) if usable else np.inf
         if n[j] > 0.0:
-            enthalpy += n[j] * w.e[j] * temperature
-            entropy += n[j] * (w.s[j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
-            capacity += n[j] * w.cp[j] if free else 0.0
+            enthalpy += n[j] * w.std[HEAT, j] * temperature
+            entropy += n[j] * (w.std[DISORDER, j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
+            capacity += n[j] * w.std[CAPACITY, j] if free else 0.0
     out.enthalpy[state], out.entropy[state] = enthalpy, entropy
     if w.count[MODE] == ENERGY:
         energy = enthalpy - (amount * temperature if w.count[VOLUME] == 1 else 0.0)
@@ -138,7 +148,7 @@ def finish(
     elif w.count[MODE] == ENTROPY:
         out.held[state] = abs(entropy - second) / capacity
     out.residual[state] = element_residual(A, b, n)
-    out.gap[state], out.affinity[state] = optimality(A, gas, b, w.g, n, out.lam[state], w.u)
+    out.gap[state], out.affinity[state] = optimality(A, gas, b, w.std[GIBBS], n, out.lam[state], w.of[U])
     proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
     if not (proved and out.affinity[state] <= AFFINITY_LIMIT and out.held[state] <= HELD_LIMIT):
         out.status[state] = UNPROVED

@@ -16,22 +16,31 @@ from gibbsmin.compiled import inlined
 from gibbsmin.solver.energy import plateau
 from gibbsmin.solver.gas import present_amount
 from gibbsmin.solver.layout import (
+    AMOUNT,
+    ATOMS,
+    BASIS,
+    DEMAND,
     EMPTY,
     EXTRA,
     FREE,
     GAS,
     IDLE,
     JOIN,
+    KIND,
     MODE,
     MORE,
     PRESENT,
+    SUPPLY,
     TEMPERATURE,
     VOLUME,
+    C,
     G,
     K,
     N,
+    U,
     Work,
     X,
+    Y,
 )
 
 APPEARS: Final = 1.0e-11  # ln activity above which an absent phase joins
@@ -51,22 +60,22 @@ EXTRA_PLACE: Final = -3  # beside the basis
 def start_phases(w: Work) -> None:
     """Set kinds and first activities from the simplex basis."""
     amount = 0.0
-    for i in range(w.c.size):
-        w.y[i] = 0.0
-        w.c[i] = max(w.c[i], 0.0)
-        if w.kind[i] != IDLE:
-            w.kind[i] = PRESENT if w.basis[i] >= w.count[G] and w.c[i] > 0.0 else FREE
-            amount += w.c[i] if w.kind[i] == FREE else 0.0
+    for i in range(w.nu.shape[0]):
+        w.at[Y, i] = 0.0
+        w.at[C, i] = max(w.at[C, i], 0.0)
+        if w.what[KIND, i] != IDLE:
+            w.what[KIND, i] = PRESENT if w.what[BASIS, i] >= w.count[G] and w.at[C, i] > 0.0 else FREE
+            amount += w.at[C, i] if w.what[KIND, i] == FREE else 0.0
     set_gas(amount, w)
-    for i in range(w.c.size):
-        if w.kind[i] == FREE:
-            w.y[i] = np.log(w.c[i] / w.value[N] if w.count[VOLUME] == 1 else w.c[i] / amount) if w.c[i] > 0.0 else START
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == FREE:
+            w.at[Y, i] = np.log(w.at[C, i] / w.value[N]) if w.at[C, i] > 0.0 else START
     changed = True
     while changed:
         changed = False
-        for i in range(w.c.size):
-            if w.kind[i] == FREE and w.c[i] == 0.0 and not taken_back(i, w):
-                w.kind[i], w.y[i] = EMPTY, NOTHING
+        for i in range(w.nu.shape[0]):
+            if w.what[KIND, i] == FREE and w.at[C, i] == 0.0 and not taken_back(i, w):
+                w.what[KIND, i], w.at[Y, i] = EMPTY, NOTHING
                 changed = True
 
 
@@ -76,8 +85,8 @@ def taken_back(i: int, w: Work) -> bool:
     for j in range(w.count[K]):
         if w.nu[i, j] < 0.0:
             possible = True
-            for k in range(w.c.size):
-                possible &= not (w.kind[k] == EMPTY and w.nu[k, j] > 0.0)
+            for k in range(w.nu.shape[0]):
+                possible &= not (w.what[KIND, k] == EMPTY and w.nu[k, j] > 0.0)
             if possible:
                 return True
     return False
@@ -100,7 +109,7 @@ def gas_for(i: int, w: Work) -> int:
     for j in range(w.count[G]):
         share = abs(w.nu[i, j])
         if share > ENTRY:
-            share *= np.exp(max(min(w.u[j], 0.0), -600.0))
+            share *= np.exp(max(min(w.of[U, j], 0.0), -600.0))
             if share > best:
                 best, found = share, j
     return found
@@ -112,12 +121,12 @@ def poor_place(w: Work) -> int:
 
     With a rare or absent species as basis, a coordinate is the small difference of large terms.
     """
-    for i in range(w.c.size):
-        if w.kind[i] == FREE:
-            held = w.n[w.basis[i]] if w.basis[i] < w.count[G] else 0.0
-            if held <= POOR * max(w.supply[i], w.demand[i]):
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == FREE:
+            held = w.of[AMOUNT, w.what[BASIS, i]] if w.what[BASIS, i] < w.count[G] else 0.0
+            if held <= POOR * max(w.at[SUPPLY, i], w.at[DEMAND, i]):
                 w.count[JOIN] = gas_for(i, w)
-                if w.count[JOIN] not in (NONE, w.basis[i]):
+                if w.count[JOIN] not in (NONE, w.what[BASIS, i]):
                     return i
     return NONE
 
@@ -129,14 +138,14 @@ def saturating(i: int, w: Work) -> int:
     Supply without demand lowers y_i until a species with nu < 0 saturates, demand without supply raises it until one
     with nu > 0 does.
     """
-    sign = -1.0 if w.supply[i] > 0.0 else 1.0
+    sign = -1.0 if w.at[SUPPLY, i] > 0.0 else 1.0
     best, found = np.inf, NONE
     for j in range(w.count[G], w.count[K]):
         nu = sign * w.nu[i, j]
-        if nu > ENTRY and -w.u[j] / nu < best:
-            best, found = -w.u[j] / nu, j
+        if nu > ENTRY and -w.of[U, j] / nu < best:
+            best, found = -w.of[U, j] / nu, j
     if found != NONE:
-        w.y[i] += sign * best
+        w.at[Y, i] += sign * best
     return found
 
 
@@ -148,12 +157,12 @@ def place_for(k: int, b: Any, w: Work) -> int:
     a new species that holds the element before one that is the small difference of large terms.
     """
     best, found = np.inf, NONE
-    for i in range(w.c.size):
-        if w.kind[i] == FREE and abs(w.nu[i, k]) > ENTRY:
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == FREE and abs(w.nu[i, k]) > ENTRY:
             terms = 0.0
-            for j in range(w.c.size):
+            for j in range(w.nu.shape[0]):
                 terms += abs(w.inverse[i, j] * b[j])
-            turnover = (max(w.supply[i], w.demand[i]) + VANISHES * terms) / abs(w.nu[i, k])
+            turnover = (max(w.at[SUPPLY, i], w.at[DEMAND, i]) + VANISHES * terms) / abs(w.nu[i, k])
             if turnover < best:
                 best, found = turnover, i
     return found
@@ -162,11 +171,11 @@ def place_for(k: int, b: Any, w: Work) -> int:
 @inlined
 def gas_ends(k: int, place: int, w: Work) -> bool:
     """Tell whether no gas could stay if ``k`` took ``place``: no free coordinate would hold anything."""
-    t = w.c[place] / w.nu[place, k]
-    for i in range(w.c.size):
-        if w.kind[i] == FREE and i != place:
-            left = w.c[i] - t * w.nu[i, k]
-            if abs(left) > VANISHES * (abs(w.c[i]) + abs(t * w.nu[i, k])):
+    t = w.at[C, place] / w.nu[place, k]
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == FREE and i != place:
+            left = w.at[C, i] - t * w.nu[i, k]
+            if abs(left) > VANISHES * (abs(w.at[C, i]) + abs(t * w.nu[i, k])):
                 return False
     return True
 
@@ -180,10 +189,10 @@ def first_used_up(k: int, alpha: float, w: Work) -> int:
     best, found = np.inf, STUCK
     if alpha > 0.0:
         best, found = w.value[N] / alpha, NONE
-    for i in range(w.c.size):
-        if w.kind[i] == PRESENT:
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == PRESENT:
             amount = present_amount(i, w)
-            taken = w.nu[i, k] - alpha * (w.c[i] - amount) / w.value[N]
+            taken = w.nu[i, k] - alpha * (w.at[C, i] - amount) / w.value[N]
             if taken > ENTRY and max(amount, 0.0) / taken < best:
                 best, found = max(amount, 0.0) / taken, i
     if found >= 0 and alpha != 0.0:
@@ -203,13 +212,13 @@ def place_of_join(k: int, b: Any, w: Work) -> int:
         return first_used_up(k, 0.0, w)
     if loose or w.count[VOLUME] == 1 or w.count[GAS] == 0 or not gas_ends(k, place, w):
         return place
-    used = first_used_up(k, w.nu[place, k] * w.value[N] / w.c[place], w)
+    used = first_used_up(k, w.nu[place, k] * w.value[N] / w.at[C, place], w)
     if used == NONE:
         set_gas(0.0, w)
     elif used >= 0:
         if abs(w.nu[used, k]) > ENTRY:
             return used
-        w.kind[used] = FREE
+        w.what[KIND, used] = FREE
     return place if used != STUCK else STUCK
 
 
@@ -217,14 +226,14 @@ def place_of_join(k: int, b: Any, w: Work) -> int:
 def place_of_gas(w: Work) -> int:
     """Place of the condensed species that the incipient gas uses up first as it grows; STUCK if there is none."""
     best, found = np.inf, STUCK
-    for i in range(w.c.size):
-        if w.kind[i] == PRESENT:
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == PRESENT:
             taken = 0.0
             for j in range(w.count[G]):
-                taken += w.nu[i, j] * w.n[j]
+                taken += w.nu[i, j] * w.of[AMOUNT, j]
             taken /= w.value[X]
-            if taken > ENTRY and w.c[i] / taken < best:
-                best, found = w.c[i] / taken, i
+            if taken > ENTRY and w.at[C, i] / taken < best:
+                best, found = w.at[C, i] / taken, i
     if found != STUCK:
         set_gas(max(best, 1.0e-30), w)
     return found
@@ -234,9 +243,9 @@ def place_of_gas(w: Work) -> int:
 def leaving_phase(error: float, w: Work) -> int:
     """Place of the condensed species whose amount is most negative, NONE if none is beyond ``error``."""
     worst, found = 0.0, NONE
-    for i in range(w.c.size):
-        if w.kind[i] == PRESENT:
-            turnover = max(w.supply[i], w.demand[i])
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == PRESENT:
+            turnover = max(w.at[SUPPLY, i], w.at[DEMAND, i])
             amount = present_amount(i, w)
             if amount < -(VANISHES + 10.0 * error) * turnover and amount / turnover < worst:
                 worst, found = amount / turnover, i
@@ -260,8 +269,8 @@ def wanted_change(error: float, b: Any, w: Work) -> int:
     if place == NONE:
         worst = APPEARS + 10.0 * error
         for k in range(w.count[G], w.count[K]):
-            if w.u[k] / w.atoms[k] > worst and k != extra:
-                worst, w.count[JOIN], place = w.u[k] / w.atoms[k], k, 0
+            if w.of[U, k] / w.of[ATOMS, k] > worst and k != extra:
+                worst, w.count[JOIN], place = w.of[U, k] / w.of[ATOMS, k], k, 0
         if place != NONE:
             return place_of_join(w.count[JOIN], b, w)
         absent = w.count[GAS] == 0 and w.count[G] > 0
@@ -272,6 +281,6 @@ def wanted_change(error: float, b: Any, w: Work) -> int:
             return EXTRA_PLACE
         place = place_of_gas(w)
     if place != STUCK:
-        w.kind[place] = FREE
+        w.what[KIND, place] = FREE
         w.count[JOIN] = gas_for(place, w)
     return place

@@ -17,17 +17,20 @@ from gibbsmin.solver.layout import (
     FREE,
     GAS,
     JOIN,
+    KIND,
     MODE,
     PRESENT,
     STEPS,
     TEMPERATURE,
     VOLUME,
     WARM,
+    C,
     G,
     N,
     T,
     Work,
     X,
+    Y,
 )
 from gibbsmin.solver.newton import newton_error, newton_step
 from gibbsmin.solver.phase_set import EXTRA_PLACE, NONE, STUCK, poor_place, saturating, set_gas, wanted_change
@@ -107,10 +110,10 @@ def change(place: int, b: Any, w: Work) -> None:
     if k != NONE:
         replace(place, k, b, w)
         if k >= w.count[G]:
-            w.kind[place], w.y[place] = PRESENT, 0.0
+            w.what[KIND, place], w.at[Y, place] = PRESENT, 0.0
     held = 0.0
-    for i in range(w.c.size):
-        held += abs(w.c[i]) if w.kind[i] == FREE else 0.0
+    for i in range(w.nu.shape[0]):
+        held += abs(w.at[C, i]) if w.what[KIND, i] == FREE else 0.0
     surplus = held == 0.0 and w.count[GAS] == 1 and (w.count[MODE] == TEMPERATURE or w.count[EXTRA] >= 0)
     if surplus or (held > 0.0 and w.count[GAS] == 0):
         set_gas(held, w)

@@ -13,7 +13,7 @@ import numpy as np
 
 from gibbsmin.compiled import inlined
 from gibbsmin.solver.basis import basis_amounts, exact_prices, replace
-from gibbsmin.solver.layout import FREE, IDLE, G, K, Work
+from gibbsmin.solver.layout import ATOMS, BASIS, FREE, IDLE, KIND, C, D, G, K, Work, Y
 
 ARTIFICIAL: Final = 1.0e6  # cost of an artificial column; potentials lie below 1e4 an atom
 PRICE: Final = 1.0e-7
@@ -29,14 +29,14 @@ def start_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> None:
         for k in range(m):
             w.inverse[i, k] = 0.0
         w.inverse[i, i] = -1.0 if b[i] < 0.0 else 1.0
-        w.basis[i], w.kind[i] = -1, FREE
-        w.c[i], w.y[i] = abs(b[i]), 0.0
+        w.what[BASIS, i], w.what[KIND, i] = -1, FREE
+        w.at[C, i], w.at[Y, i] = abs(b[i]), 0.0
     for k in range(w.count[K]):
         total = 0.0
         for i in range(m):
             w.nu[i, k] = w.inverse[i, i] * A[i, w.species[k]]
             total += w.nu[i, k]
-        w.d[k] = g[w.species[k]] - ARTIFICIAL * total + (bias if k < w.count[G] else 0.0)
+        w.of[D, k] = g[w.species[k]] - ARTIFICIAL * total + (bias if k < w.count[G] else 0.0)
 
 
 @inlined
@@ -44,7 +44,7 @@ def entering(bland: bool, w: Work) -> int:
     """Return the candidate with the lowest price per atom, -1 if none is negative."""
     best, found = -PRICE, -1
     for j in range(w.count[K]):
-        price = w.d[j] / w.atoms[j]
+        price = w.of[D, j] / w.of[ATOMS, j]
         if price < best:
             best, found = price, j
             if bland:
@@ -56,13 +56,13 @@ def entering(bland: bool, w: Work) -> int:
 def leaving(j: int, bland: bool, w: Work) -> int:
     """Return the place that candidate ``j`` empties first, -1 if none."""
     best, found = np.inf, -1
-    for i in range(w.c.size):
+    for i in range(w.nu.shape[0]):
         entry = w.nu[i, j]
         if entry > PIVOT:
-            ratio = max(w.c[i], 0.0) / entry
+            ratio = max(w.at[C, i], 0.0) / entry
             better = ratio < best
             if ratio == best:
-                better = w.basis[i] < w.basis[found] if bland else entry > w.nu[found, j]
+                better = w.what[BASIS, i] < w.what[BASIS, found] if bland else entry > w.nu[found, j]
             if better:
                 best, found = ratio, i
     return found
@@ -78,9 +78,9 @@ def real_for(place: int, w: Work) -> int:
     for j in range(w.count[K]):
         entry = abs(w.nu[place, j])
         if entry > PIVOT:
-            price = w.d[j]
-            for i in range(w.c.size):
-                if w.basis[i] < 0:
+            price = w.of[D, j]
+            for i in range(w.nu.shape[0]):
+                if w.what[BASIS, i] < 0:
                     price += ARTIFICIAL * w.nu[i, j]
             if price < best * entry:
                 best, found = price / entry, j
@@ -101,11 +101,11 @@ def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
 def optimal_basis_again(b: Any, g: Any, w: Work) -> bool:
     """Find an optimal basis from that of the state before, with the same candidates; False if it cannot hold b."""
     basis_amounts(b, w)
-    for i in range(w.c.size):
-        w.y[i] = 0.0
-        if w.kind[i] != IDLE:
-            w.kind[i] = FREE
-            if w.c[i] < 0.0:
+    for i in range(w.nu.shape[0]):
+        w.at[Y, i] = 0.0
+        if w.what[KIND, i] != IDLE:
+            w.what[KIND, i] = FREE
+            if w.at[C, i] < 0.0:
                 return False
     exact_prices(g, w)
     return improve(b, w)
@@ -124,7 +124,7 @@ def improve(b: Any, w: Work) -> bool:
         place = leaving(j, bland, w)
         if place < 0:
             return False
-        stalled = stalled + 1 if w.c[place] <= 0.0 else 0
+        stalled = stalled + 1 if w.at[C, place] <= 0.0 else 0
         replace(place, j, b, w)
     return False
 
@@ -133,15 +133,15 @@ def improve(b: Any, w: Work) -> bool:
 def remove_artificial(b: Any, w: Work) -> bool:
     """Take artificial columns out of the basis; False if one of them holds something."""
     for place in range(b.size):
-        if w.basis[place] < 0:
+        if w.what[BASIS, place] < 0:
             scale = 0.0
             for i in range(b.size):
                 scale = max(scale, abs(w.inverse[place, i] * b[i]))
-            if w.c[place] > LACK * scale:
+            if w.at[C, place] > LACK * scale:
                 return False
             j = real_for(place, w)
             if j < 0:
-                w.kind[place], w.c[place] = IDLE, 0.0
+                w.what[KIND, place], w.at[C, place] = IDLE, 0.0
             else:
                 replace(place, j, b, w)
     return improve(b, w)

@@ -8,7 +8,22 @@ import numpy as np
 
 from gibbsmin.compiled import inlined
 from gibbsmin.solver.energy import form_energies, potentials
-from gibbsmin.solver.layout import COLD, ENTROPY, IDLE, MODE, SECOND, WARM, T, Work
+from gibbsmin.solver.layout import (
+    BASIS,
+    CAPACITY,
+    COLD,
+    ENTROPY,
+    GIBBS,
+    HEAT,
+    IDLE,
+    KIND,
+    MODE,
+    SECOND,
+    WARM,
+    C,
+    T,
+    Work,
+)
 from gibbsmin.solver.simplex import optimal_basis
 from gibbsmin.thermo.table import Table
 
@@ -28,7 +43,7 @@ def start_temperature(A: Any, b: Any, gas: Any, table: Table, w: Work) -> bool:
     w.value[T] = GUESS
     for _ in range(60):
         potentials(table, gas, w)
-        if not optimal_basis(A, b, w.g, 0.0, w):
+        if not optimal_basis(A, b, w.std[GIBBS], 0.0, w):
             return False
         form_energies(w)
         excess, slope = basis_excess(w)
@@ -51,12 +66,12 @@ def start_temperature(A: Any, b: Any, gas: Any, table: Table, w: Work) -> bool:
 def basis_excess(w: Work) -> tuple[float, float]:
     """E of eq. (7) for the species of the basis alone, without mixing, and its derivative by ln T."""
     total = slope = 0.0
-    for i in range(w.c.size):
-        if w.kind[i] != IDLE:
-            j = w.species[w.basis[i]]
-            total += w.c[i] * w.e[j]
-            slope += w.c[i] * w.cp[j]
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] != IDLE:
+            j = w.species[w.what[BASIS, i]]
+            total += w.at[C, i] * w.std[HEAT, j]
+            slope += w.at[C, i] * w.std[CAPACITY, j]
             if w.count[MODE] == ENTROPY:
-                total -= w.c[i] * w.g[j]
+                total -= w.at[C, i] * w.std[GIBBS, j]
     target = w.value[SECOND]
     return total - (target if w.count[MODE] == ENTROPY else target / w.value[T]), slope

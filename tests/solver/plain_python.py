@@ -10,7 +10,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.solver.candidates import select_candidates
-from gibbsmin.solver.layout import IDLE, new_work
+from gibbsmin.solver.layout import BASIS, IDLE, KIND, C, new_work
 from gibbsmin.solver.simplex import optimal_basis
 from gibbsmin.states.solve import equilibria
 from gibbsmin.states.system import System
@@ -35,8 +35,8 @@ def programmes(question: dict[str, Any]) -> list[dict[str, Any]]:
             found = optimal_basis(A, b, g, 0.0, work)
         n = np.zeros(A.shape[1])
         for place in range(b.size):
-            if found and work.kind[place] != IDLE:
-                n[work.species[work.basis[place]]] = work.c[place]
+            if found and work.what[KIND, place] != IDLE:
+                n[work.species[work.what[BASIS, place]]] = work.at[C, place]
         answers.append({"found": bool(found), "n": n.tolist()})
     return answers
 
