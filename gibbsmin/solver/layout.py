@@ -25,6 +25,7 @@ REUSES: Final = 6  # states since the coordinates were made afresh; -1 if they a
 
 MODE: Final = 7  # what is held beside pressure or volume, see below
 VOLUME: Final = 8  # 1 where the volume is held, 0 where the pressure is
+MIXED: Final = 10  # 1 where the state is a mixture of those on the two sides of a jump of energy, see `one_state`
 EXTRA: Final = 9  # condensed candidate that is present beside the basis, at a temperature where two coexist; or -1
 
 # count[MODE]
@@ -41,6 +42,7 @@ SECOND: Final = 4  # what the second held condition asks: H/R or U/R, mol K, or 
 MORE: Final = 5  # amount of the candidate count[EXTRA], mol
 COLD: Final = 6  # lowest and highest temperature of any species' data, K
 WARM: Final = 7
+SHARE: Final = 8  # share of the warm side in a mixed state
 
 # at[...]: rows of what belongs to a place of the basis
 C: Final = 0  # mol
@@ -69,6 +71,8 @@ GIBBS: Final = 0  # G°/RT and what the first held condition adds; inf where it 
 HEAT: Final = 1  # H°/RT, at held volume U°/RT
 DISORDER: Final = 2  # S°/R
 CAPACITY: Final = 3  # Cp°/R, at held volume Cv°/R
+COLD_SIDE: Final = 4  # amounts in the last state of held T that had less energy than is asked for, mol
+WARM_SIDE: Final = 5  # and in the last that had more
 
 
 class Work(NamedTuple):
@@ -79,13 +83,13 @@ class Work(NamedTuple):
     """
 
     A: Any  # (m, S) atoms of each element in each species
-    count: Any  # (10,) int, see above
-    value: Any  # (8,) see above
+    count: Any  # (11,) int, see above
+    value: Any  # (9,) see above
     offered: Any  # (S,) bool, the species that the last state offered as candidates
     chosen: Any  # (S,) bool, those that remained
     lacking: Any  # (m,) bool, the elements of which it had none
     species: Any  # (S,) int, number of each candidate
-    std: Any  # (4, S) see above
+    std: Any  # (6, S) see above
     of: Any  # (6, S) see above
     nu: Any  # (m, S) coordinates of each candidate, eq. (4)
     at: Any  # (7, m + 3) see above
@@ -100,13 +104,13 @@ def new_work(A: Any) -> Work:
     m, S = A.shape
     return Work(
         A,
-        np.zeros(10, np.int64),
-        np.zeros(8),
+        np.zeros(11, np.int64),
+        np.zeros(9),
         np.zeros(S, np.bool_),
         np.zeros(S, np.bool_),
         np.zeros(m, np.bool_),
         np.zeros(S, np.int64),
-        np.zeros((4, S)),
+        np.zeros((6, S)),
         np.zeros((6, S)),
         np.zeros((m, S)),
         np.zeros((7, m + 3)),

@@ -13,6 +13,7 @@ from gibbsmin.solver.layout import (
     AMOUNT,
     BASIS,
     CAPACITY,
+    COLD_SIDE,
     DISORDER,
     ENERGY,
     ENTROPY,
@@ -23,11 +24,14 @@ from gibbsmin.solver.layout import (
     IDLE,
     KIND,
     LEFT,
+    MIXED,
     MODE,
     MORE,
     PRESENT,
+    SHARE,
     TEMPERATURE,
     VOLUME,
+    WARM_SIDE,
     G,
     K,
     T,
@@ -66,6 +70,21 @@ def new_outcome(states: int, S: int, m: int) -> Outcome:
 
 
 @inlined
+def amounts(scale: float, w: Work, n: Any) -> None:
+    """Write the amounts of the present state, times ``scale``, into ``n`` (S,)."""
+    for j in range(n.size):
+        n[j] = 0.0
+    if w.count[GAS] == 1:
+        for j in range(w.count[G]):
+            n[w.species[j]] = scale * w.of[AMOUNT, j]
+    if w.count[EXTRA] >= 0:
+        n[w.species[w.count[EXTRA]]] = scale * max(w.value[MORE], 0.0)
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] == PRESENT:
+            n[w.species[w.what[BASIS, i]]] = scale * max(present_amount(i, w), 0.0)
+
+
+@inlined
 def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
     """Write amounts (times ``scale``) and element potentials of the present state, eq. (4).
 
@@ -73,15 +92,14 @@ def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
     potential zero, one that no candidate holds (an absent element) minus infinity.
     """
     m = lam.size
-    for j in range(n.size):
-        n[j] = 0.0
+    if w.count[MIXED] == 1:
+        share = w.value[SHARE]
+        for j in range(n.size):
+            n[j] = scale * ((1.0 - share) * w.std[COLD_SIDE, j] + share * w.std[WARM_SIDE, j])
+    else:
+        amounts(scale, w, n)
     for i in range(m):
         lam[i] = 0.0
-    if w.count[GAS] == 1:
-        for j in range(w.count[G]):
-            n[w.species[j]] = scale * w.of[AMOUNT, j]
-    if w.count[EXTRA] >= 0:
-        n[w.species[w.count[EXTRA]]] = scale * max(w.value[MORE], 0.0)
     for i in range(m):
         if w.what[KIND, i] == IDLE:
             held = False
@@ -89,8 +107,6 @@ def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
                 held |= A[i, w.species[k]] != 0.0
             lam[i] += 0.0 if held else -np.inf
             continue
-        if w.what[KIND, i] == PRESENT:
-            n[w.species[w.what[BASIS, i]]] = scale * max(present_amount(i, w), 0.0)
         potential = w.std[GIBBS, w.species[w.what[BASIS, i]]] + w.at[Y, i]
         for k in range(m):
             lam[k] += w.inverse[i, k] * potential
@@ -141,6 +157,16 @@ def finish(
             enthalpy += n[j] * w.std[HEAT, j] * temperature
             entropy += n[j] * (w.std[DISORDER, j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
             capacity += n[j] * w.std[CAPACITY, j] if free else 0.0
+    if w.count[MIXED] == 1:  # H and S jump at this T: they follow from what is held and from G = b.lam
+        energy = 0.0
+        for i in range(b.size):
+            energy += b[i] * out.lam[state, i] if b[i] != 0.0 else 0.0
+        if w.count[MODE] == ENERGY:
+            enthalpy = second + (amount * temperature if w.count[VOLUME] == 1 else 0.0)
+            entropy = enthalpy / temperature - energy
+        else:
+            entropy = second
+            enthalpy = temperature * (entropy + energy)
     out.enthalpy[state], out.entropy[state] = enthalpy, entropy
     if w.count[MODE] == ENERGY:
         energy = enthalpy - (amount * temperature if w.count[VOLUME] == 1 else 0.0)

@@ -34,6 +34,7 @@ from gibbsmin.solver.layout import (
     TEMPERATURE,
     VOLUME,
     C,
+    D,
     G,
     K,
     N,
@@ -83,7 +84,7 @@ def start_phases(w: Work) -> None:
 def taken_back(i: int, w: Work) -> bool:
     """Tell whether some species balances coordinate ``i``, of which there is none; if not, its holders are absent."""
     for j in range(w.count[K]):
-        if w.nu[i, j] < 0.0:
+        if w.nu[i, j] < 0.0 and w.of[D, j] < np.inf:
             possible = True
             for k in range(w.nu.shape[0]):
                 possible &= not (w.what[KIND, k] == EMPTY and w.nu[k, j] > 0.0)
