@@ -17,6 +17,8 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from gibbsmin import interop as interop
     from gibbsmin.case.read import read_case as read_case
+    from gibbsmin.practice.reactions import Reaction as Reaction
+    from gibbsmin.practice.reactions import reaction as reaction
     from gibbsmin.results.result import Result as Result
     from gibbsmin.states.batch import Batch as Batch
     from gibbsmin.states.solve import equilibria as equilibria
@@ -32,6 +34,7 @@ __version__ = "0.1.0"
 
 _HOMES = {
     "Batch": "gibbsmin.states.batch",
+    "Reaction": "gibbsmin.practice.reactions",
     "Result": "gibbsmin.results.result",
     "Species": "gibbsmin.thermo.record",
     "State": "gibbsmin.states.state",
@@ -39,6 +42,7 @@ _HOMES = {
     "equilibria": "gibbsmin.states.solve",
     "equilibrium": "gibbsmin.states.solve",
     "interop": "gibbsmin.interop",
+    "reaction": "gibbsmin.practice.reactions",
     "read_case": "gibbsmin.case.read",
     "read_species": "gibbsmin.thermo.own",
     "species": "gibbsmin.thermo.database",
@@ -47,6 +51,7 @@ _HOMES = {
 
 __all__ = [
     "Batch",
+    "Reaction",
     "Result",
     "Species",
     "State",
@@ -55,6 +60,7 @@ __all__ = [
     "equilibria",
     "equilibrium",
     "interop",
+    "reaction",
     "read_case",
     "read_species",
     "species",

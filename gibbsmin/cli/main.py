@@ -10,6 +10,7 @@ from gibbsmin import __version__
 from gibbsmin.cli.begin import begin
 from gibbsmin.cli.check import check
 from gibbsmin.cli.messages import INTERRUPTED, say
+from gibbsmin.cli.reaction import reaction
 from gibbsmin.cli.run import run
 from gibbsmin.cli.schema import schema
 from gibbsmin.cli.species import species
@@ -28,6 +29,7 @@ for command, told in (
     (run, "Solve cases, print their tables, write their result folders."),
     (check, "Read and explain cases without solving them."),
     (species, "Find species; show the data of one."),
+    (reaction, "Heat, entropy, Gibbs energy and K of a reaction over temperature."),
     (begin, "Write a commented case file to start from."),
     (schema, "Print the JSON Schema of case files."),
 ):

@@ -19,6 +19,7 @@ import pytest
 
 from gibbsmin.constants import ATMOSPHERE, STANDARD_PRESSURE, STANDARD_TEMPERATURE, R
 from gibbsmin.elements import parse_formula
+from gibbsmin.practice.reactions import Reaction, reaction
 from gibbsmin.states.solve import equilibrium
 from gibbsmin.states.state import State
 from gibbsmin.states.system import System
@@ -134,26 +135,20 @@ def asked_of(state: State, feed: dict[str, float], asked: str) -> float:
     raise AssertionError(asked)
 
 
-def reaction_sum(row: Row, get: Get, function: Callable[[Species], float]) -> float:
-    """Sum ``function`` over the products less that over the reactants."""
-    sides = [side.split(" + ") for side in row["species"].split(" = ")]
-    total = 0.0
-    for sign, side in zip((-1.0, 1.0), sides, strict=True):
-        for term in side:
-            *count, name = term.split()
-            total += sign * (float(count[0]) if count else 1.0) * function(get(name))
-    return total
+@cache
+def reaction_of(text: str, get: Get) -> Reaction:
+    """Make the reaction of a row from the records that ``get`` gives."""
+    names = [term.split()[-1] for side in text.split(" = ") for term in side.split(" + ")]
+    return reaction(text, extra=[get(name) for name in names])
 
 
 def reaction_value(row: Row, T: float, get: Get) -> float:
     """H, S, G or K of a reaction at ``T`` [K], with the standard pressure of the row."""
-    ln_p = log(quantity(row["pressure"], "Pa", "pressure") / STANDARD_PRESSURE)
-    if row["asked"] == "H":
-        return reaction_sum(row, get, lambda species: species.enthalpy(T))
-    if row["asked"] == "S":
-        return reaction_sum(row, get, lambda species: species.entropy(T))
-    G = reaction_sum(row, get, lambda species: species.gibbs_energy(T) + (0.0 if species.condensed else R * T * ln_p))
-    ln_K = -G / (R * T)
+    r = reaction_of(row["species"], get)
+    if row["asked"] in ("H", "S"):
+        return r.enthalpy(T) if row["asked"] == "H" else r.entropy(T)
+    ln_K = r.ln_k(T) - r.gas_change * log(quantity(row["pressure"], "Pa", "pressure") / STANDARD_PRESSURE)
+    G = -R * T * ln_K
     return {"G": G, "G = 0": G, "ln K": ln_K, "log10 K": ln_K / log(10.0), "K": exp(min(ln_K, 700.0))}[row["asked"]]
 
 
