@@ -9,6 +9,7 @@ import numpy as np
 
 from gibbsmin.constants import STANDARD_PRESSURE
 from gibbsmin.states.certificate import Certificate
+from gibbsmin.states.response import Response, response
 from gibbsmin.states.system import GAS, Array, System
 
 if TYPE_CHECKING:
@@ -166,6 +167,61 @@ class State:
         part = self.system.gas if self.gas_amount > 0.0 else np.ones_like(self.system.gas)
         n = self.amounts_array[part]
         return float(n @ self.system.molar_masses[part] / n.sum())
+
+    @cached_property
+    def response(self) -> Response:
+        """How the state answers small changes: all properties from here to `frozen_sound_speed` in one."""
+        return response(self.system, self.temperature, self.pressure, self.amounts_array, self.enthalpy)
+
+    @property
+    def heat_capacity(self) -> float:
+        """(dH/dT)_P with the composition following [J/K]; infinite on a plateau (melting, boiling)."""
+        return self.response.heat_capacity
+
+    @property
+    def frozen_heat_capacity(self) -> float:
+        """(dH/dT)_P with the composition frozen [J/K]."""
+        return self.response.frozen_heat_capacity
+
+    @property
+    def heat_capacity_constant_volume(self) -> float:
+        """(dU/dT)_V with the composition following [J/K]; nan without a gas."""
+        return self.response.heat_capacity_constant_volume
+
+    @property
+    def heat_capacity_ratio(self) -> float:
+        """Cp/Cv with the composition following [-]; nan without a gas. Not the isentropic exponent, unless frozen."""
+        return self.heat_capacity / self.heat_capacity_constant_volume
+
+    @property
+    def thermal_expansion(self) -> float:
+        """(d ln V/dT)_P [1/K]; infinite where a liquid boils, nan without a gas or where something melts."""
+        return self.response.thermal_expansion
+
+    @property
+    def compressibility(self) -> float:
+        """-(d ln V/dP)_T [1/Pa]; infinite where a liquid boils, nan without a gas."""
+        return self.response.compressibility
+
+    @property
+    def isentropic_exponent(self) -> float:
+        """(d ln P/d ln rho)_S with the composition following [-]; nan without a gas."""
+        return self.response.isentropic_exponent
+
+    @property
+    def frozen_isentropic_exponent(self) -> float:
+        """(d ln P/d ln rho)_S with the composition frozen, which is the ratio of the frozen heat capacities [-]."""
+        return self.response.frozen_isentropic_exponent
+
+    @property
+    def sound_speed(self) -> float:
+        """Speed of sound with the composition following [m/s]; condensed phases move along with the gas."""
+        return self.response.sound_speed
+
+    @property
+    def frozen_sound_speed(self) -> float:
+        """Speed of sound with the composition frozen [m/s]; condensed phases move along with the gas."""
+        return self.response.frozen_sound_speed
 
     @cached_property
     def warnings(self) -> list[str]:
