@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import compiled
-from gibbsmin.solver.layout import COLD, FIRST, MODE, REUSES, SECOND, STEPS, VOLUME, WARM, T, new_work
+from gibbsmin.solver.layout import COLD, FIRST, MODE, REUSES, SECOND, STEPS, TEMPERATURE, VOLUME, WARM, T, new_work
 from gibbsmin.solver.one_state import one_state
 from gibbsmin.solver.outcome import Outcome, close_balances, collect, finish
 from gibbsmin.solver.status import NO_FEED, SOLVED
@@ -61,7 +61,8 @@ def minimize_many(
         w.count[STEPS] = 0
         w.count[VOLUME] = 1 if volume else 0
         w.value[FIRST] = -np.log(first[state] / scale) if volume else np.log(first[state])
-        w.value[T] = second[state]
+        if mode == TEMPERATURE:
+            w.value[T] = second[state]
         w.value[SECOND] = second[state] / scale
         w.count[MODE] = mode
         out.status[state] = one_state(A, gas, relative, table, w)

@@ -136,12 +136,16 @@ def begin(attempt: int, mode: int, A: Any, gas: Any, b: Any, table: Table, w: Wo
 @inlined
 def begin_joint(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     """Prepare the first start with T unknown: READY, or 0 if no temperature was found."""
-    w.count[REUSES] = -1
     w.count[CHANGES], w.count[EXTRA] = 0, NONE
     for j in range(gas.size):
         w.std[GIBBS, j] = 0.0
-    select_candidates(A, gas, b, w.std[GIBBS], w)
-    if not start_temperature(A, b, gas, table, w):
+    again = w.count[REUSES] >= 0 and same_candidates(b, w.std[GIBBS], w)
+    if not again:
+        select_candidates(A, gas, b, w.std[GIBBS], w)
+    again &= w.count[REUSES] < MOST_REUSES
+    w.count[REUSES] = w.count[REUSES] + 1 if again else 0
+    if not start_temperature(again, A, b, gas, table, w):
+        w.count[REUSES] = -1
         return 0
     follow(table, gas, w)
     start_phases(w)

@@ -24,7 +24,7 @@ from gibbsmin.solver.layout import (
     T,
     Work,
 )
-from gibbsmin.solver.simplex import optimal_basis
+from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.thermo.table import Table
 
 CLOSE: Final = 1.0e-3  # relative change of T that is near enough for a start
@@ -33,18 +33,21 @@ GUESS: Final = 1500.0  # K
 
 
 @inlined
-def start_temperature(A: Any, b: Any, gas: Any, table: Table, w: Work) -> bool:
-    """Set T and an optimal basis there; False if no basis was found.
+def start_temperature(again: bool, A: Any, b: Any, gas: Any, table: Table, w: Work) -> bool:
+    """Set T and an optimal basis there; False if no basis was found. ``again``: go on from the basis and T of ``w``.
 
     The energy of a fixed basis is smooth in T, that of the programme jumps where the basis changes: Newton steps, kept
     within a bracket that every trial narrows.
     """
     low, high = w.value[COLD], w.value[WARM]
-    w.value[T] = GUESS
+    if not again:
+        w.value[T] = GUESS
     for _ in range(60):
         potentials(table, gas, w)
-        if not optimal_basis(A, b, w.std[GIBBS], 0.0, w):
+        kept = again and basis_usable(w) and optimal_basis_again(b, w.std[GIBBS], w)
+        if not kept and not optimal_basis(A, b, w.std[GIBBS], 0.0, w):
             return False
+        again = True
         form_energies(w)
         excess, slope = basis_excess(w)
         old = w.value[T]
@@ -60,6 +63,16 @@ def start_temperature(A: Any, b: Any, gas: Any, table: Table, w: Work) -> bool:
         if abs(new / old - 1.0) < CLOSE or high / low < 1.0 + NARROW:
             return True
     return True
+
+
+@inlined
+def basis_usable(w: Work) -> bool:
+    """Tell whether every species of the basis may be used at the present T."""
+    usable = True
+    for i in range(w.nu.shape[0]):
+        if w.what[KIND, i] != IDLE:
+            usable &= w.std[GIBBS, w.species[w.what[BASIS, i]]] < np.inf
+    return usable
 
 
 @inlined
