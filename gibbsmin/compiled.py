@@ -83,11 +83,6 @@ def summing(function: Function) -> Function:
     return cast(Function, numba.njit(_nrt=False, fastmath={"reassoc", "contract", "nsz"}, **_PART)(function))
 
 
-def allocating(function: Function) -> Function:
-    """Compile like `inlined`, for a part that makes arrays."""
-    return cast(Function, numba.njit(**_PART)(function))
-
-
 @cache
 def cache_folder() -> Path:
     """Folder that holds the compiled code of this very version of the sources."""

@@ -6,8 +6,6 @@ from typing import Any, Final, NamedTuple
 
 import numpy as np
 
-from gibbsmin.compiled import allocating
-
 # what[KIND, i]: what coordinate i of the basis is
 FREE: Final = 0  # its activity is unknown
 PRESENT: Final = 1  # a condensed species that is present: its activity is one, its amount is unknown
@@ -26,6 +24,7 @@ REUSES: Final = 6  # states since the coordinates were made afresh; -1 if they a
 MODE: Final = 7  # what is held beside pressure or volume, see below
 VOLUME: Final = 8  # 1 where the volume is held, 0 where the pressure is
 MIXED: Final = 10  # 1 where the state is a mixture of those on the two sides of a jump of energy, see `one_state`
+SIDES: Final = 11  # which sides of the bracket are known: 1 the cold, 2 the warm one
 EXTRA: Final = 9  # condensed candidate that is present beside the basis, at a temperature where two coexist; or -1
 
 # count[MODE]
@@ -43,6 +42,11 @@ MORE: Final = 5  # amount of the candidate count[EXTRA], mol
 COLD: Final = 6  # lowest and highest temperature of any species' data, K
 WARM: Final = 7
 SHARE: Final = 8  # share of the warm side in a mixed state
+LOW: Final = 9  # bracket of T
+HIGH: Final = 10
+WIDTH: Final = 11  # relative width of the bracket at which the joint iteration is tried next
+COLD_EXCESS: Final = 12  # E of eq. (7) at the two sides
+WARM_EXCESS: Final = 13
 
 # at[...]: rows of what belongs to a place of the basis
 C: Final = 0  # mol
@@ -83,8 +87,9 @@ class Work(NamedTuple):
     """
 
     A: Any  # (m, S) atoms of each element in each species
-    count: Any  # (11,) int, see above
-    value: Any  # (9,) see above
+    b: Any  # (m,) element amounts of the state, scaled to a sum of about one
+    count: Any  # (12,) int, see above
+    value: Any  # (14,) see above
     offered: Any  # (S,) bool, the species that the last state offered as candidates
     chosen: Any  # (S,) bool, those that remained
     lacking: Any  # (m,) bool, the elements of which it had none
@@ -98,14 +103,14 @@ class Work(NamedTuple):
     matrix: Any  # (m + 3, m + 3) eqs. (6) and (8)
 
 
-@allocating
 def new_work(A: Any) -> Work:
     """Allocate the arrays for the element matrix ``A`` (m, S)."""
     m, S = A.shape
     return Work(
         A,
-        np.zeros(11, np.int64),
-        np.zeros(9),
+        np.zeros(m),
+        np.zeros(12, np.int64),
+        np.zeros(14),
         np.zeros(S, np.bool_),
         np.zeros(S, np.bool_),
         np.zeros(m, np.bool_),

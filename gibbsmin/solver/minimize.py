@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import compiled
-from gibbsmin.solver.layout import COLD, FIRST, MODE, REUSES, SECOND, STEPS, TEMPERATURE, VOLUME, WARM, T, new_work
+from gibbsmin.solver.layout import COLD, FIRST, MODE, REUSES, SECOND, STEPS, TEMPERATURE, VOLUME, WARM, T, Work
 from gibbsmin.solver.one_state import one_state
 from gibbsmin.solver.outcome import Outcome, close_balances, collect, finish
 from gibbsmin.solver.status import NO_FEED, SOLVED
@@ -16,7 +16,7 @@ from gibbsmin.thermo.table import Table
 
 @compiled
 def minimize_many(
-    A: Any, gas: Any, b: Any, mode: int, volume: bool, first: Any, second: Any, table: Table, out: Outcome
+    A: Any, gas: Any, b: Any, mode: int, volume: bool, first: Any, second: Any, table: Table, w: Work, out: Outcome
 ) -> None:
     """Solve every state of a batch.
 
@@ -38,16 +38,16 @@ def minimize_many(
         Temperature [K]; enthalpy, or at held volume internal energy, over R [mol K]; or entropy over R [mol].
     table : Table
         Standard-state functions.
+    w : Work
+        Arrays to work in, of `new_work`.
     out : Outcome
         Filled in place.
     """
     m, S = A.shape
-    w = new_work(A)
     w.count[REUSES] = -1
     w.value[COLD], w.value[WARM] = np.inf, 0.0
     for j in range(S):
         w.value[COLD], w.value[WARM] = min(w.value[COLD], table.low[j]), max(w.value[WARM], table.top[j])
-    relative = np.empty(m)
     for state in range(first.size):
         scale = 0.0
         for i in range(m):
@@ -57,7 +57,7 @@ def minimize_many(
             continue
         scale = 2.0 ** np.ceil(np.log2(scale))  # a power of two: what is stoichiometric stays so to the last bit
         for i in range(m):
-            relative[i] = b[state, i] / scale
+            w.b[i] = b[state, i] / scale
         w.count[STEPS] = 0
         w.count[VOLUME] = 1 if volume else 0
         w.value[FIRST] = -np.log(first[state] / scale) if volume else np.log(first[state])
@@ -65,7 +65,7 @@ def minimize_many(
             w.value[T] = second[state]
         w.value[SECOND] = second[state] / scale
         w.count[MODE] = mode
-        out.status[state] = one_state(A, gas, relative, table, w)
+        out.status[state] = one_state(A, gas, w.b, table, w)
         out.steps[state] = w.count[STEPS]
         if out.status[state] == SOLVED:
             collect(scale, A, w, out.n[state], out.lam[state])

@@ -89,12 +89,32 @@ def real_for(place: int, w: Work) -> int:
 
 @inlined
 def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
-    """Find an optimal basis from artificial columns; False if the candidates cannot hold b, or no end is found."""
+    """Find an optimal basis from artificial columns; False if the candidates cannot hold b, or no end is found.
+
+    An artificial column that is left holds nothing: a real one takes its place, or the row depends on others.
+    """
     start_basis(A, b, g, bias, w)
-    if not improve(b, w) or not remove_artificial(b, w):
-        return False
-    exact_prices(g, w)
-    return True
+    for _ in range(b.size + 1):
+        if not improve(b, w):
+            return False
+        place = -1
+        for i in range(b.size):
+            if w.what[BASIS, i] < 0 and w.what[KIND, i] != IDLE and place < 0:
+                place = i
+        if place < 0:
+            exact_prices(g, w)
+            return True
+        scale = 0.0
+        for i in range(b.size):
+            scale = max(scale, abs(w.inverse[place, i] * b[i]))
+        if w.at[C, place] > LACK * scale:
+            return False
+        j = real_for(place, w)
+        if j < 0:
+            w.what[KIND, place], w.at[C, place] = IDLE, 0.0
+        else:
+            replace(place, j, b, w)
+    return False
 
 
 @inlined
@@ -127,21 +147,3 @@ def improve(b: Any, w: Work) -> bool:
         stalled = stalled + 1 if w.at[C, place] <= 0.0 else 0
         replace(place, j, b, w)
     return False
-
-
-@inlined
-def remove_artificial(b: Any, w: Work) -> bool:
-    """Take artificial columns out of the basis; False if one of them holds something."""
-    for place in range(b.size):
-        if w.what[BASIS, place] < 0:
-            scale = 0.0
-            for i in range(b.size):
-                scale = max(scale, abs(w.inverse[place, i] * b[i]))
-            if w.at[C, place] > LACK * scale:
-                return False
-            j = real_for(place, w)
-            if j < 0:
-                w.what[KIND, place], w.at[C, place] = IDLE, 0.0
-            else:
-                replace(place, j, b, w)
-    return improve(b, w)

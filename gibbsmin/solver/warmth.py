@@ -7,23 +7,28 @@ from typing import Any, Final
 import numpy as np
 
 from gibbsmin.compiled import inlined
-from gibbsmin.solver.energy import form_energies, potentials
+from gibbsmin.solver.candidates import same_candidates, select_candidates
+from gibbsmin.solver.energy import follow, form_energies, potentials
 from gibbsmin.solver.layout import (
     BASIS,
     CAPACITY,
+    CHANGES,
     COLD,
     ENTROPY,
+    EXTRA,
     GIBBS,
     HEAT,
     IDLE,
     KIND,
     MODE,
+    REUSES,
     SECOND,
     WARM,
     C,
     T,
     Work,
 )
+from gibbsmin.solver.phase_set import NONE, start_phases
 from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.thermo.table import Table
 
@@ -31,14 +36,25 @@ CLOSE: Final = 1.0e-3  # relative change of T that is near enough for a start
 NARROW: Final = 1.0e-7  # width of the bracket at which the programme jumps: a plateau
 GUESS: Final = 1500.0  # K
 
+MOST_REUSES: Final = 50
+"""States in a row that take over the coordinates of the one before, so that rounding does not gather in them."""
+
 
 @inlined
-def start_temperature(again: bool, A: Any, b: Any, gas: Any, table: Table, w: Work) -> bool:
-    """Set T and an optimal basis there; False if no basis was found. ``again``: go on from the basis and T of ``w``.
+def begin_joint(A: Any, gas: Any, b: Any, table: Table, w: Work) -> bool:
+    """Prepare the start with T unknown: candidates of any T, T and basis of the programme; False if there is none.
 
     The energy of a fixed basis is smooth in T, that of the programme jumps where the basis changes: Newton steps, kept
     within a bracket that every trial narrows.
     """
+    w.count[CHANGES], w.count[EXTRA] = 0, NONE
+    for j in range(gas.size):
+        w.std[GIBBS, j] = 0.0
+    again = w.count[REUSES] >= 0 and same_candidates(b, w.std[GIBBS], w)
+    if not again:
+        select_candidates(A, gas, b, w.std[GIBBS], w)
+    again &= w.count[REUSES] < MOST_REUSES
+    w.count[REUSES] = w.count[REUSES] + 1 if again else 0
     low, high = w.value[COLD], w.value[WARM]
     if not again:
         w.value[T] = GUESS
@@ -46,6 +62,7 @@ def start_temperature(again: bool, A: Any, b: Any, gas: Any, table: Table, w: Wo
         potentials(table, gas, w)
         kept = again and basis_usable(w) and optimal_basis_again(b, w.std[GIBBS], w)
         if not kept and not optimal_basis(A, b, w.std[GIBBS], 0.0, w):
+            w.count[REUSES] = -1
             return False
         again = True
         form_energies(w)
@@ -61,7 +78,9 @@ def start_temperature(again: bool, A: Any, b: Any, gas: Any, table: Table, w: Wo
             new = np.sqrt(low * high)
         w.value[T] = new
         if abs(new / old - 1.0) < CLOSE or high / low < 1.0 + NARROW:
-            return True
+            break
+    follow(table, gas, w)
+    start_phases(w)
     return True
 
 

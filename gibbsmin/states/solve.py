@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike
 
 from gibbsmin.constants import STANDARD_PRESSURE, R
 from gibbsmin.errors import FeedError, InputError
+from gibbsmin.solver.layout import new_work
 from gibbsmin.solver.minimize import minimize_many
 from gibbsmin.solver.outcome import new_outcome
 from gibbsmin.states.batch import Batch
@@ -135,7 +136,8 @@ def equilibria(
     one = one * STANDARD_PRESSURE / R if pair.volume else one / STANDARD_PRESSURE
     if pair.second != "temperature":
         two = two / R
-    minimize_many(system.element_matrix, system.gas, b, pair.mode, pair.volume, one, two, system.table, outcome)
+    work = new_work(system.element_matrix)
+    minimize_many(system.element_matrix, system.gas, b, pair.mode, pair.volume, one, two, system.table, work, outcome)
     return Batch(system, outcome)
 
 
