@@ -51,7 +51,7 @@ from gibbsmin.thermo.table import Table
 STARTS: Final = (0.0, -4.0, 4.0, -12.0)
 """Added to the potentials of gases in the linear programme, one after the other until a start leads to the answer."""
 
-BRACKETS: Final = (1.0e-2, 1.0e-2, 1.0e-11)
+BRACKETS: Final = (1.0e-2, 1.0e-2, 1.0e-13)
 """Relative width of a bracket of T at which the joint iteration is tried, factor to the next, and last width."""
 
 BOTH: Final = 3

@@ -40,7 +40,7 @@ from gibbsmin.solver.layout import (
     Y,
 )
 from gibbsmin.solver.phase_set import NOTHING
-from gibbsmin.solver.status import AFFINITY_LIMIT, GAP_LIMIT, HELD_LIMIT, RESIDUAL_LIMIT, UNPROVED
+from gibbsmin.solver.status import AFFINITY_LIMIT, GAP_LIMIT, HELD_LIMIT, IN_GAP, RESIDUAL_LIMIT, UNPROVED
 from gibbsmin.thermo.table import Table, standard_heat_capacity, standard_state
 
 
@@ -177,4 +177,4 @@ def finish(
     out.gap[state], out.affinity[state] = optimality(A, gas, b, w.std[GIBBS], n, out.lam[state], w.of[U])
     proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
     if not (proved and out.affinity[state] <= AFFINITY_LIMIT and out.held[state] <= HELD_LIMIT):
-        out.status[state] = UNPROVED
+        out.status[state] = IN_GAP if w.count[MIXED] == 1 else UNPROVED

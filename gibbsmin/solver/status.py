@@ -11,6 +11,7 @@ UNSETTLED: Final = 3
 UNPROVED: Final = 4
 TOO_HOT: Final = 5
 TOO_COLD: Final = 6
+IN_GAP: Final = 7
 
 RESIDUAL_LIMIT: Final = 1.0e-10
 GAP_LIMIT: Final = 1.0e-8
@@ -35,6 +36,10 @@ MEANING: Final[dict[int, tuple[str, str]]] = {
     TOO_COLD: (
         "What is held asks for a temperature below all data.",
         "Give more heat or entropy, or check the sign of the heat and the temperatures of the feeds.",
+    ),
+    IN_GAP: (
+        "What is held falls into a gap: a solid or liquid reaches the end of its data, and nothing may take its place.",
+        "Allow the liquid or gas that replaces it, or hold other values.",
     ),
     UNPROVED: (
         "A composition was found, but its certificate does not hold.",

@@ -43,5 +43,6 @@ class Certificate:
         verdict = "certified" if self.ok else "NOT certified"
         return (
             f"{verdict}: elements closed to {self.element_residual:.0e} (limit {RESIDUAL_LIMIT:.0e}), duality gap "
-            f"{self.gap:.0e} ({GAP_LIMIT:.0e}), worst affinity {self.worst_affinity:.0e} ({AFFINITY_LIMIT:.0e})"
+            f"{self.gap:.0e} ({GAP_LIMIT:.0e}), worst affinity {self.worst_affinity:.0e} ({AFFINITY_LIMIT:.0e}), "
+            f"held to {self.held_residual:.0e} ({HELD_LIMIT:.0e})"
         )

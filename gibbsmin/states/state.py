@@ -15,6 +15,8 @@ from gibbsmin.states.system import GAS, Array, System
 if TYPE_CHECKING:
     import pandas as pd
 
+    from gibbsmin.thermo.record import Species
+
 TRACE = 1.0e-6
 """Share of all amounts above which the use of a species outside the range of its data is worth a warning."""
 
@@ -236,7 +238,24 @@ class State:
                     f"{record.name} is used at {self.temperature:.0f} K, outside the {low:.0f} to {high:.0f} K of its "
                     "data: its heat capacity is taken as constant beyond."
                 )
+        for j in np.flatnonzero(~self.system.gas & (self.ln_activity_array > 0.0) & (self.amounts_array == 0.0)):
+            record = self.system.records[j]
+            low, high = record.usable
+            if not low <= self.temperature <= high and not self._follower(record):
+                found.append(
+                    f"{record.name} would be there if its data reached so far; they may be used from {low:.0f} to "
+                    f"{high:.0f} K only. Where energy or entropy is held, another temperature may then meet it as well."
+                )
         return found
+
+    def _follower(self, record: Species) -> bool:
+        """Tell whether another condensed species of the same composition may be used at this temperature."""
+        return any(
+            other.condensed
+            and other.elements == record.elements
+            and other.usable[0] <= self.temperature <= other.usable[1]
+            for other in self.system.records
+        )
 
     def __repr__(self) -> str:
         verdict = "certified" if self.certificate.ok else "not certified"
