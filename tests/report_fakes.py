@@ -7,6 +7,8 @@ from typing import Any
 
 import numpy as np
 
+from gibbsmin.practice.audit import Audit, audit
+from gibbsmin.results.account import Account
 from gibbsmin.thermo.database import load
 
 SPECIES = ["H2", "H2O", "CO", "CO2", "CH4", "N2", "C2H4", "C(s):graphite", "H2O(l)"]
@@ -32,6 +34,7 @@ class FakeState:
     affinities_array: dict[str, float]
     mean_molar_mass: float = 0.01405
     density: float = 3.55
+    mass: float = 140.6
     warnings: list[str] = field(default_factory=list)
 
 
@@ -44,6 +47,7 @@ class FakeBatch:
         self.pressure = np.full(count, 24e5)
         self.volume = np.full(count, 39.6)
         self.enthalpy = np.full(count, -1.2e7)
+        self.internal_energy = self.enthalpy - self.pressure * self.volume
         self.entropy = np.full(count, 2.1e4)
         self.gibbs_energy = np.full(count, -3.6e7)
         potentials = load().get("C(s):graphite").gibbs_energy(1143.15) / (8.314462618 * 1143.15)
@@ -51,6 +55,7 @@ class FakeBatch:
         self.element_residual = np.full(count, 3e-16)
         self.gap = np.full(count, 2e-15)
         self.worst_affinity = np.zeros(count)
+        self.held_residual = np.zeros(count)
         self.certified = np.ones(count, bool)
         self.reason = [""] * count
         if count > 1:
@@ -90,6 +95,9 @@ class FakeResult:
         self.batch = FakeBatch(count)
         self.display_units = {"temperature": "degC", "pressure": "bar"}
         self.feeds = {"gas": FakeFeed({"CH4": 27.0}), "steam": FakeFeed({"H2O": 81.0})}
+        self.held = {"temperature": self.batch.temperature.copy(), "pressure": self.batch.pressure.copy()}
+        self.account = Account(feed_enthalpy=self.batch.enthalpy - 6.8e6)
+        self.properties: dict[str, Any] = {}
         varied = count > 1
         self.inputs = {"held.temperature": self.batch.temperature - 273.15} if varied else {}
         self.input_units = {"held.temperature": "degC"} if varied else {}
@@ -103,9 +111,32 @@ class FakeResult:
         """State of the batch."""
         return self.batch.state(index)
 
+    @property
+    def heats(self) -> Any:
+        """A duty of 6.8 MW in every state."""
+        return np.full(len(self.batch), 6.8e6)
+
+    @property
+    def works(self) -> Any:
+        """No shaft."""
+        return np.zeros(len(self.batch))
+
+    @property
+    def audits(self) -> list[Audit | None]:
+        """The account of each state: some 1050 W/K generated in the first, more in the rest."""
+        return [audit(2.0e4, 2.7e4 + 100.0 * k, 6.8e6, 1143.15 + k, flow=True) for k in range(len(self.batch))]
+
     def heat(self, index: int) -> float | None:
-        """Return a duty of 6.8 MW."""
-        return 6.8e6
+        """Return the duty."""
+        return float(self.heats[index])
+
+    def work(self, index: int) -> float | None:
+        """Return the work."""
+        return float(self.works[index])
+
+    def audit(self, index: int) -> Audit | None:
+        """Return the account, unless the state is not certified."""
+        return self.audits[index] if self.batch.certified[index] else None
 
     def to_dict(self) -> dict[str, Any]:
         """Return the least that result.json needs."""

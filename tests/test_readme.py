@@ -26,10 +26,25 @@ def test_the_case_shown_is_the_case_shipped() -> None:
 
 def test_the_sweep_shown_works(tmp_path: Path) -> None:
     case = tmp_path / "swept.toml"
-    case.write_text("\n".join(blocks("toml")), encoding="utf-8")
+    case.write_text("\n".join(blocks("toml")[:2]), encoding="utf-8")
     found = CliRunner().invoke(app, ["check", str(case)], catch_exceptions=False)
     assert found.exit_code == 0, found.stderr
     assert "11 states" in found.stdout
+
+
+def test_the_held_heat_shown_works(tmp_path: Path) -> None:
+    case = tmp_path / "heated.toml"
+    before = blocks("toml")[0].split("[held]")[0]
+    case.write_text(before + blocks("toml")[2], encoding="utf-8")
+    found = CliRunner().invoke(app, ["run", str(case), "--out", str(tmp_path / "out")], catch_exceptions=False)
+    assert found.exit_code == 0, found.stderr
+    assert found.stdout.splitlines()[2].startswith("settles at ")
+
+
+def test_every_case_named_is_shipped() -> None:
+    named = set(re.findall(r"`(\w+)`", TEXT.split("`cases/` has one of each:")[1].split(".")[0]))
+    assert named == {"combustor_preheat", "vessel_explosion", "autothermal_reformer", "quench", "expansion"}
+    assert named <= {path.stem for path in (ROOT / "cases").glob("*.toml")}
 
 
 def test_the_answer_shown_is_the_answer(tmp_path: Path) -> None:
@@ -49,8 +64,9 @@ def test_the_python_shown_runs() -> None:
     exec(compile(blocks("python")[0], "README.md", "exec"), names)
     state = names["state"]
     assert state.certificate.ok  # type: ignore[attr-defined]
+    assert 1900.0 < names["flame"].temperature < 2200.0  # type: ignore[attr-defined]
 
 
-@pytest.mark.parametrize("command", ["run", "check", "species", "begin", "schema"])
+@pytest.mark.parametrize("command", ["run", "check", "species", "reaction", "begin", "schema"])
 def test_every_command_is_named(command: str) -> None:
     assert f"`gibbsmin {command}" in TEXT

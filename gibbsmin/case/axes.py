@@ -4,28 +4,52 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Annotated, Any, Final, Literal
+from typing import Annotated, Any, Final, Literal, NamedTuple
 
 from pydantic import Field, field_validator, model_validator
 
 from gibbsmin.case.feed_schema import SIZES, Feed
-from gibbsmin.case.fields import LARGEST, LARGEST_RATIO, RuleError, Table, Text
+from gibbsmin.case.fields import LARGEST, LARGEST_RATIO, OF_FEEDS, RuleError, Table, Text
+from gibbsmin.case.held_schema import Held
+from gibbsmin.case.sizes import read_basis
 from gibbsmin.errors import InputError, nearest
 from gibbsmin.units import from_si, one_of, unit_of
 
 MAX_STATES: Final = 100_000
 """Largest number of states that one case may ask for."""
 
-HELD_UNITS: Final = {"temperature": ("K",), "pressure": ("Pa",)}
-SIZE_UNITS: Final = {"flow": ("mol/s", "kg/s"), "amount": ("mol", "kg")}
+
+class Limits(NamedTuple):
+    """What an input may be: SI ``units``, ``lowest`` (itself allowed unless ``above``), ``highest``."""
+
+    units: tuple[str, ...]
+    lowest: float = 0.0
+    above: bool = False
+    highest: float = LARGEST
+
+
+_LIMITS: Final = {
+    "temperature": Limits(("K",), above=True),
+    "pressure": Limits(("Pa",), above=True),
+    "volume": Limits(("m3",), above=True),
+    "isentropic_efficiency": Limits(("1",), above=True, highest=1.0),
+    "flow": Limits(("mol/s", "kg/s")),
+    "amount": Limits(("mol", "kg")),
+    "steam_to_carbon": Limits(("1",), highest=LARGEST_RATIO),
+    "air_ratio": Limits(("1",), highest=LARGEST_RATIO),
+    "excess_air": Limits(("1",), lowest=-100.0, highest=LARGEST_RATIO),
+}
 
 
 class Axis(Table):
     """One input that is varied: from, to and points, or a list of values."""
 
     vary: Text = Field(
-        description="What is varied: held.temperature, held.pressure, or the size of a feed as feeds.NAME.KEY.",
-        examples=["held.temperature", "feeds.steam.steam_to_carbon"],
+        description=(
+            "What is varied: a number that [held] holds, as held.KEY, or the size, temperature or pressure of a feed, "
+            "as feeds.NAME.KEY."
+        ),
+        examples=["held.temperature", "feeds.steam.steam_to_carbon", "feeds.air.temperature"],
     )
     start: float | str | None = Field(
         default=None, alias="from", description="First value.", examples=["600 degC", 2.0]
@@ -84,7 +108,7 @@ class AxisValues:
     typed_unit: str
 
 
-def axis_values(axis: Axis, feeds: Mapping[str, Feed]) -> AxisValues:
+def axis_values(axis: Axis, feeds: Mapping[str, Feed], held: Held) -> AxisValues:
     """Work out the values of one varied input.
 
     Parameters
@@ -93,6 +117,8 @@ def axis_values(axis: Axis, feeds: Mapping[str, Feed]) -> AxisValues:
         The ``[[sweep]]`` table.
     feeds : mapping of str to Feed
         The feeds of the case, for what can be varied.
+    held : Held
+        What is held, for the same.
 
     Returns
     -------
@@ -103,13 +129,13 @@ def axis_values(axis: Axis, feeds: Mapping[str, Feed]) -> AxisValues:
     RuleError
         There is no such input, or a value does not suit it.
     """
-    units = _units(axis.vary, feeds)
+    limits = _limits(axis.vary, feeds, held)
     if axis.values is None:
-        found = [_read(axis.start, units, axis.vary, "from"), _read(axis.to, units, axis.vary, "to")]
+        found = [_read(axis.start, limits, "from"), _read(axis.to, limits, "to")]
         values = _between(axis, found[0][0], found[1][0])
         first = axis.start
     else:
-        found = [_read(value, units, axis.vary, "values", k) for k, value in enumerate(axis.values)]
+        found = [_read(value, limits, "values", k) for k, value in enumerate(axis.values)]
         values = [value for value, _ in found]
         first = axis.values[0]
     unit = found[0][1]
@@ -122,33 +148,46 @@ def axis_values(axis: Axis, feeds: Mapping[str, Feed]) -> AxisValues:
     return AxisValues(axis.vary, values, unit, typed, typed_unit)
 
 
-def _units(vary: str, feeds: Mapping[str, Feed]) -> tuple[str, ...]:
-    """SI units that values of ``vary`` may have; complain if there is nothing of that name to vary."""
-    table, _, key = vary.rpartition(".")
-    if table == "held" and key in HELD_UNITS:
-        return HELD_UNITS[key]
-    feed = feeds.get(table.removeprefix("feeds.")) if table.startswith("feeds.") else None
-    if feed is not None and key in SIZES and feed.sized_by == key:
-        return SIZE_UNITS.get(key, ("1",))
-    known = [f"held.{name}" for name in HELD_UNITS]
-    known += [f"feeds.{name}.{one.sized_by}" for name, one in feeds.items() if one.amounts is None]
-    raise RuleError(f"{vary!r} cannot be varied{nearest(vary, known)} Known here: {', '.join(known)}", "vary")
+def _limits(vary: str, feeds: Mapping[str, Feed], held: Held) -> Limits:
+    """Say what values of ``vary`` may be; complain if there is nothing of that name to vary."""
+    known = _known(feeds, held)
+    if vary not in known:
+        raise RuleError(f"{vary!r} cannot be varied{nearest(vary, known)} Known here: {', '.join(known)}", "vary")
+    key = vary.rpartition(".")[2]
+    if key == "heat":
+        return Limits(("W" if _are_flows(feeds) else "J",), lowest=-LARGEST)
+    return _LIMITS[key]
 
 
-def _read(value: float | str | None, units: tuple[str, ...], vary: str, *key: str | int) -> tuple[float, str]:
+def _known(feeds: Mapping[str, Feed], held: Held) -> list[str]:
+    """List what can be varied: numbers that the case gives, so that it also stands without its sweep."""
+    numbers = ("temperature", "heat", "isentropic_efficiency", "pressure", "volume")
+    known = [f"held.{key}" for key in numbers if getattr(held, key) not in (None, OF_FEEDS)]
+    for name, feed in feeds.items():
+        known += [f"feeds.{name}.{key}" for key in SIZES if feed.sized_by == key]
+        known += [f"feeds.{name}.{key}" for key in ("temperature", "pressure") if getattr(feed, key) is not None]
+    return known
+
+
+def _are_flows(feeds: Mapping[str, Feed]) -> bool:
+    try:
+        return read_basis(feeds) == "mol/s"
+    except RuleError:  # told where the feeds are sized
+        return True
+
+
+def _read(value: float | str | None, limits: Limits, *key: str | int) -> tuple[float, str]:
     """Read one value of an axis and check that the input takes it."""
     try:
-        found, unit = one_of(0.0 if value is None else value, units, "value")
+        found, unit = one_of(0.0 if value is None else value, limits.units, "value")
     except InputError as error:
         raise RuleError(str(error).removeprefix("value: "), *key) from None
-    held = units in HELD_UNITS.values()
-    lowest = -100.0 if vary.endswith(".excess_air") else 0.0
-    if found < lowest or (held and found == 0.0):
-        least = f"{'more than' if held else 'at least'} {lowest:g}"
-        raise RuleError(f"{value} is too low; expected {least}{'' if unit == '1' else ' ' + unit}", *key)
-    highest = LARGEST_RATIO if unit == "1" else LARGEST
-    if found > highest:
-        raise RuleError(f"{value} is too high; expected at most {highest:g}{'' if unit == '1' else ' ' + unit}", *key)
+    shown = "" if unit == "1" else f" {unit}"
+    if found < limits.lowest or (limits.above and found == limits.lowest):
+        least = f"{'more than' if limits.above else 'at least'} {limits.lowest:g}"
+        raise RuleError(f"{value} is too low; expected {least}{shown}", *key)
+    if found > limits.highest:
+        raise RuleError(f"{value} is too high; expected at most {limits.highest:g}{shown}", *key)
     return found, unit
 
 

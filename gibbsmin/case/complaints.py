@@ -10,8 +10,9 @@ from pydantic import ValidationError
 from gibbsmin.case.axes import Axis
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError, Table
+from gibbsmin.case.held_schema import Held, Surroundings
 from gibbsmin.case.lines import Key
-from gibbsmin.case.schema import Case, Held, Show, SpeciesTable
+from gibbsmin.case.schema import Case, Show, SpeciesTable
 from gibbsmin.case.source import Source, dotted
 from gibbsmin.errors import CaseError, nearest
 
@@ -19,6 +20,7 @@ _TABLES: Final[dict[str, type[Table]]] = {
     "species": SpeciesTable,
     "feeds": Feed,
     "held": Held,
+    "surroundings": Surroundings,
     "sweep": Axis,
     "show": Show,
 }
@@ -107,7 +109,9 @@ def _unknown(key: Key) -> str:
         known = list(Case.model_fields)
         return f"there is no such table or key in this version{_choices(word, known)}"
     if key[0] == "held":
-        return f"cannot be held in this version{_choices(word, keys_of(Held))}"
+        energy = {"enthalpy": "heat", "internal_energy": "heat"}
+        hint = f"; its place is taken by {energy[word]}, counted from the feeds" if word in energy else ""
+        return f"cannot be held in a case{hint}{_choices(word, keys_of(Held))}"
     known = keys_of(_TABLES[str(key[0])])
     return f"there is no key of this name{_choices(word, known)}"
 

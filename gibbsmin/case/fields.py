@@ -16,6 +16,9 @@ LARGEST: Final = 1e25
 LARGEST_RATIO: Final = 1e6
 """Largest ratio of feeds that a case may ask for."""
 
+OF_FEEDS: Final = "of feeds"
+"""Stands for a held volume that the gas of the feeds fills."""
+
 
 class Table(BaseModel):
     """A table of the case file: no unknown keys, no silent conversions, not changed once read."""
@@ -32,19 +35,24 @@ class RuleError(InputError):
         super().__init__(message)
 
 
-def _measured(*units: str, above_zero: bool = False) -> BeforeValidator:
-    """Check that a value reads as a quantity in one of ``units``, not negative, and leave it as typed."""
+def _measured(*units: str, above_zero: bool = False, signed: bool = False, word: str = "") -> BeforeValidator:
+    """Check that a value reads as a quantity in one of ``units`` and leave it as typed.
+
+    It must not be negative unless ``signed``; ``word`` may stand in its place.
+    """
 
     def check(value: Any, info: ValidationInfo) -> Any:
         what = info.field_name or "value"
+        if word and value == word:
+            return value
         try:
             found, unit = one_of(value, units, what)
         except InputError as error:
             raise ValueError(str(error).removeprefix(f"{what}: ")) from None
-        if found < 0.0 or (above_zero and found == 0.0):
+        if not signed and (found < 0.0 or (above_zero and found == 0.0)):
             raise ValueError(f"{value} is too low; expected {'more than' if above_zero else 'at least'} 0 {unit}")
-        if found > LARGEST:
-            raise ValueError(f"{value} is too high; expected at most {LARGEST:g} {unit}")
+        if abs(found) > LARGEST:
+            raise ValueError(f"{value} is too {'high' if found > 0.0 else 'low'}; expected at most {LARGEST:g} {unit}")
         return value
 
     return BeforeValidator(check)
@@ -62,6 +70,8 @@ def _plain_number(value: Any, info: ValidationInfo) -> float:
 Text = Annotated[str, StringConstraints(min_length=1, strip_whitespace=True)]
 Temperature = Annotated[float | str, _measured("K", above_zero=True)]
 Pressure = Annotated[float | str, _measured("Pa", above_zero=True)]
+Volume = Annotated[float | str, _measured("m3", above_zero=True, word=OF_FEEDS)]
+Heat = Annotated[float | str, _measured("W", "J", signed=True)]
 Flow = Annotated[float | str, _measured("mol/s", "kg/s")]
 Amount = Annotated[float | str, _measured("mol", "kg")]
 AmountOrFlow = Annotated[float | str, _measured("mol", "kg", "mol/s", "kg/s")]

@@ -74,11 +74,9 @@ class Recipe:
         return known + sum(n * ATOMIC_WEIGHT[element] for element, n in self.atoms.items())
 
     @property
-    def enthalpy(self) -> float | None:
-        """Enthalpy of one unit at the temperature of the feed, [J]; None where it is not known."""
-        if self.temperature is None or self.atoms:
-            return None
-        return sum(n * float(record.enthalpy(self.temperature)) for record, n in self.species.items())
+    def gas(self) -> float:
+        """Amount of gas in one unit, [mol]."""
+        return sum(n for record, n in self.species.items() if not record.condensed)
 
     def of_composition(self, **elements: float) -> float:
         """Amount in one unit of species that are made of just these atoms, [mol]."""

@@ -9,7 +9,8 @@ from pydantic import Field, model_validator
 
 from gibbsmin.case.axes import MAX_STATES, Axis, axis_values
 from gibbsmin.case.feed_schema import Feed
-from gibbsmin.case.fields import Number, Pressure, RuleError, Table, Temperature, Text
+from gibbsmin.case.fields import Number, RuleError, Table, Text
+from gibbsmin.case.held_schema import Held, Surroundings
 
 FROM_FEEDS: Final = "from feeds"
 MAX_AXES: Final = 2
@@ -58,17 +59,6 @@ class SpeciesTable(Table):
         return self
 
 
-class Held(Table):
-    """The two conditions that stay fixed while the mixture settles."""
-
-    temperature: Temperature = Field(
-        description="Temperature of the settled mixture. A bare number is K.", examples=["870 degC", 1143.15]
-    )
-    pressure: Pressure = Field(
-        description="Pressure of the settled mixture, absolute. A bare number is Pa.", examples=["24 bar", 101325.0]
-    )
-
-
 class Show(Table):
     """What the tables show; the files always hold everything."""
 
@@ -101,7 +91,12 @@ class Case(Table):
     )
     held: Held = Field(
         description="The table [held]: the two conditions that stay fixed while the mixture settles.",
-        examples=[{"temperature": "870 degC", "pressure": "24 bar"}],
+        examples=[{"temperature": "870 degC", "pressure": "24 bar"}, {"adiabatic": True, "pressure": "1 bar"}],
+    )
+    surroundings: Surroundings = Field(
+        default=Surroundings(),
+        description="The table [surroundings]: the place around, for the second-law account.",
+        examples=[{"temperature": "25 degC"}],
     )
     sweep: list[Axis] = Field(
         default=[],
@@ -128,7 +123,7 @@ class Case(Table):
             if axis.vary in [earlier.vary for earlier in self.sweep[:number]]:
                 raise RuleError(f"{axis.vary} is varied twice", "sweep", number, "vary")
             try:
-                axis_values(axis, self.feeds)
+                axis_values(axis, self.feeds, self.held)
             except RuleError as error:
                 raise RuleError(error.message, "sweep", number, *error.key) from None
         states = 1

@@ -22,7 +22,11 @@ def shown_units(case: Case, basis: str) -> dict[str, str]:
         ``temperature``, ``pressure`` and ``amount``.
     """
     units = {"temperature": "K", "pressure": "Pa", "amount": basis}
-    units |= {key: unit for key in ("temperature", "pressure") if (unit := unit_of(getattr(case.held, key)))}
+    for key in ("temperature", "pressure"):
+        typed_values = [getattr(case.held, key), *(getattr(feed, key) for feed in case.feeds.values())]
+        units[key] = next(
+            (unit for value in typed_values if value is not None and (unit := unit_of(value))), units[key]
+        )
     sizes = [feed.flow if feed.flow is not None else feed.amount for feed in case.feeds.values()]
     typed = [unit_of(size) for size in sizes if size is not None]
     molar = [unit for unit in typed if "mol" in unit]

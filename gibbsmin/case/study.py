@@ -12,7 +12,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.case.axes import AxisValues, axis_values
-from gibbsmin.case.fields import RuleError, in_si
+from gibbsmin.case.conditions import Conditions, number, read_conditions
+from gibbsmin.case.described import describe
+from gibbsmin.case.feed_states import FeedStates
+from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import Recipe, read_recipe
 from gibbsmin.case.schema import Case
 from gibbsmin.case.selection import choose_system, element_row, finder
@@ -21,8 +24,8 @@ from gibbsmin.case.sizes import feed_units, read_basis
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge import judge
 from gibbsmin.results.result import FeedAmounts, Result
-from gibbsmin.states.solve import COLDEST, HOTTEST
 from gibbsmin.states.system import System
+from gibbsmin.studies.expansion import expansion
 from gibbsmin.studies.labelled import Axis
 from gibbsmin.studies.sweep import Progress, grid, solve_in_chunks
 from gibbsmin.thermo.record import Species
@@ -87,24 +90,15 @@ class Study:
                 recipes.append(read_recipe(name, feed, find))
             except RuleError as error:
                 raise RuleError(error.message, "feeds", name, *error.key) from None
-        axes = tuple(axis_values(axis, case.feeds) for axis in case.sweep)
+        axes = tuple(axis_values(axis, case.feeds, case.held) for axis in case.sweep)
         system = choose_system(case.species, recipes, own)
         try:
             study = cls(case, system, tuple(recipes), axes, read_basis(case.feeds), path, sha256)
             study.element_rows, study.units  # noqa: B018 - made here so that what is wrong shows before anything runs
         except RuleError as error:
             raise RuleError(error.message, "feeds", *error.key) from None
-        study._check_temperature()
+        study.conditions  # noqa: B018 - likewise
         return study
-
-    def _check_temperature(self) -> None:
-        """Refuse held temperatures beyond all data."""
-        T = self.held("temperature", "K")
-        beyond = T[(T < COLDEST) | (T > HOTTEST)]
-        if beyond.size:
-            varied = [number for number, axis in enumerate(self.axes) if axis.vary == "held.temperature"]
-            key = ("sweep", varied[0]) if varied else ("held", "temperature")
-            raise RuleError(f"{beyond[0]:.6g} K is beyond all data; expected {COLDEST:g} to {HOTTEST:g} K", *key)
 
     @cached_property
     def columns(self) -> dict[str, Floats]:
@@ -117,15 +111,19 @@ class Study:
         return int(np.prod([len(axis.values) for axis in self.axes], dtype=int))
 
     @cached_property
+    def feed_states(self) -> FeedStates:
+        """The feeds in every state."""
+        return FeedStates(self.recipes, self.axes, self.columns, self.states)
+
+    @property
     def units(self) -> Floats:
         """Units of each feed in every state, (states, F), [mol, kg, or either per second]."""
-        sizes: dict[str, Floats | float] = {recipe.name: recipe.size for recipe in self.recipes}
-        for axis in self.axes:
-            name = axis.vary.removeprefix("feeds.").rpartition(".")[0]
-            recipe = next((one for one in self.recipes if one.name == name), None)
-            if recipe is not None and axis.vary.startswith("feeds."):
-                sizes[name] = self.columns[axis.vary] * recipe.units(1.0, axis.unit)
-        return np.broadcast_to(feed_units(self.recipes, sizes), (self.states, len(self.recipes)))
+        return self.feed_states.units
+
+    @cached_property
+    def conditions(self) -> Conditions:
+        """What is held in every state, and what the feeds bring."""
+        return read_conditions(self.case, self.feed_states, self.basis)
 
     @cached_property
     def element_rows(self) -> Floats:
@@ -153,18 +151,9 @@ class Study:
         """Units of each feed as the tables have them, without the sweep, (F,)."""
         return np.asarray(feed_units(self.recipes, {recipe.name: recipe.size for recipe in self.recipes})[0])
 
-    @property
-    def feed_enthalpy(self) -> Floats | None:
-        """Enthalpy of all feeds in every state, (states,), [J or W]; None where one is not known."""
-        known = [recipe.enthalpy for recipe in self.recipes]
-        if any(enthalpy is None for enthalpy in known):
-            return None
-        return np.asarray(self.units @ np.array(known, float))
-
     def held(self, name: str, unit: str) -> Floats:
-        """Held temperature or pressure in every state, (states,), in ``unit``."""
-        value = in_si(getattr(self.case.held, name), unit)
-        return np.asarray(self.columns.get(f"held.{name}", np.full(self.states, value)))
+        """Value of a key of ``[held]`` in every state, (states,), in ``unit``."""
+        return number(self.case.held, name, self.feed_states, unit)
 
     def run(self, out: str | Path | None = None, progress: Progress | None = None) -> Result:
         """Solve all states.
@@ -194,13 +183,16 @@ class Study:
 
     def _solve(self, progress: Progress | None) -> Result:
         """Solve all states."""
-        batch = solve_in_chunks(
-            self.system,
-            self.units @ self.element_rows,
-            self.held("temperature", "K"),
-            self.held("pressure", "Pa"),
-            progress,
-        )
+        conditions, elements = self.conditions, self.units @ self.element_rows
+        held = conditions.held
+        if conditions.efficiency is None:
+            batch = solve_in_chunks(self.system, elements, held, progress)
+        else:
+            inlet = conditions.account.feed_enthalpy
+            assert inlet is not None, "the feeds were checked"
+            batch = expansion(
+                self.system, elements, held["entropy"], inlet, held["pressure"], conditions.efficiency, progress
+            )
         typed = grid([axis.typed_values for axis in self.axes])
         return Result(
             title=self.case.title,
@@ -215,51 +207,10 @@ class Study:
             batch=batch,
             display_units=shown_units(self.case, self.basis),
             feeds=self.feeds,
-            feed_enthalpy=self.feed_enthalpy,
+            held=held,
+            account=conditions.account,
         )
 
     def describe(self) -> dict[str, Any]:
-        """Say what the case asks for, without solving it.
-
-        Returns
-        -------
-        dict
-            ``title``, ``file``, ``basis``; ``elements`` (name to amount), ``species`` (``gas``, ``condensed``: names;
-            ``exclude``, ``inert``), ``phases`` (names), ``feeds`` (a dict each: ``name``, ``amounts``, ``atoms``,
-            ``element_amounts``, ``mass``, ``temperature``, ``pressure``), ``held`` (as typed), ``sweep`` (a dict each:
-            ``vary``, ``first``, ``last``, ``unit``, ``points``), ``states``, ``units`` (as typed). SI throughout,
-            save for what is typed.
-        """
-        gas = list(map(bool, self.system.gas))
-        names = list(self.system.species)
-        total: dict[str, float] = {}
-        for feed in self.feeds.values():
-            for element, n in feed.element_amounts.items():
-                total[element] = total.get(element, 0.0) + n
-        return {
-            "title": self.case.title,
-            "file": self.path,
-            "basis": self.basis,
-            "elements": total,
-            "species": {
-                "gas": [name for name, flag in zip(names, gas, strict=True) if flag],
-                "condensed": [name for name, flag in zip(names, gas, strict=True) if not flag],
-                "exclude": list(self.case.species.exclude),
-                "inert": list(self.case.species.inert),
-            },
-            "phases": list(self.system.phases),
-            "feeds": [feed.to_dict() for feed in self.feeds.values()],
-            "held": self.case.held.model_dump(),
-            "sweep": [
-                {
-                    "vary": axis.vary,
-                    "first": axis.typed_values[0],
-                    "last": axis.typed_values[-1],
-                    "unit": axis.typed_unit,
-                    "points": len(axis.values),
-                }
-                for axis in self.axes
-            ],
-            "states": self.states,
-            "units": shown_units(self.case, self.basis),
-        }
+        """Say what the case asks for, without solving it; see `gibbsmin.case.described.describe`."""
+        return describe(self)

@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from math import isfinite
 from typing import TYPE_CHECKING, Final, NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.report.numbers import MISSING, figures, plain
-from gibbsmin.report.words import WIDTH
+from gibbsmin.report.words import WIDTH, shortened
 from gibbsmin.results.fractions import gas_fractions
 from gibbsmin.units import from_si
 
@@ -35,8 +36,17 @@ class Column(NamedTuple):
 
 
 def short(name: str) -> str:
-    """Last part of a dotted input."""
-    return name.rsplit(".", 1)[-1]
+    """Last part of a dotted input, with its feed where a feed shares the name of a result.
+
+    Examples
+    --------
+    >>> short("feeds.air.air_ratio"), short("feeds.air.temperature"), short("held.isentropic_efficiency")
+    ('air_ratio', 'air temperature', 'efficiency')
+    """
+    *table, key = name.split(".")
+    if key in ("temperature", "pressure") and table[:1] == ["feeds"]:
+        return f"{shortened(table[-1], 10)} {key}"
+    return key.removeprefix("isentropic_")
 
 
 def unit_word(unit: str) -> str:
@@ -66,21 +76,36 @@ def drawn(columns: Sequence[Column]) -> list[str]:
 def input_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
     """Show the varied inputs in the units that were typed."""
     return [
-        Column(short(name)[:16], unit_word(result.input_units.get(name, "")), [plain(float(values[i])) for i in shown])
+        Column(short(name), unit_word(result.input_units.get(name, "")), [plain(float(values[i])) for i in shown])
         for name, values in result.inputs.items()
     ]
 
 
-def heat_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
-    """Heat to be supplied, where it is known."""
-    heats = [result.heat(int(i)) for i in shown]
+def settled_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
+    """Temperature and pressure where they are results: temperature to the degree, pressure to four figures."""
+    columns = []
+    for key, si in (("temperature", "K"), ("pressure", "Pa")):
+        if key not in result.held:
+            unit = result.display_units.get(key, si)
+            values = [from_si(float(getattr(result.batch, key)[i]), unit) for i in shown]
+            write = (lambda value: f"{value:.0f}") if key == "temperature" else figures
+            columns.append(Column(key, unit, [write(value) if isfinite(value) else MISSING for value in values]))
+    return columns
+
+
+def energy_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
+    """Work where something expands, else heat, where it is known and not held."""
+    if result.account.given_heat is not None:
+        return []
+    head, ask = ("work", result.work) if result.account.shaft else ("heat", result.heat)
+    heats = [ask(int(i)) for i in shown]
     known = [heat for heat in heats if heat is not None]
     if not known:
         return []
     watt = "W" if result.basis == "mol/s" else "J"
     largest = max(map(abs, known))
     scale, prefix = next(((s, p) for s, p in ((1e6, "M"), (1e3, "k")) if largest >= s), (1.0, ""))
-    return [Column("heat", prefix + watt, [MISSING if h is None else figures(h / scale, 3) for h in heats])]
+    return [Column(head, prefix + watt, [MISSING if h is None else figures(h / scale, 3) for h in heats])]
 
 
 def gas_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:

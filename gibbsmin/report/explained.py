@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from math import isfinite
 from typing import Any, Final
 
+from gibbsmin.report.held_words import held_words
 from gibbsmin.report.numbers import figures, plain
 from gibbsmin.report.table import heading
 from gibbsmin.report.words import labelled, shortened
@@ -12,6 +14,7 @@ from gibbsmin.units import from_si
 
 _NAMED: Final = 40
 _ROWS: Final = 12
+_PER_VOLUME: Final = ("per_normal_volume", "MJ/Nm3", 1e6)
 
 
 def explained(told: Mapping[str, Any]) -> list[str]:
@@ -32,11 +35,14 @@ def explained(told: Mapping[str, Any]) -> list[str]:
     lines = heading(told["title"])
     for feed in told["feeds"]:
         lines += _feed(feed, told["basis"], mass, units)
+        lines += [*_heating(told["heating_values"].get(feed["name"], {})), ""]
     lines.append(f"{'all feeds, by element':<32}{told['basis']:>16}")
     lines += [f"  {element:<30}{figures(n):>16}" for element, n in told["elements"].items()]
     lines.append("")
     lines += _species(told["species"])
-    lines += labelled("held", ", ".join(f"{name} {value}" for name, value in told["held"].items()))
+    lines += labelled("held", held_words(told["held"]))
+    if told["remark"]:
+        lines += labelled("feeds", told["remark"])
     for axis in told["sweep"]:
         span = f"{plain(axis['first'])} to {plain(axis['last'])} {axis['unit']}".removesuffix(" 1")
         lines += labelled("varied", f"{axis['vary']}, {axis['points']} values from {span}")
@@ -59,7 +65,20 @@ def _feed(feed: Mapping[str, Any], basis: str, mass: str, units: Mapping[str, st
     lines += [f"  {shortened(name, 30):<30}{figures(n):>16} {basis}" for name, n in shown[:_ROWS]]
     if len(shown) > _ROWS:
         lines.append(f"  {len(shown) - _ROWS} more")
-    return [*lines, ""]
+    return lines
+
+
+def _heating(values: Mapping[float, Mapping[str, tuple[float, float]]]) -> list[str]:
+    """Heating values of a feed, higher before lower, at each reference temperature."""
+    lines = []
+    for T, value in values.items():
+        told = []
+        for key, unit, scale in (("per_mole", "kJ/mol", 1e3), ("per_mass", "MJ/kg", 1e6), _PER_VOLUME):
+            higher, lower = value[key]
+            if isfinite(higher):
+                told.append(f"{figures(higher / scale)} / {figures(lower / scale)} {unit}")
+        lines += labelled("heating value", f"higher / lower at {T - 273.15:.0f} degC: {', '.join(told)}")
+    return lines
 
 
 def _species(species: Mapping[str, list[str]]) -> list[str]:

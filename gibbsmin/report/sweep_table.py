@@ -11,14 +11,16 @@ from numpy.typing import NDArray
 from gibbsmin.report.columns import (
     condensed_columns,
     drawn,
+    energy_columns,
     fitting,
     gas_columns,
-    heat_columns,
     input_columns,
+    settled_columns,
     short,
     unit_word,
 )
-from gibbsmin.report.numbers import plain
+from gibbsmin.report.held_words import held_words
+from gibbsmin.report.numbers import plain, prefixed
 from gibbsmin.report.onsets import Onset, onsets
 from gibbsmin.report.table import certificate, heading
 from gibbsmin.report.words import labelled
@@ -48,14 +50,15 @@ def sweep_table(result: Result) -> list[str]:
     """
     count = len(result.batch)
     shown = chosen([len(axis.values) for axis in result.axes])
-    inputs, heat = input_columns(result, shown), heat_columns(result, shown)
+    inputs = [*input_columns(result, shown), *settled_columns(result, shown)]
+    energy = energy_columns(result, shown)
     gas, condensed = gas_columns(result, shown), condensed_columns(result, shown)
-    lines = [*heading(result.title), *_held(result, bool(gas), bool(heat)), ""]
+    lines = [*heading(result.title), *_held(result, bool(gas), bool(energy)), ""]
     if len(condensed) <= _TOGETHER:
-        lines += drawn(fitting([*inputs, *heat], [*condensed, *gas]))
+        lines += drawn(fitting([*inputs, *energy], [*condensed, *gas]))
     else:
         if gas:
-            lines += [*drawn(fitting([*inputs, *heat], gas)), ""]
+            lines += [*drawn(fitting([*inputs, *energy], gas)), ""]
         columns = fitting(inputs, condensed)
         lines += ["solids and liquids", *drawn(columns)]
         hidden = [column.head for column in condensed if column not in columns]
@@ -64,7 +67,9 @@ def sweep_table(result: Result) -> list[str]:
     if len(shown) < count:
         lines.append(f"  {len(shown)} of {count} states; table.csv has them all")
     lines.append("")
-    return [*lines, *onset_lines(onsets(result), result.input_units), *labelled("certificate", _certificate(result))]
+    lines += onset_lines(onsets(result), result.input_units)
+    lines += lost_work_lines(result)
+    return [*lines, *labelled("certificate", _certificate(result))]
 
 
 def chosen(sizes: Sequence[int]) -> NDArray[np.intp]:
@@ -93,14 +98,27 @@ def chosen(sizes: Sequence[int]) -> NDArray[np.intp]:
 
 def _held(result: Result, gas: bool, heat: bool) -> list[str]:
     """Say what is varied, what stays the same in all states, and what the columns are."""
-    held = result.case.get("held", {})
-    same = [f"{key} {value}" for key, value in held.items() if f"held.{key}" not in result.inputs and value is not None]
+    same = held_words(result.case.get("held", {}), result.inputs)
     lines = labelled("varied", " and ".join(result.inputs))
     if same:
-        lines += labelled("held", ", ".join(same))
+        lines += labelled("held", same)
     told = [f"gas in mole %{', wet' if 'H2O' in result.system.species else ''}"] if gas else []
-    told += ["heat to be supplied (minus: given off)"] if heat else []
+    if heat:
+        told.append(f"{'work' if result.account.shaft else 'heat'} to be supplied (minus: given off)")
     return lines + (labelled("columns", "; ".join(told)) if told else [])
+
+
+def lost_work_lines(result: Result) -> list[str]:
+    """Say between what the lost work lies along the sweep."""
+    known = [(audit.lost_work, i) for i, audit in enumerate(result.audits) if audit is not None]
+    if not known:
+        return []
+    unit = "W" if result.basis == "mol/s" else "J"
+    least, most = min(known), max(known)
+    told = " and ".join(f"{prefixed(lost, unit)} (state {i + 1})" for lost, i in (least, most))
+    surroundings = result.account.surroundings_temperature - 273.15
+    lines = labelled("lost work", f"between {told}, with surroundings at {plain(surroundings)} degC")
+    return lines + (labelled("feeds", result.account.remark) if result.account.remark else [])
 
 
 def onset_lines(found: Sequence[Onset], units: Mapping[str, str]) -> list[str]:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from math import exp, isfinite
+from math import exp, isfinite, isinf
 from typing import Final
 
 from gibbsmin.practice.gas import dry
@@ -45,7 +45,7 @@ def state_table(
         None longer than 80 columns.
     """
     unit = units.get("amount", basis)
-    lines = [*heading(title), held_line(view, units), ""]
+    lines = [*heading(title), *held_lines(view, units), ""]
     if not view.certified:
         return [*lines, *labelled("NOT CERTIFIED", view.reason)]
     for phase in view.phases:
@@ -57,9 +57,7 @@ def state_table(
         lines += labelled(
             "density", f"{figures(view.density)} kg/m3, mean molar mass of the gas {_molar_mass(view)} g/mol"
         )
-    if view.heat is not None:
-        way = "to be supplied" if view.heat >= 0.0 else "to be removed"
-        lines += labelled("heat", f"{prefixed(abs(view.heat), 'W' if basis == 'mol/s' else 'J')} {way}")
+    lines += energy_lines(view, basis)
     if view.absent:
         lines += labelled("nearly formed", nearest_line(view.absent))
     return [*lines, *labelled("certificate", certificate_line(view))]
@@ -71,13 +69,51 @@ def heading(title: str) -> list[str]:
     return [text, "-" * len(text)]
 
 
-def held_line(view: View, units: Mapping[str, str]) -> str:
-    """Temperature and pressure in the units that were typed."""
+def held_lines(view: View, units: Mapping[str, str]) -> list[str]:
+    """Temperature and pressure in the units that were typed, and where they are results what was held instead."""
     temperature, pressure = units.get("temperature", "K"), units.get("pressure", "Pa")
-    return (
-        f"at {plain(from_si(view.temperature, temperature))} {temperature}"
-        f" and {from_si(view.pressure, pressure):.6g} {pressure} absolute"
-    )
+    T, P = from_si(view.temperature, temperature), from_si(view.pressure, pressure)
+    if not view.held:
+        return [f"at {plain(T)} {temperature} and {P:.6g} {pressure} absolute"]
+    settled = [f"settles at {T:.1f} {temperature} and {P:.6g} {pressure} absolute"] if view.certified else []
+    return [*settled, *labelled("held", view.held)]
+
+
+def energy_lines(view: View, basis: str) -> list[str]:
+    """Say what heat and work go in or out, what the mixture is like, and what the second law has to say."""
+    unit = "W" if basis == "mol/s" else "J"
+    lines = []
+    if view.shaft and view.work is not None:
+        way = "to be spent" if view.work >= 0.0 else "gained"
+        lines += labelled("work", f"{prefixed(abs(view.work), unit)} {way}, without heat")
+    elif view.given and view.heat is not None:
+        way = "supplied" if view.heat >= 0.0 else "removed"
+        lines += labelled("heat", f"{prefixed(abs(view.heat), unit)} {way}" if view.heat else "none: adiabatic")
+    elif view.heat is not None:
+        way = "to be supplied" if view.heat >= 0.0 else "to be removed"
+        lines += labelled("heat", f"{prefixed(abs(view.heat), unit)} {way}")
+    if view.properties:
+        lines += labelled("properties", properties_line(view))
+    if view.second_law:
+        lines += labelled("second law", view.second_law)
+    if view.remark:
+        lines += labelled("feeds", view.remark)
+    return lines
+
+
+def properties_line(view: View) -> str:
+    """Heat capacity, isentropic exponent and sound speed, with those of a frozen composition in brackets."""
+
+    def pair(name: str, scale: float, unit: str) -> str:
+        moving, frozen = (view.properties[key] * scale for key in (name, f"frozen_{name}"))
+        text = "infinite" if isinf(moving) else figures(moving)
+        return f"{text} ({figures(frozen)}){unit}"
+
+    told = [f"cp {pair('heat_capacity', 1e-3 / view.mass, ' kJ/kg/K')}"]
+    if isfinite(view.properties["frozen_sound_speed"]):
+        told.append(f"isentropic exponent {pair('isentropic_exponent', 1.0, '')}")
+        told.append(f"sound speed {pair('sound_speed', 1.0, ' m/s')}")
+    return f"{', '.join(told)}; in brackets: composition frozen"
 
 
 def nearest_line(absent: Mapping[str, float]) -> str:

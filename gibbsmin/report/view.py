@@ -7,7 +7,10 @@ from dataclasses import dataclass
 from math import nan
 from typing import TYPE_CHECKING
 
+from gibbsmin.report.held_words import held_words
+
 if TYPE_CHECKING:
+    from gibbsmin.practice.audit import Audit
     from gibbsmin.results.result import Result
 
 
@@ -30,8 +33,16 @@ class View:
         Phases that are present, the gas first, the rest by falling amount.
     absent : mapping of str to float
         Affinity of every absent phase in units of RT, the nearest to forming first.
-    heat : float or None
-        Heat to be supplied, [J or W]; None where a feed has no temperature.
+    heat, work : float or None
+        Heat and shaft work to be supplied, [J or W]; None where a feed has no temperature.
+    held : str
+        What was held, in words; empty where it is temperature and pressure.
+    shaft, given : bool
+        Whether energy is exchanged as work, and whether the heat was held.
+    second_law, remark : str
+        What the second-law account comes to, and what it rests on, in words.
+    properties : mapping of str to float
+        By name, SI; empty where there are too many states for it.
     """
 
     temperature: float
@@ -39,6 +50,14 @@ class View:
     mean_molar_mass: float
     density: float
     heat: float | None
+    work: float | None
+    held: str
+    shaft: bool
+    given: bool
+    second_law: str
+    remark: str
+    properties: Mapping[str, float]
+    mass: float
     phases: tuple[Phase, ...]
     absent: Mapping[str, float]
     element_residual: float
@@ -67,6 +86,7 @@ def view(result: Result, index: int) -> View:
     View
     """
     batch, system = result.batch, result.system
+    audit = result.audit(index)
     if not batch.certified[index]:
         return _without_answer(result, index)
     state = result.state(index)
@@ -89,6 +109,14 @@ def view(result: Result, index: int) -> View:
         mean_molar_mass=float(state.mean_molar_mass),
         density=float(state.density),
         heat=result.heat(index),
+        work=result.work(index),
+        held=_held(result),
+        shaft=result.account.shaft,
+        given=result.account.given_heat is not None,
+        second_law=_second_law(audit),
+        remark=result.account.remark,
+        properties={name: float(values[index]) for name, values in result.properties.items()},
+        mass=float(state.mass),
         phases=tuple(phases),
         absent=state.affinities_array,
         element_residual=float(batch.element_residual[index]),
@@ -99,15 +127,33 @@ def view(result: Result, index: int) -> View:
     )
 
 
+def _second_law(audit: Audit | None) -> str:
+    """Put the account in words; where it comes out against the law, a caution says so instead."""
+    return "" if audit is None or audit.entropy_generated < 0.0 else audit.sentence.replace("°C", "degC")
+
+
+def _held(result: Result) -> str:
+    """Say what was held where that is more than temperature and pressure."""
+    return "" if set(result.held) == {"temperature", "pressure"} else held_words(result.case.get("held", {}))
+
+
 def _without_answer(result: Result, index: int) -> View:
-    """Lay out a state that was not certified: its conditions and the reason, no numbers."""
+    """Lay out a state that was not certified: its held conditions and the reason, no other numbers."""
     batch = result.batch
     return View(
-        temperature=float(batch.temperature[index]),
-        pressure=float(batch.pressure[index]),
+        temperature=float(result.held["temperature"][index]) if "temperature" in result.held else nan,
+        pressure=float(result.held["pressure"][index]) if "pressure" in result.held else nan,
         mean_molar_mass=nan,
         density=nan,
         heat=None,
+        work=None,
+        held=_held(result),
+        shaft=False,
+        given=False,
+        second_law="",
+        remark="",
+        properties={},
+        mass=nan,
         phases=(),
         absent={},
         element_residual=nan,

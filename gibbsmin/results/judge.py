@@ -5,10 +5,13 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
+from numpy.typing import NDArray
 
+from gibbsmin.constants import STANDARD_TEMPERATURE
 from gibbsmin.practice.carbon import carbon_activity
 from gibbsmin.practice.cautions import Caution, Circumstances, cautions, flammable_feed
 from gibbsmin.practice.hazards import FLAMMABLE, SELF_IGNITING, TOXIC
+from gibbsmin.practice.vessels import vessel
 from gibbsmin.results.fractions import gas_fractions
 from gibbsmin.thermo.database import load
 from gibbsmin.thermo.record import Species
@@ -44,8 +47,11 @@ def judge(result: Result) -> list[list[Caution]]:
     solid = system.species.index(GRAPHITE) if GRAPHITE in system.species else None
     activity = None
     if graphite is not None:
-        activity = carbon_activity(potentials[:, system.elements.index("C")], graphite, batch.temperature)
-    feed = _mixed_feed(result)
+        T = np.where(certified, batch.temperature, STANDARD_TEMPERATURE)  # any will do where there is no answer
+        activity = carbon_activity(potentials[:, system.elements.index("C")], graphite, T)
+    mixed = feed = _mixed_feed(result)
+    is_gas = np.asarray(system.gas, bool)
+    start, keeps_heat = _start(result), "temperature" not in result.held
     found: list[list[Caution]] = []
     for i in range(len(gas_total)):
         if not certified[i]:
@@ -61,7 +67,14 @@ def judge(result: Result) -> list[list[Caution]]:
             solid_carbon=float(amounts[i, solid]) if solid is not None else 0.0,
             warnings=batch.state(i).warnings,
         )
-        found.append([*feed, *cautions(here)])
+        if start is not None:
+            condensed = bool(amounts[i, ~is_gas].any())
+            feed = [vessel(here.pressure, _known(start[i]), keeps_heat=keeps_heat, condensed=condensed), *mixed]
+        account = result.audit(i)
+        against = []
+        if account is not None and account.entropy_generated < 0.0:
+            against = [Caution("second law", account.sentence.replace("°C", "degC"), -account.lost_work)]
+        found.append([*against, *feed, *cautions(here)])
     return found
 
 
@@ -79,6 +92,19 @@ def _graphite(result: Result) -> Species | None:
         return None
     own = [record for record in result.system.records if record.name == GRAPHITE]
     return own[0] if own else load().get(GRAPHITE)
+
+
+def _start(result: Result) -> NDArray[np.float64] | None:
+    """Pressure of the feeds before they settle in a closed vessel, nan where not known; None where none is closed."""
+    volume = result.held.get("volume")
+    if volume is None:
+        return None
+    H, U = result.account.feed_enthalpy, result.account.feed_internal_energy
+    return np.full(len(volume), np.nan) if H is None or U is None else np.asarray((H - U) / volume)
+
+
+def _known(value: float) -> float | None:
+    return float(value) if value > 0.0 else None
 
 
 def _mixed_feed(result: Result) -> list[Caution]:

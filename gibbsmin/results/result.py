@@ -11,6 +11,9 @@ from typing import TYPE_CHECKING, Any, Final
 import numpy as np
 from numpy.typing import NDArray
 
+from gibbsmin.practice.audit import Audit
+from gibbsmin.results.account import Account
+from gibbsmin.results.properties import PROPERTIES, properties
 from gibbsmin.states.batch import Batch
 from gibbsmin.states.state import State
 from gibbsmin.states.system import GAS, System
@@ -31,8 +34,8 @@ FULL_STATES: Final = 1000
 NAMED_FRACTION: Final = 1e-12
 """Beyond ``FULL_STATES`` states result.json leaves out species that never reach this mole fraction."""
 
-_CERTIFICATE: Final = ("element_residual", "gap", "worst_affinity")
-_PROPERTIES: Final = ("temperature", "pressure", "volume", "enthalpy", "entropy", "gibbs_energy")
+_CERTIFICATE: Final = ("element_residual", "gap", "worst_affinity", "held_residual")
+_TOTALS: Final = ("temperature", "pressure", "volume", "enthalpy", "internal_energy", "entropy", "gibbs_energy")
 
 
 @dataclass(frozen=True)
@@ -96,8 +99,10 @@ class Result:
         Units that were typed, for ``temperature``, ``pressure`` and ``amount``.
     feeds : dict of str to FeedAmounts
         Feeds as the case has them; a swept size changes from state to state.
-    feed_enthalpy : array (states,) or None
-        Enthalpy of all feeds, [J or W]; None where that of one is not known.
+    held : dict of str to array (states,)
+        The two conditions that were held, by the names that `equilibria` takes, in SI.
+    account : Account
+        What the feeds bring, and how energy is exchanged.
     """
 
     title: str
@@ -112,7 +117,8 @@ class Result:
     batch: Batch
     display_units: dict[str, str]
     feeds: dict[str, FeedAmounts]
-    feed_enthalpy: Floats | None
+    held: dict[str, Floats]
+    account: Account
 
     def state(self, index: int) -> State:
         """Return state ``index``, counted from 0."""
@@ -129,15 +135,42 @@ class Result:
         Returns
         -------
         float or None
-            Enthalpy of the state less that of all feeds, [J or W]; negative where heat is given off. None where a
-            feed has no temperature or is known by its elements only, or where the state is not certified.
+            Energy of the state less that of all feeds, or the heat that is held, [J or W]; negative where heat is
+            given off. None where a feed has no temperature or is known by its elements only, or where the state is
+            not certified.
         """
-        return None if self._heats is None else _plain(self._heats[index])
+        return None if self.heats is None else _plain(self.heats[index])
+
+    def work(self, index: int) -> float | None:
+        """Shaft work that must be supplied to reach state ``index``, [J or W]; negative where it is gained.
+
+        Zero but for an expansion or compression; None as for `heat`.
+        """
+        return None if self.works is None else _plain(self.works[index])
+
+    def audit(self, index: int) -> Audit | None:
+        """Second-law account of state ``index``; None where it is not certified, or a feed is not known."""
+        return self.audits[index]
 
     @cached_property
-    def _heats(self) -> Floats | None:
+    def heats(self) -> Floats | None:
         """Heat of every state, (states,), [J or W]; nan where a state is not certified."""
-        return None if self.feed_enthalpy is None else self.batch.enthalpy - self.feed_enthalpy
+        return self.account.heat(self.batch)
+
+    @cached_property
+    def works(self) -> Floats | None:
+        """Shaft work of every state, (states,), [J or W]; nan where a state is not certified."""
+        return self.account.work(self.batch)
+
+    @cached_property
+    def audits(self) -> list[Audit | None]:
+        """Second-law account of every state."""
+        return self.account.audits(self.batch, self.basis)
+
+    @cached_property
+    def properties(self) -> dict[str, Floats]:
+        """Properties of every state, (states,) each, by name; none beyond 1000 states, for the time they take."""
+        return properties(self.batch) if len(self.batch) <= FULL_STATES else {}
 
     def to_dict(self) -> dict[str, Any]:
         """Return the result as result.json has it.
@@ -146,11 +179,11 @@ class Result:
         -------
         dict
             Safe for JSON: plain numbers, None for what is not known. Amounts are per ``basis``. Beyond 1000 states,
-            species that stay below a mole fraction of 1e-12 in all of them are left out and listed under
-            ``left_out``; the data set holds them.
+            properties are left out, and species that stay below a mole fraction of 1e-12 in all of them, which are
+            listed under ``left_out``; the data set holds them.
         """
         batch = self.batch
-        arrays = {name: np.asarray(getattr(batch, name)) for name in (*_PROPERTIES, *_CERTIFICATE, "certified")}
+        arrays = {name: np.asarray(getattr(batch, name)) for name in (*_TOTALS, *_CERTIFICATE, "certified")}
         arrays["amounts"] = batch.amounts
         arrays["mole_fractions"] = mole_fractions(self.system, batch.amounts)
         reasons = batch.reason
@@ -165,6 +198,7 @@ class Result:
             "basis": self.basis,
             "case": self.case,
             "input_units": self.input_units,
+            **({"remark": self.account.remark} if self.account.remark else {}),
             "provenance": {"case_sha256": self.case_sha256, "data_version": load().version},
             **({"left_out": {"below_mole_fraction": NAMED_FRACTION, "species": left_out}} if left_out else {}),
             "states": [self._state(i, arrays, named, reasons[i]) for i in range(len(batch))],
@@ -177,8 +211,14 @@ class Result:
         phases |= {names[k]: _plain(amounts[k]) for k in np.flatnonzero(~gas) if amounts[k] > 0.0}
         return {
             "inputs": {name: float(values[i]) for name, values in self.inputs.items()},
-            **{name: _plain(arrays[name][i]) for name in _PROPERTIES},
+            **{name: _plain(arrays[name][i]) for name in _TOTALS},
+            "held": {name: float(values[i]) for name, values in self.held.items()},
+            "feed_enthalpy": _at(self.account.feed_enthalpy, i),
+            "feed_internal_energy": _at(self.account.feed_internal_energy, i),
             "heat": self.heat(i),
+            "work": self.work(i),
+            **{name: _plain(values[i]) for name, values in self.properties.items()},
+            "audit": None if (account := self.audit(i)) is None else account.to_dict(),
             "phases": phases,
             "amounts": {names[k]: _plain(amounts[k]) for k in named},
             "mole_fractions": {names[k]: _plain(arrays["mole_fractions"][i, k]) for k in named},
@@ -199,10 +239,26 @@ class Result:
             Dimensions are the varied inputs, under the names that the case gives them and in the units that were
             typed, and ``species``.
         """
-        unit = "W" if self.basis == "mol/s" else "J"
-        extra = {} if self._heats is None else {"heat": (self._heats, unit, "heat to be supplied")}
+        unit, per_K = ("W", "W/K") if self.basis == "mol/s" else ("J", "J/K")
+        extra: dict[str, tuple[Floats, str, str]] = {}
+        if self.heats is not None:
+            extra["heat"] = (self.heats, unit, "heat to be supplied")
+        if self.works is not None and self.account.shaft:
+            extra["work"] = (self.works, unit, "shaft work to be supplied")
+        if any(self.audits):
+            made = np.array([np.nan if one is None else one.entropy_generated for one in self.audits])
+            extra["entropy_generated"] = (made, per_K, "entropy generated in the system and its surroundings")
+            extra["lost_work"] = (self.account.surroundings_temperature * made, unit, "lost work")
+        for one in PROPERTIES:
+            if one.name in self.properties:
+                kind = one.rate if self.basis == "mol/s" else one.unit
+                extra[one.name] = (self.properties[one.name], kind, one.meaning)
         data = labelled(self.system, self.batch, self.axes, self.basis, extra)
         return data.assign_attrs(title=self.title, case_sha256=self.case_sha256)
+
+
+def _at(values: Floats | None, i: int) -> float | None:
+    return None if values is None else _plain(values[i])
 
 
 def _plain(value: Any) -> float | None:

@@ -10,6 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.results.fractions import gas_fractions
+from gibbsmin.results.properties import PROPERTIES
 
 if TYPE_CHECKING:
     from gibbsmin.results.result import Result
@@ -40,21 +41,32 @@ def spreadsheet(result: Result) -> str:
     solids = [k for k in range(len(gas)) if not gas[k] and amounts[good, k].max(initial=0.0) > 0.0]
     energy, entropy = ("W", "W/K") if result.basis == "mol/s" else ("J", "J/K")
     volume = "m3/s" if result.basis == "mol/s" else "m3"
-    heats = [result.heat(i) for i in range(count)]
+    audits = [result.audit(i) for i in range(count)]
+    made = np.array([np.nan if one is None else one.entropy_generated for one in audits])
+    lost = np.array([np.nan if one is None else one.lost_work for one in audits])
     columns: list[tuple[str, list[object]]] = [
         (f"{name} [{_unit(result.input_units.get(name, ''))}]", _cells(values, None))
         for name, values in result.inputs.items()
     ]
     columns += [
-        ("temperature [K]", _cells(batch.temperature, None)),
-        ("pressure [Pa]", _cells(batch.pressure, None)),
+        ("temperature [K]", _cells(result.held.get("temperature", batch.temperature), None)),
+        ("pressure [Pa]", _cells(result.held.get("pressure", batch.pressure), None)),
         ("certified [-]", [int(flag) for flag in good]),
         (f"volume [{volume}]", _cells(batch.volume, good)),
         (f"enthalpy [{energy}]", _cells(batch.enthalpy, good)),
+        (f"internal_energy [{energy}]", _cells(batch.internal_energy, good)),
         (f"entropy [{entropy}]", _cells(batch.entropy, good)),
         (f"gibbs_energy [{energy}]", _cells(batch.gibbs_energy, good)),
-        (f"heat [{energy}]", ["" if h is None or not g else repr(h) for h, g in zip(heats, good, strict=True)]),
+        (f"heat [{energy}]", _cells(_or_nan(result.heats, count), good)),
+        (f"work [{energy}]", _cells(_or_nan(result.works, count), good)),
+        (f"entropy_generated [{entropy}]", _cells(made, good)),
+        (f"lost_work [{energy}]", _cells(lost, good)),
         (f"gas [{result.basis}]", _cells(amounts[:, gas].sum(axis=1), good)),
+    ]
+    columns += [
+        (f"{one.name} [{_unit(one.rate if result.basis == 'mol/s' else one.unit)}]", _cells(values, good))
+        for one in PROPERTIES
+        if (values := result.properties.get(one.name)) is not None
     ]
     columns += [(f"{system.species[k]} [{result.basis}]", _cells(amounts[:, k], good)) for k in listed + solids]
     columns += [(f"{system.species[k]} [mol/mol gas]", _cells(fractions[:, k], good)) for k in listed]
@@ -62,6 +74,7 @@ def spreadsheet(result: Result) -> str:
         ("element_residual [-]", _cells(batch.element_residual, good)),
         ("gap [-]", _cells(batch.gap, good)),
         ("worst_affinity [-]", _cells(batch.worst_affinity, good)),
+        ("held_residual [-]", _cells(batch.held_residual, good)),
         ("reason", [str(reason) for reason in batch.reason]),
     ]
     text = StringIO()
@@ -69,6 +82,10 @@ def spreadsheet(result: Result) -> str:
     writer.writerow([head for head, _ in columns])
     writer.writerows(zip(*(cells for _, cells in columns), strict=True))
     return text.getvalue()
+
+
+def _or_nan(values: NDArray[np.float64] | None, count: int) -> NDArray[np.float64]:
+    return np.full(count, np.nan) if values is None else values
 
 
 def _unit(typed: str) -> str:

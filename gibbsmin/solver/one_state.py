@@ -45,7 +45,7 @@ from gibbsmin.solver.phase_set import NONE, start_phases
 from gibbsmin.solver.settle import settle
 from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.solver.status import NO_ROOM, SOLVED, TOO_COLD, TOO_HOT, UNSETTLED
-from gibbsmin.solver.warmth import GUESS, MOST_REUSES, begin_joint
+from gibbsmin.solver.warmth import MOST_REUSES, begin_joint
 from gibbsmin.thermo.table import Table
 
 STARTS: Final = (0.0, -4.0, 4.0, -12.0)
@@ -53,6 +53,9 @@ STARTS: Final = (0.0, -4.0, 4.0, -12.0)
 
 BRACKETS: Final = (1.0e-2, 1.0e-2, 1.0e-13)
 """Relative width of a bracket of T at which the joint iteration is tried, factor to the next, and last width."""
+
+MIDDLE: Final = 1500.0
+"""Above this temperature a state that was not found counts as too warm, below it as too cold, [K]."""
 
 BOTH: Final = 3
 ON: Final = -1  # no outcome yet
@@ -116,7 +119,7 @@ def narrow(mode: int, settled: bool, gas: Any, table: Table, w: Work) -> int:
     a plateau, or a transition within one record.
     """
     w.count[MODE] = mode
-    warm = w.value[T] > GUESS
+    warm = w.value[T] > MIDDLE
     if settled:
         follow(table, gas, w)
         excess = energy_excess(w)

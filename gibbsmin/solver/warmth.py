@@ -34,7 +34,7 @@ from gibbsmin.thermo.table import Table
 
 CLOSE: Final = 1.0e-3  # relative change of T that is near enough for a start
 NARROW: Final = 1.0e-7  # width of the bracket at which the programme jumps: a plateau
-GUESS: Final = 1500.0  # K
+GUESS: Final = 500.0  # K; low, so that of several answers, where data end, the coldest is found
 
 MOST_REUSES: Final = 50
 """States in a row that take over the coordinates of the one before, so that rounding does not gather in them."""

@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from gibbsmin.errors import InputError, nearest
 from gibbsmin.states.batch import Batch
+from gibbsmin.states.held import UNIT, which_pair
 from gibbsmin.states.solve import equilibria
 from gibbsmin.states.system import System
 from gibbsmin.studies.labelled import Axis, labelled
@@ -50,8 +51,7 @@ def grid(axes: Sequence[ArrayLike]) -> list[Floats]:
 def solve_in_chunks(
     system: System,
     element_amounts: Floats,
-    temperature: Floats,
-    pressure: Floats,
+    held: Mapping[str, Floats],
     progress: Progress | None = None,
 ) -> Batch:
     """Solve many states, a chunk at a time.
@@ -62,8 +62,8 @@ def solve_in_chunks(
         What may form.
     element_amounts : array (states, E)
         Amount of each element, [mol].
-    temperature, pressure : array (states,)
-        Held conditions, [K] and [Pa].
+    held : mapping of str to array (states,)
+        The two held conditions by the names that `equilibria` takes, in SI.
     progress : callable, optional
         Called after each chunk.
 
@@ -76,11 +76,8 @@ def solve_in_chunks(
     done = []
     for start in range(0, states, CHUNK):
         part = slice(start, start + CHUNK)
-        done.append(
-            equilibria(
-                system, element_amounts=element_amounts[part], temperature=temperature[part], pressure=pressure[part]
-            )
-        )
+        conditions = {name: values[part] for name, values in held.items()}
+        done.append(equilibria(system, element_amounts=element_amounts[part], **conditions))
         if progress is not None:
             progress(min(start + CHUNK, states), states)
     return _joined(done)
@@ -100,6 +97,10 @@ def sweep(
     vary: Mapping[str, Sequence[Measurable] | Floats],
     temperature: Measurable | None = None,
     pressure: Measurable | None = None,
+    volume: Measurable | None = None,
+    enthalpy: Measurable | None = None,
+    internal_energy: Measurable | None = None,
+    entropy: Measurable | None = None,
     progress: Progress | None = None,
 ) -> xarray.Dataset:
     """Solve states over one or more varied inputs.
@@ -111,10 +112,11 @@ def sweep(
     feed : mapping of str to quantity
         Amount of each feed species, [mol].
     vary : mapping of str to sequence of quantities
-        Values of each varied input: ``"temperature"`` [K], ``"pressure"`` [Pa], or ``"feed:NAME"``, the amount of
-        a feed species [mol].
-    temperature, pressure : quantity
-        Held conditions that are not varied, [K] and [Pa].
+        Values of each varied input: a held condition by its name, or ``"feed:NAME"``, the amount of a feed species
+        [mol].
+    temperature, pressure, volume, enthalpy, internal_energy, entropy : quantity
+        Held conditions that are not varied, [K], [Pa], [m3], [J], [J], [J/K]; with the varied ones two, as in
+        `equilibrium`.
     progress : callable, optional
         Called with the states done and all states.
 
@@ -127,12 +129,42 @@ def sweep(
     Raises
     ------
     InputError
-        Nothing is varied, an input is not known, is given twice or is missing, or a value does not suit.
+        Nothing is varied, an input is not known or is given twice, the conditions are not a pair that can be held, or
+        a value does not suit.
     """
     if not vary:
         raise InputError("vary is empty; name at least one input, for example vary={'temperature': [1000.0, 1100.0]}")
-    fixed = {"temperature": temperature, "pressure": pressure}
-    units = {"temperature": "K", "pressure": "Pa", **{f"{_FEED}{name}": "mol" for name in feed}}
+    fixed = {
+        "temperature": temperature,
+        "pressure": pressure,
+        "volume": volume,
+        "enthalpy": enthalpy,
+        "internal_energy": internal_energy,
+        "entropy": entropy,
+    }
+    axes = _axes(vary, feed, fixed)
+    columns = dict(zip(vary, grid([axis.values for axis in axes]), strict=True))
+    states = len(next(iter(columns.values())))
+    held = {name: columns[name] for name in fixed if name in columns}
+    for name, value in fixed.items():
+        if value is not None:
+            held[name] = np.full(states, quantity(value, UNIT[name], name))
+    which_pair({name: held.get(name) for name in fixed})
+    elements = np.zeros((states, len(system.elements)))
+    amounts: dict[str, Floats] = {name: np.full(states, quantity(n, "mol", name)) for name, n in feed.items()}
+    amounts |= {name.removeprefix(_FEED): values for name, values in columns.items() if name.startswith(_FEED)}
+    for name, amount in amounts.items():
+        elements += np.outer(amount, system.feed({name: 1.0}))
+    return labelled(system, solve_in_chunks(system, elements, held, progress), axes, "mol")
+
+
+def _axes(
+    vary: Mapping[str, Sequence[Measurable] | Floats],
+    feed: Mapping[str, Measurable],
+    fixed: Mapping[str, Measurable | None],
+) -> list[Axis]:
+    """Read the varied inputs."""
+    units = {**UNIT, **{f"{_FEED}{name}": "mol" for name in feed}}
     axes = []
     for name, values in vary.items():
         if name not in units and not name.startswith(_FEED):
@@ -146,24 +178,7 @@ def sweep(
         if read.size == 0:
             raise InputError(f"vary[{name!r}] holds no values")
         axes.append(Axis(name, read, unit))
-    columns = dict(zip(vary, grid([axis.values for axis in axes]), strict=True))
-    states = len(next(iter(columns.values())))
-    held = {}
-    for name, value in fixed.items():
-        if value is None and name not in columns:
-            raise InputError(f"{name} is missing; give {name}= or vary it")
-        held[name] = columns[name] if name in columns else np.full(states, quantity(value or 0.0, units[name], name))
-    elements = np.zeros((states, len(system.elements)))
-    for name in [
-        *feed,
-        *(key[len(_FEED) :] for key in vary if key.startswith(_FEED) and key[len(_FEED) :] not in feed),
-    ]:
-        amount = columns.get(f"{_FEED}{name}")
-        if amount is None:
-            amount = np.full(states, quantity(feed[name], "mol", name))
-        elements += np.outer(amount, system.feed({name: 1.0}))
-    batch = solve_in_chunks(system, elements, held["temperature"], held["pressure"], progress)
-    return labelled(system, batch, axes, "mol")
+    return axes
 
 
 def _plain(value: Measurable) -> Measurable:

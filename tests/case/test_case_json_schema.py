@@ -37,6 +37,10 @@ def faults(value, schema, root, place="case"):
             found += [] if good else [f"{place}: not {rule}"]
         elif word == "anyOf":
             found += [] if any(not faults(value, one, root) for one in rule) else [f"{place}: none of the kinds"]
+        elif word == "oneOf":
+            found += [] if sum(not faults(value, one, root) for one in rule) == 1 else [f"{place}: not just one kind"]
+        elif word == "allOf":
+            found += [fault for one in rule for fault in faults(value, one, root, place)]
         elif word == "properties":
             for key in value.keys() & rule.keys() if isinstance(value, dict) else ():
                 found += faults(value[key], rule[key], root, f"{place}.{key}")
@@ -115,6 +119,11 @@ def test_the_schema_holds_for_shipped_cases(path):
         {"title": 3},
         {"held": {"temperature": 300.0}},
         {"held": {"temperature": 300.0, "pressure": [1]}},
+        {"held": {"temperature": 300.0, "adiabatic": True, "pressure": 1e5}},
+        {"held": {"temperature": 300.0, "volume": 2.0, "pressure": 1e5}},
+        {"held": {"entropy": "of feeds", "pressure": 1e5}},
+        {"held": {"entropy": "from feeds", "pressure": 1e5, "isentropic_efficiency": 1.1}},
+        {"surroundings": {"temprature": 300.0}},
         {"feeds": {"gas": {"mole_percent": {"CH4": -1.0}}}},
         {"feeds": {"g a s": {"species": "CH4"}}},
         {"sweep": [{"vary": "held.temperature", "points": 1}]},

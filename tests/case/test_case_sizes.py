@@ -9,6 +9,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from gibbsmin.case.feed_schema import Feed
+from gibbsmin.case.feed_states import FeedStates
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import read_recipe
 from gibbsmin.case.sizes import feed_units, read_basis
@@ -69,13 +70,20 @@ def test_an_ultimate_analysis_with_moisture_and_ash():
     assert found.atoms == pytest.approx({"C": 600 / 12.011, "H": 50 / 1.008, "O": 150 / 15.999})
     assert named(found) == pytest.approx({"H2O(l)": 100 / 18.015, "SiO2(s)": 100 / 60.083})
     assert found.elements["H"] == pytest.approx(50 / 1.008 + 2 * 100 / 18.015)
-    assert found.enthalpy is None
+    assert found.gas == 0.0
+
+
+def states_of(found):
+    return FeedStates((found,), (), {}, 1)
 
 
 def test_enthalpy_of_a_feed_at_its_temperature():
     # Water vapour at 298.15 K: its enthalpy of formation, -241.826 kJ/mol (CODATA key values, Cox et al. 1989)
-    assert recipe(species="H2O", amount=1.0, temperature=298.15).enthalpy == pytest.approx(-241826.0, abs=40.0)
-    assert recipe(species="H2O", amount=1.0).enthalpy is None
+    water = states_of(recipe(species="H2O", amount=1.0, temperature=298.15))
+    assert water.enthalpy == pytest.approx([-241826.0], abs=40.0)
+    assert water.internal_energy == pytest.approx(water.enthalpy - 8.314462618 * 298.15)
+    assert states_of(recipe(species="H2O", amount=1.0)).enthalpy is None
+    assert states_of(recipe(ultimate_percent={"C": 100.0}, amount="1 kg", temperature=298.15)).enthalpy is None
 
 
 def test_dry_air():

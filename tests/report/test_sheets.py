@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+import re
+from math import nan
+
 import pytest
 
 from gibbsmin.report.explained import explained
@@ -69,7 +72,13 @@ def test_explained() -> None:
         "elements": {"C": 28.0, "H": 100.0, "N": 1.0},
         "units": {"temperature": "degC", "pressure": "bar"},
         "species": {"gas": ["CH4"] * 100, "condensed": ["C(s):graphite"], "exclude": ["C2H2:acetylene"], "inert": []},
-        "held": {"temperature": "870 degC", "pressure": "24 bar"},
+        "held": {"adiabatic": True, "pressure": "24 bar"},
+        "remark": "taken at the held pressure: gas",
+        "heating_values": {
+            "gas": {
+                298.15: {"per_mole": (8.906e5, 8.026e5), "per_mass": (55.5e6, 50e6), "per_normal_volume": (nan, nan)}
+            }
+        },
         "sweep": [{"vary": "held.temperature", "first": 600.0, "last": 1000.0, "unit": "degC", "points": 81}],
         "states": 81,
     }
@@ -79,6 +88,9 @@ def test_explained() -> None:
     assert "0.4500 kg/s, 550 degC" in text
     assert "C (element)" in text
     assert "100 may form" in text
+    assert re.search(r"^held +adiabatic, pressure 24 bar$", text, re.MULTILINE)
+    assert "higher / lower at 25 degC: 890.6 / 802.6 kJ/mol, 55.50 / 50.00" in text
+    assert "Nm3" not in text, "a feed that is in part condensed has no gas volume"
     assert "and 60 more" in text
     assert "C2H2:acetylene" in text
     assert "81 values from 600 to 1000 degC" in text

@@ -48,6 +48,9 @@ def test_spreadsheet_reads_back_to_the_last_digit(tmp_path: Path) -> None:
     assert [float(row["temperature [K]"]) for row in rows] == list(result.batch.temperature)
     assert float(rows[0]["CO [mol/s]"]) == result.batch.amounts[0, 2]
     assert float(rows[4]["CO [mol/mol gas]"]) == pytest.approx(9.67 / 100.0)
+    assert float(rows[0]["lost_work [W]"]) == result.audits[0].lost_work
+    assert float(rows[0]["heat [W]"]) == 6.8e6
+    assert rows[2]["lost_work [W]"] == rows[2]["heat [W]"] == ""
     assert rows[2]["CO [mol/s]"] == ""
     assert rows[2]["certified [-]"] == "0"
     assert all("[" in head or head == "reason" for head in rows[0])

@@ -61,7 +61,7 @@ def test_elements_close_in_every_state(system):
         ({"vary": {"temperature": []}}, "no values"),
         ({"vary": {"temperature": [1000.0]}, "temperature": 1000.0}, "held and varied"),
         ({"vary": {"temperature": ["1000 bar"]}}, r"vary\['temperature'\]"),
-        ({"vary": {"feed:CH4": [1.0]}}, "temperature is missing"),
+        ({"vary": {"feed:CH4": [1.0]}}, "pressure cannot be held; hold one of the pairs"),
         ({"vary": {"feed:N2": [1.0]}, "temperature": 1000.0}, "N"),
         ({"vary": {"feed:XX": [1.0]}, "temperature": 1000.0}, "XX"),
     ],
