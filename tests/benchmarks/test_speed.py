@@ -35,9 +35,8 @@ def test_methane_in_air_against_cantera(held: str, least: float, capsys: pytest.
     ratio = median(theirs / own for theirs, own in zip(found["times"][fastest], ours, strict=True))
     with capsys.disabled():
         others = ", ".join(f"{solver} {1e6 * median(times):.0f}" for solver, times in found["times"].items())
-        print(
-            f"\ngri30 CH4/air at held {' and '.join(held)}: {1e6 * median(ours):.1f} us a state; Cantera {found['cantera']}: {others} us"
-        )
+        print(f"\ngri30 CH4/air at held {' and '.join(held)}: {1e6 * median(ours):.1f} us a state")
+        print(f"Cantera {found['cantera']}: {others} us")
         print(f"ratio to the fastest ({fastest}): {ratio:.1f}")
     assert ratio >= least
 

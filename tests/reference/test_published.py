@@ -2,7 +2,7 @@
 
 Each row of ``published.csv`` names its source (``source``) and how its figure was come by (``seen``: a table or text at
 hand, or from memory). ``within`` was set from what separates the source from today, said in ``within_why``; it is not
-widened to make a test pass. Rows at held enthalpy, entropy, volume or internal energy wait for those pairs.
+widened to make a test pass. Rows at held enthalpy, entropy, volume or internal energy are in `test_published_pairs`.
 
 ``recomputed`` is what another minimizer found on the data of NASA TM-4513: a regression, no published check.
 """
