@@ -7,6 +7,7 @@ from typing import Any, NamedTuple
 import numpy as np
 
 from gibbsmin.compiled import inlined
+from gibbsmin.solver.basis import NOISE
 from gibbsmin.solver.certificate import element_residual, optimality
 from gibbsmin.solver.gas import present_amount
 from gibbsmin.solver.layout import (
@@ -114,13 +115,16 @@ def collect(scale: float, A: Any, w: Work, n: Any, lam: Any) -> None:
 
 @inlined
 def close_balances(b: Any, w: Work, n: Any) -> None:
-    """Let the condensed species take up what rounding left of the element balances: n_c + (B^-1 (b - A n))_c."""
+    """Let the condensed species take up what rounding left of the element balances: n_c + (B^-1 (b - A n))_c.
+
+    What is rounding for the element itself is left alone: it would drown the balance of a rare one.
+    """
     m = b.size
     for i in range(m):
         total = b[i]
         for j in range(n.size):
             total -= w.A[i, j] * n[j]
-        w.at[LEFT, i] = total
+        w.at[LEFT, i] = total if abs(total) > NOISE * abs(b[i]) else 0.0
     for i in range(m):
         if w.what[KIND, i] == PRESENT:
             j, total = w.species[w.what[BASIS, i]], 0.0
