@@ -148,9 +148,8 @@ def finish(
     pressure = amount * temperature / first if w.count[VOLUME] == 1 else first
     out.temperature[state], out.pressure[state] = temperature, pressure
     free = w.count[MODE] != TEMPERATURE
-    if free or w.count[VOLUME] == 1:
+    if w.count[VOLUME] == 1:  # there the iteration has U and Cv
         standard_state(temperature, table, w.std[HEAT], w.std[DISORDER])
-    if free:
         standard_heat_capacity(temperature, table, w.std[CAPACITY])
     lnP = np.log(pressure) if pressure > 0.0 else NOTHING
     enthalpy = entropy = capacity = 0.0

@@ -32,7 +32,7 @@ from gibbsmin.solver.phase_set import NONE, start_phases
 from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
 from gibbsmin.thermo.table import Table
 
-CLOSE: Final = 1.0e-3  # relative change of T that is near enough for a start
+CLOSE: Final = 3.0e-2  # relative change of T that is near enough for a start
 NARROW: Final = 1.0e-7  # width of the bracket at which the programme jumps: a plateau
 GUESS: Final = 500.0  # K; low, so that of several answers, where data end, the coldest is found
 
