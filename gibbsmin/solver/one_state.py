@@ -43,7 +43,7 @@ from gibbsmin.solver.layout import (
 from gibbsmin.solver.outcome import amounts
 from gibbsmin.solver.phase_set import NONE, start_phases
 from gibbsmin.solver.settle import settle
-from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
+from gibbsmin.solver.simplex import optimal_basis
 from gibbsmin.solver.status import NO_ROOM, SOLVED, TOO_COLD, TOO_HOT, UNSETTLED
 from gibbsmin.solver.warmth import MOST_REUSES, begin_joint
 from gibbsmin.thermo.table import Table
@@ -76,10 +76,10 @@ def one_state(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
             if attempt == 0:  # the basis of the state before; where T is to be found, the candidates are those of any T
                 potentials(table, gas, w)
                 ready = mode == TEMPERATURE and same_basis(A, gas, b, w)
-                ready = ready and optimal_basis_again(b, w.std[GIBBS], w)
+                ready = ready and optimal_basis(attempt == 0, A, b, w.std[GIBBS], 0.0, w)
                 w.count[REUSES] = w.count[REUSES] + 1 if ready else -1
             else:
-                room = ready = optimal_basis(A, b, w.std[GIBBS], STARTS[attempt - 1], w)
+                room = ready = optimal_basis(attempt == 0, A, b, w.std[GIBBS], STARTS[attempt - 1], w)
                 w.count[REUSES] = 0 if ready and mode == TEMPERATURE else -1
             if ready:
                 start_phases(w)

@@ -88,21 +88,24 @@ def real_for(place: int, w: Work) -> int:
 
 
 @inlined
-def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
-    """Find an optimal basis from artificial columns; False if the candidates cannot hold b, or no end is found.
+def optimal_basis(again: bool, A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
+    """Find an optimal basis; False if the candidates cannot hold b, or no end is found.
 
-    An artificial column that is left holds nothing: a real one takes its place, or the row depends on others.
+    ``again``: from the basis of the state before, with the same candidates; False if that basis cannot hold b. Else
+    from artificial columns; one that is left at the end holds nothing, and a real one takes its place, or its row
+    depends on others.
     """
-    start_basis(A, b, g, bias, w)
+    if not again:
+        start_basis(A, b, g, bias, w)
+    elif not start_again(b, g, w):
+        return False
     for _ in range(b.size + 1):
         if not improve(b, w):
             return False
-        place = -1
-        for i in range(b.size):
-            if w.what[BASIS, i] < 0 and w.what[KIND, i] != IDLE and place < 0:
-                place = i
+        place = artificial_place(w)
         if place < 0:
-            exact_prices(g, w)
+            if not again:  # free of the artificial costs
+                exact_prices(g, w)
             return True
         scale = 0.0
         for i in range(b.size):
@@ -118,8 +121,17 @@ def optimal_basis(A: Any, b: Any, g: Any, bias: float, w: Work) -> bool:
 
 
 @inlined
-def optimal_basis_again(b: Any, g: Any, w: Work) -> bool:
-    """Find an optimal basis from that of the state before, with the same candidates; False if it cannot hold b."""
+def artificial_place(w: Work) -> int:
+    """First place that still has an artificial column, -1 if there is none."""
+    for i in range(w.nu.shape[0]):
+        if w.what[BASIS, i] < 0 and w.what[KIND, i] != IDLE:
+            return i
+    return -1
+
+
+@inlined
+def start_again(b: Any, g: Any, w: Work) -> bool:
+    """Begin with the basis of the state before; False if it cannot hold b."""
     basis_amounts(b, w)
     for i in range(w.nu.shape[0]):
         w.at[Y, i] = 0.0
@@ -128,7 +140,7 @@ def optimal_basis_again(b: Any, g: Any, w: Work) -> bool:
             if w.at[C, i] < 0.0:
                 return False
     exact_prices(g, w)
-    return improve(b, w)
+    return True
 
 
 @inlined

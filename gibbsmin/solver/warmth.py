@@ -29,7 +29,7 @@ from gibbsmin.solver.layout import (
     Work,
 )
 from gibbsmin.solver.phase_set import NONE, start_phases
-from gibbsmin.solver.simplex import optimal_basis, optimal_basis_again
+from gibbsmin.solver.simplex import optimal_basis
 from gibbsmin.thermo.table import Table
 
 CLOSE: Final = 3.0e-2  # relative change of T that is near enough for a start
@@ -60,8 +60,9 @@ def begin_joint(A: Any, gas: Any, b: Any, table: Table, w: Work) -> bool:
         w.value[T] = GUESS
     for _ in range(60):
         potentials(table, gas, w)
-        kept = again and basis_usable(w) and optimal_basis_again(b, w.std[GIBBS], w)
-        if not kept and not optimal_basis(A, b, w.std[GIBBS], 0.0, w):
+        kept = again and basis_usable(w)
+        found = optimal_basis(kept, A, b, w.std[GIBBS], 0.0, w)
+        if not found and (not kept or not optimal_basis(not kept, A, b, w.std[GIBBS], 0.0, w)):
             w.count[REUSES] = -1
             return False
         again = True

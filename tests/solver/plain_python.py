@@ -32,7 +32,7 @@ def programmes(question: dict[str, Any]) -> list[dict[str, Any]]:
         work = new_work(A)
         with np.errstate(over="ignore", invalid="ignore"):
             select_candidates(A, np.ones(A.shape[1], bool), b, g, work)
-            found = optimal_basis(A, b, g, 0.0, work)
+            found = optimal_basis(False, A, b, g, 0.0, work)
         n = np.zeros(A.shape[1])
         for place in range(b.size):
             if found and work.what[KIND, place] != IDLE:
