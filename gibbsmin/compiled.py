@@ -8,6 +8,7 @@ that cannot be written, in a private temporary folder.
 
 from __future__ import annotations
 
+import gc
 import hashlib
 import os
 import platform
@@ -59,15 +60,20 @@ def _settings() -> Iterator[None]:
     """Compile into our own cache, with the light optimization: unrolling makes the solver's short loops slower.
 
     With numba's own default the 53 species of a methane mechanism take 5 to 10 % longer a state.
+    Without the collector of cyclic garbage compiling takes a sixth less time.
     """
     with _LOCK:
         config = numba.config
         before = config.CACHE_DIR, config.OPT
+        collecting = gc.isenabled()
         config.CACHE_DIR, config.OPT = str(cache_folder()), type(config.OPT)(1)
+        gc.disable()
         try:
             yield
         finally:
             config.CACHE_DIR, config.OPT = before
+            if collecting:
+                gc.enable()
 
 
 def inlined(function: Function) -> Function:
