@@ -22,7 +22,8 @@ ONE_THREAD = {f"{library}_NUM_THREADS": "1" for library in ("OMP", "OPENBLAS", "
 def test_methane_in_air_against_cantera(held: str, least: float, capsys: pytest.CaptureFixture[str]) -> None:
     """How many times as fast a state is as by the fastest of Cantera's solvers: the best of up to three runs.
 
-    A busy host slows the two by unequal shares, never in our favour for long: each run is a median over rounds.
+    Each run is a median over rounds; a busy host slows the two by unequal shares, so one low run is not believed. The
+    ratio at held H and P is near its bar (26 to 30 on an idle machine): look at the figures, not at the verdict.
     """
     ratios: list[float] = []
     while len(ratios) < 3 and max(ratios, default=0.0) < least:
@@ -83,7 +84,7 @@ print(process_time() - start)
 
 @pytest.mark.slow
 def test_compilation_in_a_fresh_cache(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
-    """At most 20 s for the first state ever, and next to nothing for the first state of the next process."""
+    """A guard against growth: the wanted 20 s for the first state are missed by one; a cached one takes no time."""
     environment = {**os.environ, "XDG_CACHE_HOME": str(tmp_path), "PYTHONPATH": str(ROOT)}
     times = []
     for _ in range(2):
@@ -91,5 +92,5 @@ def test_compilation_in_a_fresh_cache(tmp_path: Path, capsys: pytest.CaptureFixt
         times.append(float(done.stdout.split()[-1]))
     with capsys.disabled():
         print(f"\nfirst state: {times[0]:.1f} s with a fresh cache, {times[1]:.2f} s from the cache")
-    assert times[0] <= 30.0  # the aim is 20 on an idle machine; a busy one needs half as long again
+    assert times[0] <= 30.0  # 21 s on an idle machine, up to 28 s on a busy one
     assert times[1] <= 1.0

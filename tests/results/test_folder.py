@@ -31,7 +31,8 @@ def test_single_state_folder(tmp_path: Path) -> None:
 
 
 def test_sweep_folder_holds_a_dataset_that_xarray_opens(tmp_path: Path) -> None:
-    xr = pytest.importorskip("xarray")
+    import xarray as xr
+
     result = FakeResult(5)
     write(result, tmp_path / "out")
     with xr.open_dataset(tmp_path / "out" / "result.nc", engine="h5netcdf") as found:

@@ -150,7 +150,7 @@ def test_derivatives_of_the_gibbs_energy(b: list[float], T: float, P: float) -> 
     sense = np.array([-1.0, -1.0, 1.0, 1.0, 1.0, 1.0])
     assert np.all(sense * below <= sense * slopes + slack)
     assert np.all(sense * slopes <= sense * above + slack)
-    assert (above - below)[:2] == pytest.approx([0.0, 0.0], abs=0.05 * np.max(abs(slopes[:2])))
+    assert np.all(abs(above - below)[:2] <= 0.05 * abs(slopes[:2]))  # the two sides bracket closely
 
 
 @pytest.mark.parametrize("feed", [{"CH4": 1.0, "H2O": 3.0}, {"C": 1.0, "O2": 0.4, "N2": 1.0}, {"NH3": 1.0, "CO2": 0.5}])
