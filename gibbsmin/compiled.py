@@ -25,6 +25,8 @@ from typing import Any, TypeVar, cast
 import numba
 import numpy as np
 
+from gibbsmin.linking import part_options
+
 Function = TypeVar("Function", bound=Callable[..., Any])
 
 _LOCK = threading.RLock()
@@ -33,9 +35,10 @@ _PART: dict[str, Any] = {
     "error_model": "numpy",
     "no_cpython_wrapper": True,
     "no_cfunc_wrapper": True,
+    **part_options(),
 }
 _PACKAGE = Path(__file__).parent
-_SOURCES = ("compiled.py", "thermo/polynomial.py", "thermo/table.py", "solver/*.py")
+_SOURCES = ("compiled.py", "linking.py", "thermo/polynomial.py", "thermo/table.py", "solver/*.py")
 
 
 def compiled(function: Function) -> Function:

@@ -90,7 +90,7 @@ def _solve(study: Study, folder: Path, show: bool) -> tuple[dict[str, Any], bool
     from gibbsmin.results.judge import judge
 
     if cache_is_cold():
-        say("Compiling the solver for this machine, once; about 20 s ...")
+        say("Compiling the solver for this machine, once; 10 to 15 s ...")
     progress = Progress("solving")
     try:
         result = study.run(progress=progress)

@@ -84,7 +84,7 @@ print(process_time() - start)
 
 @pytest.mark.slow
 def test_compilation_in_a_fresh_cache(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
-    """A guard against growth: the wanted 20 s for the first state are missed by one; a cached one takes no time."""
+    """Everything a case needs compiles within 20 s (12 to 13 on an idle machine); from the cache it takes no time."""
     environment = {**os.environ, "XDG_CACHE_HOME": str(tmp_path), "PYTHONPATH": str(ROOT)}
     times = []
     for _ in range(2):
@@ -92,5 +92,5 @@ def test_compilation_in_a_fresh_cache(tmp_path: Path, capsys: pytest.CaptureFixt
         times.append(float(done.stdout.split()[-1]))
     with capsys.disabled():
         print(f"\nfirst state: {times[0]:.1f} s with a fresh cache, {times[1]:.2f} s from the cache")
-    assert times[0] <= 30.0  # 21 s on an idle machine, up to 28 s on a busy one
+    assert times[0] <= 20.0
     assert times[1] <= 1.0

@@ -1,13 +1,14 @@
 """Where compiled code is kept."""
 
 import stat
+import sys
 import tempfile
 from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
 
-from gibbsmin import compiled
+from gibbsmin import compiled, linking
 
 
 @pytest.fixture(autouse=True)
@@ -83,3 +84,8 @@ def test_every_file_with_compiled_code_is_in_the_name_of_the_folder() -> None:
     }
     uses = {path for path in with_compiled_code if "cache_is_cold" not in path.read_text(encoding="utf-8")}
     assert uses <= listed
+
+
+def test_without_what_it_needs_of_numba_it_compiles_the_longer_way(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setitem(sys.modules, "numba.core.codegen", None)
+    assert linking.part_options() == {}
