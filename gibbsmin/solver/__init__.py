@@ -19,6 +19,10 @@ Both are convex. The multipliers of (2) and (3) are the amounts of the condensed
 ln x_j = a_j.lam - g_j for every gas species, however rare. A pair (n, lam) that satisfies all constraints with
 sum_j n_j mu_j/RT = b.lam is the global minimum: that is what a certificate states.
 
+A constant may be added to any g_j (``offset``): it shifts the equilibrium constants of the reactions in which the
+species takes part, and nothing else. Rows of A need not be elements: one with any coefficients and its own b is a
+linear constraint on amounts, and its lam is the price of that constraint.
+
 How it is solved
 ----------------
 Coordinates. A basis of r = rank(A) species with B = A[:, basis]; nu_j = B^-1 a_j, y the logarithms of the activities

@@ -27,6 +27,7 @@ from gibbsmin.solver.layout import (
     LIST,
     MODE,
     MORE,
+    OFFSET,
     PRESENT,
     RIGHT,
     ROW,
@@ -54,7 +55,8 @@ def potentials(table: Table, gas: Any, w: Work) -> None:
     shift = w.value[FIRST] + (np.log(temperature) if held_volume else 0.0)
     for j in range(gas.size):
         usable = table.low[j] <= temperature <= table.top[j]
-        w.std[GIBBS, j] = w.std[HEAT, j] - w.std[DISORDER, j] + (shift if gas[j] else 0.0) if usable else np.inf
+        own = w.std[HEAT, j] - w.std[DISORDER, j] + w.std[OFFSET, j]
+        w.std[GIBBS, j] = own + (shift if gas[j] else 0.0) if usable else np.inf
     if w.count[MODE] != TEMPERATURE:
         standard_heat_capacity(temperature, table, w.std[CAPACITY])
         if held_volume:
@@ -73,7 +75,7 @@ def follow(table: Table, gas: Any, w: Work) -> None:
         if w.what[KIND, i] != IDLE:
             j = w.species[w.what[BASIS, i]]
             extended = w.std[HEAT, j] + (1.0 if gas[j] and w.count[VOLUME] == 1 else 0.0)
-            w.std[GIBBS, j] = extended - w.std[DISORDER, j] + (shift if gas[j] else 0.0)
+            w.std[GIBBS, j] = extended - w.std[DISORDER, j] + w.std[OFFSET, j] + (shift if gas[j] else 0.0)
     exact_prices(w.std[GIBBS], w)
     form_energies(w)
 

@@ -77,6 +77,7 @@ DISORDER: Final = 2  # S°/R
 CAPACITY: Final = 3  # Cp°/R, at held volume Cv°/R
 COLD_SIDE: Final = 4  # amounts in the last state of held T that had less energy than is asked for, mol
 WARM_SIDE: Final = 5  # and in the last that had more
+OFFSET: Final = 6  # what is added to g beside the standard potential
 
 
 class Work(NamedTuple):
@@ -94,7 +95,7 @@ class Work(NamedTuple):
     chosen: Any  # (S,) bool, those that remained
     lacking: Any  # (m,) bool, the elements of which it had none
     species: Any  # (S,) int, number of each candidate
-    std: Any  # (6, S) see above
+    std: Any  # (7, S) see above
     of: Any  # (6, S) see above
     nu: Any  # (m, S) coordinates of each candidate, eq. (4)
     at: Any  # (7, m + 3) see above
@@ -115,7 +116,7 @@ def new_work(A: Any) -> Work:
         np.zeros(S, np.bool_),
         np.zeros(m, np.bool_),
         np.zeros(S, np.int64),
-        np.zeros((6, S)),
+        np.zeros((7, S)),
         np.zeros((6, S)),
         np.zeros((m, S)),
         np.zeros((7, m + 3)),

@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import compiled
-from gibbsmin.solver.layout import COLD, FIRST, MODE, REUSES, SECOND, STEPS, TEMPERATURE, VOLUME, WARM, T, Work
+from gibbsmin.solver.layout import COLD, FIRST, MODE, OFFSET, REUSES, SECOND, STEPS, TEMPERATURE, VOLUME, WARM, T, Work
 from gibbsmin.solver.one_state import one_state
 from gibbsmin.solver.outcome import Outcome, close_balances, collect, finish
 from gibbsmin.solver.status import NO_FEED, SOLVED
@@ -16,7 +16,17 @@ from gibbsmin.thermo.table import Table
 
 @compiled
 def minimize_many(
-    A: Any, gas: Any, b: Any, mode: int, volume: bool, first: Any, second: Any, table: Table, w: Work, out: Outcome
+    A: Any,
+    gas: Any,
+    b: Any,
+    mode: int,
+    volume: bool,
+    first: Any,
+    second: Any,
+    offset: Any,
+    table: Table,
+    w: Work,
+    out: Outcome,
 ) -> None:
     """Solve every state of a batch.
 
@@ -36,6 +46,8 @@ def minimize_many(
         Pressure [bar], or volume over R [mol K/bar], finite and positive.
     second : (states,) array
         Temperature [K]; enthalpy, or at held volume internal energy, over R [mol K]; or entropy over R [mol].
+    offset : (states, S) or (1, S) array
+        Added to g of every species [-], as a constant of the state: not for held entropy.
     table : Table
         Standard-state functions.
     w : Work
@@ -58,6 +70,8 @@ def minimize_many(
         scale = 2.0 ** np.ceil(np.log2(scale))  # a power of two: what is stoichiometric stays so to the last bit
         for i in range(m):
             w.b[i] = b[state, i] / scale
+        for j in range(S):
+            w.std[OFFSET, j] = offset[state if offset.shape[0] > 1 else 0, j]
         w.count[STEPS] = 0
         w.count[VOLUME] = 1 if volume else 0
         w.value[FIRST] = -np.log(first[state] / scale) if volume else np.log(first[state])

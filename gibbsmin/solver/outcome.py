@@ -28,6 +28,7 @@ from gibbsmin.solver.layout import (
     MIXED,
     MODE,
     MORE,
+    OFFSET,
     PRESENT,
     SHARE,
     TEMPERATURE,
@@ -155,7 +156,8 @@ def finish(
     enthalpy = entropy = capacity = 0.0
     for j in range(n.size):
         usable = table.low[j] <= temperature <= table.top[j] and w.chosen[j]
-        w.std[GIBBS, j] = w.std[HEAT, j] - w.std[DISORDER, j] + (lnP if gas[j] else 0.0) if usable else np.inf
+        own = w.std[HEAT, j] - w.std[DISORDER, j] + w.std[OFFSET, j]
+        w.std[GIBBS, j] = own + (lnP if gas[j] else 0.0) if usable else np.inf
         if n[j] > 0.0:
             enthalpy += n[j] * w.std[HEAT, j] * temperature
             entropy += n[j] * (w.std[DISORDER, j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
@@ -164,6 +166,8 @@ def finish(
         energy = 0.0
         for i in range(b.size):
             energy += b[i] * out.lam[state, i] if b[i] != 0.0 else 0.0
+        for j in range(n.size):
+            energy -= n[j] * w.std[OFFSET, j]
         if w.count[MODE] == ENERGY:
             enthalpy = second + (amount * temperature if w.count[VOLUME] == 1 else 0.0)
             entropy = enthalpy / temperature - energy

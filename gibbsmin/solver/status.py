@@ -22,8 +22,8 @@ MEANING: Final[dict[int, tuple[str, str]]] = {
     SOLVED: ("", ""),
     NO_FEED: ("The feed holds nothing.", "Give at least one species a positive amount."),
     NO_ROOM: (
-        "The species that may form cannot hold the feed's elements at this temperature.",
-        "Allow more species, or check their ranges of temperature and the charge of the feed.",
+        "The species that may form cannot hold the feed's elements, or meet the constraints, at this temperature.",
+        "Allow more species, or check their ranges of temperature, the charge of the feed, and what is constrained.",
     ),
     UNSETTLED: (
         "The iteration did not settle.",

@@ -26,10 +26,13 @@ class Batch:
     system : System
     outcome : Outcome
         What the solver gave.
+    offset : (states, S) array or None
+        What approach temperatures add to the potentials of the species [-]; None where there are none.
     """
 
     system: System
     outcome: Outcome
+    offset: Array | None = None
 
     def __len__(self) -> int:
         return int(self.outcome.status.size)
@@ -135,6 +138,7 @@ class Batch:
             R * float(out.enthalpy[i]),
             R * float(out.entropy[i]),
             Certificate(float(out.residual[i]), float(out.gap[i]), float(out.affinity[i]), float(out.held[i])),
+            None if self.offset is None else self.offset[i],
         )
 
     def _found(self, values: Array) -> Array:

@@ -2,25 +2,29 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from typing import Any
 
 import numpy as np
 from numpy.typing import ArrayLike
 
-from gibbsmin.constants import STANDARD_PRESSURE, R
+from gibbsmin.constants import STANDARD_PRESSURE, STANDARD_TEMPERATURE, R
 from gibbsmin.errors import FeedError, InputError
 from gibbsmin.solver.layout import new_work
 from gibbsmin.solver.minimize import minimize_many
-from gibbsmin.solver.outcome import new_outcome
+from gibbsmin.solver.outcome import Outcome, new_outcome
+from gibbsmin.solver.status import SOLVED, UNSETTLED
 from gibbsmin.states.batch import Batch
 from gibbsmin.states.held import UNIT, which_pair
 from gibbsmin.states.state import State
-from gibbsmin.states.system import Array, System
+from gibbsmin.states.system import Array, System, constraint_row
 from gibbsmin.units import Measurable, quantity
 
 COLDEST, HOTTEST = 50.0, 20000.0
 """Temperatures beyond which the data say nothing at all, [K]."""
+
+APPROACH_ROUNDS, APPROACH_CLOSE = 40, 1e-11
+"""How often approach temperatures are counted anew from a temperature that comes out, and when that is enough [-]."""
 
 
 def equilibrium(
@@ -33,6 +37,8 @@ def equilibrium(
     enthalpy: Measurable | None = None,
     internal_energy: Measurable | None = None,
     entropy: Measurable | None = None,
+    constrained: Mapping[str, Measurable] | None = None,
+    approach: Mapping[str, float] | None = None,
 ) -> State:
     """Find the state in which a feed settles while two conditions are held.
 
@@ -49,6 +55,10 @@ def equilibrium(
         Two held conditions: pressure with temperature, enthalpy or entropy; or volume with temperature, internal
         energy or entropy. A bare number is in [K], [Pa], [m3], [J], [J], [J/K]. Pressures are absolute; elements at
         298.15 K are the zero of energy.
+    constrained : mapping of str to float or quantity
+        What each constraint of the system holds, [mol]; one that is not there keeps what the feed has.
+    approach : mapping of str to float
+        Approach temperatures of reactions of the system, [K]; not together with entropy.
 
     Returns
     -------
@@ -73,7 +83,9 @@ def equilibrium(
     }
     pair, first, second = which_pair(given)
     values = {name: quantity(value, UNIT[name], name) for name, value in ((pair.first, first), (pair.second, second))}
-    return equilibria(system, element_amounts=system.feed(feed)[None, :], **values).state(0)
+    held = {name: quantity(value, "mol", f"constrained[{name!r}]") for name, value in (constrained or {}).items()}
+    b = system.feed(feed)[None, :]
+    return equilibria(system, element_amounts=b, constrained=held, approach=approach, **values).state(0)
 
 
 def equilibria(
@@ -87,6 +99,8 @@ def equilibria(
     enthalpy: ArrayLike | None = None,
     internal_energy: ArrayLike | None = None,
     entropy: ArrayLike | None = None,
+    constrained: Mapping[str, ArrayLike] | None = None,
+    approach: Mapping[str, ArrayLike] | None = None,
 ) -> Batch:
     """Find many states in one call.
 
@@ -100,6 +114,8 @@ def equilibria(
         Instead of ``feeds``: amounts of the elements, in the order of ``system.elements``, [mol].
     temperature, pressure, volume, enthalpy, internal_energy, entropy : (states,) arrays or scalars
         Two held conditions, as in `equilibrium`: [K], [Pa], [m3], [J], [J], [J/K].
+    constrained, approach : mapping of str to (states,) array or scalar
+        As in `equilibrium`, [mol] and [K].
 
     Returns
     -------
@@ -132,13 +148,60 @@ def equilibria(
     # copies: the compiled code is one for writable arrays in row order only
     one, two = (np.array(np.broadcast_to(value, (count,)), float, order="C") for value in (one, two))
     b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float, order="C")
-    outcome = new_outcome(count, len(system.species), len(system.elements))
+    _constrain(b, system, constrained or {})
     one = one * STANDARD_PRESSURE / R if pair.volume else one / STANDARD_PRESSURE
     if pair.second != "temperature":
         two = two / R
-    work = new_work(system.element_matrix)
-    minimize_many(system.element_matrix, system.gas, b, pair.mode, pair.volume, one, two, system.table, work, outcome)
-    return Batch(system, outcome)
+
+    def minimized(offset: Array) -> Outcome:
+        outcome = new_outcome(count, len(system.species), len(system.elements))
+        work, A = new_work(system.element_matrix), system.element_matrix
+        minimize_many(A, system.gas, b, pair.mode, pair.volume, one, two, offset, system.table, work, outcome)
+        return outcome
+
+    if not approach:
+        return Batch(system, minimized(np.zeros((1, len(system.species)))))
+    if pair.second == "entropy":
+        raise InputError("an approach temperature and a held entropy do not go together; hold another condition")
+    if pair.second == "temperature":
+        offset = system.approaches.offsets(two, approach)
+        return Batch(system, minimized(offset), offset)
+    return _follow_approach(system, approach, minimized)
+
+
+def _follow_approach(system: System, approach: Mapping[str, ArrayLike], minimized: Callable[[Array], Outcome]) -> Batch:
+    """Find states of held energy whose approach temperatures count from the temperature that comes out.
+
+    The offsets change little with T: a fixed point, which a secant step in each state brings home in four or five
+    rounds. What does not come home is marked.
+    """
+    outcome = minimized(np.zeros((1, len(system.species))))
+    T = np.array(outcome.temperature)
+    old, missed = T, np.zeros_like(T)
+    for _ in range(APPROACH_ROUNDS):
+        offset = system.approaches.offsets(np.where(T > 0.0, T, STANDARD_TEMPERATURE), approach)
+        outcome = minimized(offset)
+        miss = outcome.temperature - T
+        settled = (np.abs(miss) <= APPROACH_CLOSE * T) | (outcome.status != SOLVED)
+        if settled.all():
+            break
+        slope = (missed - miss) / np.where(old != T, T - old, np.inf)  # one less what T does to the T that comes out
+        old, missed = T, miss
+        T = np.where(settled, T, T + miss / np.where((slope > 0.5) & (slope < 2.0), slope, 1.0))
+    outcome.status[~settled] = UNSETTLED
+    return Batch(system, outcome, offset)
+
+
+def _constrain(b: Array, system: System, constrained: Mapping[str, ArrayLike]) -> None:
+    """Write what the constraints hold into their rows of ``b``."""
+    for name, value in constrained.items():
+        if name not in system.constraints:
+            known = ", ".join(system.constraints) or "none"
+            raise InputError(f"the system has no constraint {name!r}; it has {known}")
+        amount = np.asarray(value, float)
+        if not np.isfinite(amount).all() or amount.shape not in ((), (len(b),)):
+            raise InputError(f"the constraint {name} must hold finite amounts, one or one a state")
+        b[:, system.elements.index(constraint_row(name))] = amount
 
 
 def _finite(value: ArrayLike, what: str) -> Array:

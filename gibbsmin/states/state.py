@@ -36,6 +36,8 @@ class State:
     enthalpy, entropy : float
         [J], [J/K]; elements at 298.15 K are the zero of enthalpy.
     certificate : Certificate
+    offset : (S,) array or None
+        What approach temperatures add to the potentials of the species [-].
     """
 
     def __init__(
@@ -48,6 +50,7 @@ class State:
         enthalpy: float,
         entropy: float,
         certificate: Certificate,
+        offset: Array | None = None,
     ) -> None:
         self.system = system
         self.temperature = temperature
@@ -57,6 +60,7 @@ class State:
         self.enthalpy = enthalpy
         self.entropy = entropy
         self.certificate = certificate
+        self.offset = np.zeros(len(system.species)) if offset is None else offset
 
     @property
     def amounts(self) -> pd.Series[float]:
@@ -89,7 +93,7 @@ class State:
         lam = self.element_potentials_array
         A = self.system.element_matrix
         known = np.isfinite(lam)
-        ln_a: Array = lam[known] @ A[known] - self.system.standard_potentials(self.temperature)
+        ln_a: Array = lam[known] @ A[known] - self.system.standard_potentials(self.temperature) - self.offset
         ln_a[np.any(A[~known] != 0.0, axis=0)] = -np.inf
         return ln_a
 

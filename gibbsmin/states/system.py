@@ -16,6 +16,7 @@ from gibbsmin.errors import FeedError, InputError, SpeciesError, nearest
 from gibbsmin.phases.ideal_gas import IdealGas
 from gibbsmin.phases.model import Phase
 from gibbsmin.phases.pure import Pure
+from gibbsmin.states.approach import Approaches
 from gibbsmin.thermo.database import load
 from gibbsmin.thermo.record import Species
 from gibbsmin.thermo.table import Table, make_table
@@ -23,6 +24,7 @@ from gibbsmin.units import Measurable, quantity
 
 Array: TypeAlias = NDArray[np.float64]
 GAS: Final = "gas"
+Coefficients: TypeAlias = Mapping[str, Mapping[str, float]]
 
 
 class System:
@@ -34,13 +36,18 @@ class System:
         The species, in the order that all arrays keep.
     inert : iterable of str
         Names of species that take no part: each is balanced as if it were an element of its own.
+    constraints : mapping of str to mapping of str to float
+        Linear constraints by name: coefficients of the amounts of species whose sum is held, beside the elements.
+    approaches : mapping of str to mapping of str to float
+        Reactions by name that may be given an approach temperature: coefficients of species, products positive, the
+        first being the key species (see `gibbsmin.states.approach`).
 
     Attributes
     ----------
     records : tuple of Species
     species, elements, phases : list of str
         Names, in the order of the arrays. Rows of ``elements`` beyond the chemical ones are ``charge`` where a species
-        is charged, and one row for each inert species.
+        is charged, one row for each inert species, and one for each constraint.
     element_matrix : (E, S) array
         Atoms of each element in each species [-].
     molar_masses : (S,) array
@@ -49,7 +56,13 @@ class System:
         True for the species of the gas.
     """
 
-    def __init__(self, records: Sequence[Species], inert: Iterable[str] = ()) -> None:
+    def __init__(
+        self,
+        records: Sequence[Species],
+        inert: Iterable[str] = (),
+        constraints: Coefficients | None = None,
+        approaches: Coefficients | None = None,
+    ) -> None:
         self.records = tuple(records)
         self.species = [record.name for record in self.records]
         if not self.records:
@@ -59,8 +72,11 @@ class System:
             twice = sorted({name for name in self.species if self.species.count(name) > 1})
             raise SpeciesError(f"species {', '.join(twice)} given more than once")
         self.inert = tuple(dict.fromkeys(self.name_of(name) for name in inert))
+        self.constraints = {name: self._known(parts) for name, parts in (constraints or {}).items()}
+        named = {name: self._known(parts) for name, parts in (approaches or {}).items()}
+        self.approaches = Approaches(named, dict(zip(self.species, self.records, strict=True)))
         self.elements = self._rows()
-        rows = [[_atoms(record, row, self.inert) for record in self.records] for row in self.elements]
+        rows = [[self._entry(record, row) for record in self.records] for row in self.elements]
         self.element_matrix = np.array(rows, float).reshape(len(rows), len(self.records))
         self.molar_masses = np.array([record.molar_mass for record in self.records])
         self.gas = np.array([not record.condensed for record in self.records])
@@ -74,6 +90,8 @@ class System:
         exclude: Iterable[str] = (),
         inert: Iterable[str] = (),
         extra: Iterable[Species] = (),
+        constraints: Coefficients | None = None,
+        approaches: Coefficients | None = None,
     ) -> System:
         """Take every species of the data that is made of ``elements`` only.
 
@@ -91,6 +109,8 @@ class System:
             Names of species that take no part.
         extra : iterable of Species
             Own species beside, or instead of (by the same name), those of the data.
+        constraints, approaches : mapping of str to mapping of str to float
+            See `System`.
 
         Returns
         -------
@@ -117,10 +137,17 @@ class System:
             raise InputError(
                 f"{clash[0]} is both inert and excluded; an inert species is there, an excluded one is not"
             )
-        return cls([record for name, record in records.items() if name not in left_out], held)
+        kept = [record for name, record in records.items() if name not in left_out]
+        return cls(kept, held, constraints, approaches)
 
     @classmethod
-    def from_species(cls, species: Iterable[str | Species], inert: Iterable[str] = ()) -> System:
+    def from_species(
+        cls,
+        species: Iterable[str | Species],
+        inert: Iterable[str] = (),
+        constraints: Coefficients | None = None,
+        approaches: Coefficients | None = None,
+    ) -> System:
         """Take just the species named.
 
         Parameters
@@ -129,6 +156,8 @@ class System:
             Names or aliases in the data, or records of your own.
         inert : iterable of str
             Those of them that take no part.
+        constraints, approaches : mapping of str to mapping of str to float
+            See `System`.
 
         Returns
         -------
@@ -141,14 +170,28 @@ class System:
         """
         if isinstance(species, str):
             species = species.split()
-        return cls([load().get(item) if isinstance(item, str) else item for item in species], inert)
+        records = [load().get(item) if isinstance(item, str) else item for item in species]
+        return cls(records, inert, constraints, approaches)
 
     def _rows(self) -> list[str]:
-        """Names of the balances: elements in the order of their first use, charge, inert species."""
+        """Names of the balances: elements in the order of their first use, charge, inert species, constraints."""
         active = [record for record in self.records if record.name not in self.inert]
         symbols = dict.fromkeys(symbol for record in active for symbol in record.elements)
         charge = [CHARGE] if any(record.charge for record in active) else []
-        return [*symbols, *charge, *(f"inert {name}" for name in self.inert)]
+        return [*symbols, *charge, *(f"inert {name}" for name in self.inert), *map(constraint_row, self.constraints)]
+
+    def _known(self, parts: Mapping[str, float]) -> dict[str, float]:
+        """Coefficients by the names of this system, without those that are zero."""
+        return {self.name_of(name): float(value) for name, value in parts.items() if value}
+
+    def _entry(self, record: Species, row: str) -> float:
+        """Entry of the element matrix: an inert species counts in its own row and in constraints only."""
+        name = next((name for name in self.constraints if constraint_row(name) == row), None)
+        if name is not None:
+            return self.constraints[name].get(record.name, 0.0)
+        if record.name in self.inert:
+            return float(row == f"inert {record.name}")
+        return float(record.charge) if row == CHARGE else record.elements.get(row, 0.0)
 
     @cached_property
     def table(self) -> Table:
@@ -192,7 +235,7 @@ class System:
         Returns
         -------
         (E,) array
-            Amount of each element, [mol], in the order of ``elements``.
+            Amount of each element, [mol], in the order of ``elements``; of a constraint what the feed itself has.
 
         Raises
         ------
@@ -205,7 +248,7 @@ class System:
             if amount < 0.0:
                 raise FeedError(f"the amount of {name} is negative: {value}")
             record = self.records[self.index[name]] if name in self.index else load().get(name)
-            column = [_atoms(record, row, self.inert) for row in self.elements]
+            column = [self._entry(record, row) for row in self.elements]
             parts = [*record.elements, CHARGE] if record.charge else list(record.elements)
             missing = [] if record.name in self.inert else [part for part in parts if part not in self.elements]
             if amount > 0.0 and missing:
@@ -219,8 +262,6 @@ class System:
         return f"System({' '.join(self.elements)}: {gases} gases, {condensed} condensed)"
 
 
-def _atoms(record: Species, row: str, inert: tuple[str, ...]) -> float:
-    """Entry of the element matrix: an inert species counts in its own row only."""
-    if record.name in inert:
-        return float(row == f"inert {record.name}")
-    return float(record.charge) if row == CHARGE else record.elements.get(row, 0.0)
+def constraint_row(name: str) -> str:
+    """Name of the balance that a constraint is."""
+    return f"constraint {name}"

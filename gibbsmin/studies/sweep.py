@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
-from typing import TYPE_CHECKING, Final
+from typing import TYPE_CHECKING, Any, Final
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -53,6 +53,7 @@ def solve_in_chunks(
     element_amounts: Floats,
     held: Mapping[str, Floats],
     progress: Progress | None = None,
+    approach: Mapping[str, Floats] | None = None,
 ) -> Batch:
     """Solve many states, a chunk at a time.
 
@@ -61,11 +62,13 @@ def solve_in_chunks(
     system : System
         What may form.
     element_amounts : array (states, E)
-        Amount of each element, [mol].
+        Amount of each element, and what each constraint holds, [mol].
     held : mapping of str to array (states,)
         The two held conditions by the names that `equilibria` takes, in SI.
     progress : callable, optional
         Called after each chunk.
+    approach : mapping of str to array (states,), optional
+        Approach temperatures of reactions of the system, [K].
 
     Returns
     -------
@@ -77,7 +80,9 @@ def solve_in_chunks(
     for start in range(0, states, CHUNK):
         part = slice(start, start + CHUNK)
         conditions = {name: values[part] for name, values in held.items()}
-        done.append(equilibria(system, element_amounts=element_amounts[part], **conditions))
+        changes = {name: values[part] for name, values in (approach or {}).items()}
+        pair: dict[str, Any] = {**conditions, "approach": changes}
+        done.append(equilibria(system, element_amounts=element_amounts[part], **pair))
         if progress is not None:
             progress(min(start + CHUNK, states), states)
     return _joined(done)
@@ -87,7 +92,10 @@ def _joined(parts: Sequence[Batch]) -> Batch:
     """Put the states of several batches of one system behind each other."""
     first = parts[0]
     outcome = type(first.outcome)(*map(np.concatenate, zip(*(part.outcome for part in parts), strict=True)))
-    return Batch(first.system, outcome)
+    offset = (
+        None if first.offset is None else np.concatenate([part.offset for part in parts if part.offset is not None])
+    )
+    return Batch(first.system, outcome, offset)
 
 
 def sweep(
