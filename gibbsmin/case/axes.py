@@ -38,6 +38,10 @@ _LIMITS: Final = {
     "steam_to_carbon": Limits(("1",), highest=LARGEST_RATIO),
     "air_ratio": Limits(("1",), highest=LARGEST_RATIO),
     "excess_air": Limits(("1",), lowest=-100.0, highest=LARGEST_RATIO),
+    "equivalence_ratio": Limits(("1",), above=True, highest=LARGEST_RATIO),
+    "oxygen_to_carbon": Limits(("1",), highest=LARGEST_RATIO),
+    "mole_ratio": Limits(("1",), highest=LARGEST_RATIO),
+    "mass_ratio": Limits(("1",), highest=LARGEST_RATIO),
 }
 
 

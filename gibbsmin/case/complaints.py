@@ -3,27 +3,18 @@
 from __future__ import annotations
 
 import sys
-from typing import Any, Final
+from collections.abc import Iterator
+from typing import Any, Final, get_args
 
 from pydantic import ValidationError
 
-from gibbsmin.case.axes import Axis
-from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError, Table
-from gibbsmin.case.held_schema import Held, Surroundings
+from gibbsmin.case.held_schema import Held
 from gibbsmin.case.lines import Key
-from gibbsmin.case.schema import Case, Show, SpeciesTable
+from gibbsmin.case.schema import Case
 from gibbsmin.case.source import Source, dotted
 from gibbsmin.errors import CaseError, nearest
 
-_TABLES: Final[dict[str, type[Table]]] = {
-    "species": SpeciesTable,
-    "feeds": Feed,
-    "held": Held,
-    "surroundings": Surroundings,
-    "sweep": Axis,
-    "show": Show,
-}
 _EXPECTED: Final = {
     "float_type": "a number",
     "int_type": "a whole number",
@@ -112,7 +103,7 @@ def _unknown(key: Key) -> str:
         energy = {"enthalpy": "heat", "internal_energy": "heat"}
         hint = f"; its place is taken by {energy[word]}, counted from the feeds" if word in energy else ""
         return f"cannot be held in a case{hint}{_choices(word, keys_of(Held))}"
-    known = keys_of(_TABLES[str(key[0])])
+    known = keys_of(_table_at(key[:-1]))
     return f"there is no key of this name{_choices(word, known)}"
 
 
@@ -125,9 +116,26 @@ def keys_of(table: type[Table]) -> list[str]:
     return [field.alias or name for name, field in table.model_fields.items()]
 
 
+def _table_at(key: Key) -> type[Table]:
+    """Kind of the table at a path; names of feeds and numbers of list entries lead on to what they are."""
+    table: type[Table] = Case
+    for part in key:
+        field = next((one for name, one in table.model_fields.items() if (one.alias or name) == part), None)
+        table = table if field is None else next(_tables_in(field.annotation), table)
+    return table
+
+
+def _tables_in(annotation: Any) -> Iterator[type[Table]]:
+    """Kinds of tables that an annotation holds."""
+    if isinstance(annotation, type) and issubclass(annotation, Table):
+        yield annotation
+    for part in get_args(annotation):
+        yield from _tables_in(part)
+
+
 def _purpose(key: Key) -> str:
     """Say what a missing key is for, with an example."""
-    table: type[Table] = Case if len(key) == 1 else _TABLES[str(key[0])]
+    table = _table_at(key[:-1])
     field = next((one for name, one in table.model_fields.items() if (one.alias or name) == key[-1]), None)
     if field is None or not field.examples:
         return f"expected {dotted(key)}"

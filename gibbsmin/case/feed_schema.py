@@ -6,6 +6,7 @@ from typing import Annotated, Any, Final, Literal
 
 from pydantic import Field, field_validator, model_validator
 
+from gibbsmin.case.air_schema import MOISTURES, AirKeys
 from gibbsmin.case.fields import (
     LARGEST_RATIO,
     Amount,
@@ -15,12 +16,13 @@ from gibbsmin.case.fields import (
     Ratio,
     RuleError,
     Share,
-    Table,
     Temperature,
+    Text,
 )
 
 COMPOSITIONS: Final = (
     "mole_percent",
+    "volume_percent",
     "mole_fraction",
     "mass_percent",
     "mass_fraction",
@@ -31,23 +33,48 @@ COMPOSITIONS: Final = (
 )
 """Keys that say what a feed is made of; a feed has one of them."""
 
-RATIOS: Final = ("steam_to_carbon", "air_ratio", "excess_air")
+OXYGEN_RATIOS: Final = ("air_ratio", "excess_air", "equivalence_ratio")
+"""Keys that size an air feed by what all feeds need to burn."""
+
+PLAIN_RATIOS: Final = ("mole_ratio", "mass_ratio")
+"""Keys that size a feed by amount or mass of other feeds, those of ``to``."""
+
+RATIOS: Final = ("steam_to_carbon", "oxygen_to_carbon", *OXYGEN_RATIOS, *PLAIN_RATIOS)
 """Keys that size a feed against the other feeds."""
 
 SIZES: Final = ("flow", "amount", *RATIOS)
 """Keys that say how much of a feed there is; a feed has one of them."""
 
+_GO_WITH: Final[dict[str, tuple[str, ...]]] = {
+    "to": PLAIN_RATIOS,
+    "per": ("mass_ratio",),
+    "carbon_dioxide_in_air": ("composition",),
+    "oxygen_mole_percent": ("composition",),
+    "enriched_with": ("oxygen_mole_percent",),
+    "humidity_temperature": ("relative_humidity", "wet_bulb"),
+    "humidity_pressure": ("relative_humidity", "wet_bulb", "dew_point"),
+}
+"""Keys that say something only beside one of others."""
+
 TOLERANCE: Final = 0.5
 """By how much the sum of percentages may miss 100."""
 
 
-class Feed(Table):
+class Feed(AirKeys):
     """One feed: what it is made of, how much of it, and where known its temperature and pressure."""
 
     mole_percent: dict[str, Share] | None = Field(
         default=None,
         description="Composition by species in mole percent; must sum to 100 within 0.5 and is then normalised.",
         examples=[{"CH4": 93.0, "C2H6": 4.0, "N2": 2.0, "CO2": 1.0}],
+    )
+    volume_percent: dict[str, Share] | None = Field(
+        default=None,
+        description=(
+            "Composition of a gas by species in volume percent: mole percent of an ideal gas. Must sum to 100 "
+            "within 0.5 and is then normalised."
+        ),
+        examples=[{"CH4": 60.0, "CO2": 40.0}],
     )
     mole_fraction: dict[str, Share] | None = Field(
         default=None,
@@ -82,11 +109,6 @@ class Feed(Table):
         examples=[{"CH4": "3 kmol/h", "O2": "6 kmol/h"}, {"CO": 1.0, "H2": 2.0}],
     )
     species: str | None = Field(default=None, description="The one species that the feed is.", examples=["H2O"])
-    composition: Literal["air"] | None = Field(
-        default=None,
-        description="Named composition. air: dry air of ISO 2533, N2 78.084, O2 20.9476, Ar 0.934, CO2 0.0314 mole %.",
-        examples=["air"],
-    )
     flow: Flow | None = Field(
         default=None,
         description="Size as a flow of substance or mass; a bare number is mol/s. Nm3 is at 0 degC and 101325 Pa.",
@@ -100,21 +122,68 @@ class Feed(Table):
     steam_to_carbon: Ratio | None = Field(
         default=None,
         description=(
-            "Size by ratio: mol H2O in this feed per mol C in the other feeds. Carbon of hydrocarbons, oxygenates, "
-            "ultimate analyses and pure carbon counts; that of CO, CO2 and other compounds without hydrogen does not."
+            "Size by ratio: mol H2O in this feed per mol C in the other feeds; water in other feeds does not count. "
+            "Carbon of hydrocarbons, oxygenates, fuels by analysis and pure carbon counts; that of CO, CO2 and other "
+            "compounds without hydrogen does not."
         ),
         examples=[3.0],
+    )
+    oxygen_to_carbon: Ratio | None = Field(
+        default=None,
+        description=(
+            "Size by ratio: mol O2 (not O) in this feed per mol C in the other feeds; oxygen in other feeds does not "
+            "count. Carbon counts as for steam_to_carbon."
+        ),
+        examples=[0.6],
     )
     air_ratio: Ratio | None = Field(
         default=None,
         description=(
-            "Size by ratio: O2 in this feed over what the other feeds need to burn to CO2, H2O, SO2, N2, HCl, HF and "
-            "the usual oxides of ash. Oxygen that the other feeds hold is taken off their need."
+            "Size by ratio: O2 that is supplied over O2 that all feeds need to burn to CO2, H2O, SO2, N2, HCl, HF and "
+            "the usual oxides of ash. Supplied is the O2 of this feed and of every other oxidant: a feed that holds O2,"
+            " and more of it than burns what else it holds. Oxygen in a fuel is taken off its need."
         ),
         examples=[1.15],
     )
     excess_air: Annotated[float, Field(ge=-100.0, le=LARGEST_RATIO, allow_inf_nan=False)] | None = Field(
         default=None, description="Size by ratio, in percent: 100 (air ratio - 1).", examples=[15.0]
+    )
+    equivalence_ratio: Annotated[Ratio, Field(gt=0.0)] | None = Field(
+        default=None,
+        description=(
+            "Size of the air by ratio, as burners have it: fuel over air, divided by the same at the stoichiometric "
+            "point: 1/(air ratio), below 1 where the flame is lean. What gasification calls equivalence ratio is the "
+            "inverse, the air_ratio."
+        ),
+        examples=[0.5],
+    )
+    mole_ratio: Ratio | None = Field(
+        default=None,
+        description="Size by ratio: mol of this feed per mol of the feed that `to` names, or of all other feeds.",
+        examples=[3.0],
+    )
+    mass_ratio: Ratio | None = Field(
+        default=None,
+        description="Size by ratio: kg of this feed per kg of the feed that `to` names, or of all other feeds.",
+        examples=[0.85],
+    )
+    to: Text | None = Field(
+        default=None,
+        description="The feed that mole_ratio or mass_ratio counts; all other feeds unless given.",
+        examples=["coal"],
+    )
+    per: Literal["as received", "dry", "dry ash-free"] | None = Field(
+        default=None,
+        description=(
+            "What mass_ratio counts of the other feed: all of it (as received) unless given, or without its water, or "
+            "without its water and ash."
+        ),
+        examples=["dry"],
+    )
+    frozen: bool = Field(
+        default=False,
+        description="Whether the feed keeps its composition: it mixes and takes up heat, but nothing in it reacts.",
+        examples=[True],
     )
     temperature: Temperature | None = Field(
         default=None,
@@ -125,7 +194,7 @@ class Feed(Table):
         default=None, description="Pressure of the feed, absolute. A bare number is Pa.", examples=["26 bar"]
     )
 
-    @field_validator("mole_percent", "mass_percent", "ultimate_percent")
+    @field_validator("mole_percent", "volume_percent", "mass_percent", "ultimate_percent", "enriched_with")
     @classmethod
     def _sums_to_100(cls, value: dict[str, float]) -> dict[str, float]:
         return _sums(value, 100.0)
@@ -155,6 +224,22 @@ class Feed(Table):
         elif len(sized) != 1:
             found = f"has {' and '.join(sized)}" if sized else "does not say how much of it there is"
             raise RuleError(f"the feed {found}; give exactly one of {', '.join(SIZES)}", *sized[1:2])
+        return self
+
+    @model_validator(mode="after")
+    def _keys_that_go_together(self) -> Feed:
+        moist = self.given(MOISTURES)
+        if len(moist) > 1:
+            raise RuleError(f"the feed has {' and '.join(moist)}; one of them says how moist it is", moist[1])
+        for key, needed in _GO_WITH.items():
+            if self.given((key,)) and not self.given(needed):
+                raise RuleError(f"{key} goes with {' or '.join(needed)}, and the feed has none", key)
+        if moist and self.amounts is not None:
+            raise RuleError(f"amounts says what the feed holds, so {moist[0]} cannot; add its H2O there", moist[0])
+        if self.altitude is not None and self.pressure is not None and not self.given(_GO_WITH["humidity_pressure"]):
+            raise RuleError(
+                "altitude says nothing here: the feed has its pressure, and no humidity needs it", "altitude"
+            )
         return self
 
     def given(self, keys: tuple[str, ...]) -> list[str]:

@@ -70,11 +70,14 @@ def _plain_number(value: Any, info: ValidationInfo) -> float:
 Text = Annotated[str, StringConstraints(min_length=1, strip_whitespace=True)]
 Temperature = Annotated[float | str, _measured("K", above_zero=True)]
 Pressure = Annotated[float | str, _measured("Pa", above_zero=True)]
+Length = Annotated[float | str, _measured("m", signed=True)]
 Volume = Annotated[float | str, _measured("m3", above_zero=True, word=OF_FEEDS)]
 Heat = Annotated[float | str, _measured("W", "J", signed=True)]
 Flow = Annotated[float | str, _measured("mol/s", "kg/s")]
 Amount = Annotated[float | str, _measured("mol", "kg")]
 AmountOrFlow = Annotated[float | str, _measured("mol", "kg", "mol/s", "kg/s")]
+HeatOfMass = Annotated[float | str, _measured("J/kg", above_zero=True)]
+Density = Annotated[float | str, _measured("kg/m3", above_zero=True)]
 Number = Annotated[
     float, BeforeValidator(_plain_number), WithJsonSchema({"anyOf": [{"type": "number"}, {"type": "string"}]})
 ]

@@ -11,17 +11,18 @@ from typing import Final
 
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError, in_si
+from gibbsmin.case.moist_gas import air_as_fed, moistened, pressure_of
 from gibbsmin.elements import ATOMIC_WEIGHT
 from gibbsmin.errors import FeedError, SpeciesError
-from gibbsmin.practice.ratios import counted_carbon
+from gibbsmin.practice.ratios import counted_carbon, oxygen_need
 from gibbsmin.thermo.record import Species
 from gibbsmin.units import one_of
 
-DRY_AIR: Final = {"N2": 0.78084, "O2": 0.209476, "Ar": 0.00934, "CO2": 0.000314}
-"""Mole fractions of dry air, [-]; ISO 2533:1975, without its traces, which sum to 3e-5; normalised before use."""
-
 ANY_SIZE: Final = ("mol", "kg", "mol/s", "kg/s")
 """SI units of amounts and flows."""
+
+FROZEN: Final = " [frozen]"
+"""Ends the name of a species of a frozen feed, which is one of its own."""
 
 Find = Callable[[str], Species]
 
@@ -46,6 +47,11 @@ class Recipe:
         Units [mol, kg, or either per second]; for a ratio its own value.
     temperature, pressure : float or None
         Of the feed, [K] and [Pa].
+    inert : frozenset of str
+        Names of those of its species that take no part.
+    to, per : str
+        Feed that a ratio of amount or mass counts, none for all others, and what of it: ``"as received"``, ``"dry"``
+        or ``"dry ash-free"``.
     """
 
     name: str
@@ -57,6 +63,9 @@ class Recipe:
     size: float
     temperature: float | None
     pressure: float | None
+    inert: frozenset[str] = frozenset()
+    to: str = ""
+    per: str = "as received"
 
     @property
     def elements(self) -> dict[str, float]:
@@ -78,6 +87,10 @@ class Recipe:
         """Amount of gas in one unit, [mol]."""
         return sum(n for record, n in self.species.items() if not record.condensed)
 
+    def of_species(self, name: str) -> float:
+        """Amount in one unit of the species of this name, [mol]."""
+        return sum(n for record, n in self.species.items() if record.name == name)
+
     def of_composition(self, **elements: float) -> float:
         """Amount in one unit of species that are made of just these atoms, [mol]."""
         return sum(n for record, n in self.species.items() if dict(record.elements) == elements and not record.charge)
@@ -87,6 +100,16 @@ class Recipe:
         """Carbon in one unit that counts for steam to carbon, [mol]."""
         known = sum(n * counted_carbon(record.elements) for record, n in self.species.items())
         return known + self.atoms.get("C", 0.0)
+
+    @property
+    def reacting(self) -> Recipe:
+        """What is left of it without the species that take no part."""
+        return replace(self, species={one: n for one, n in self.species.items() if one.name not in self.inert})
+
+    def mass_per(self, basis: str) -> float:
+        """Mass of one unit as received, dry or dry ash-free, [kg]; ash is what is solid and neither water nor fuel."""
+        left_out = {"as received": (), "dry": ("water",), "dry ash-free": ("water", "ash")}[basis]
+        return self.mass - sum(n * one.molar_mass for one, n in self.species.items() if _kind(one) in left_out)
 
     def units(self, value: float, unit: str) -> float:
         """Convert a size to a number of units; ``unit`` is mol, kg, or either per second."""
@@ -134,27 +157,51 @@ def read_recipe(name: str, feed: Feed, find: Find) -> Recipe:
             raise RuleError(str(error), *at) from None
         if record in records:
             raise RuleError(f"{label!r} names {record.name!r}, which is named before; give each species once", *at)
+        if key == "volume_percent" and record.condensed:
+            raise RuleError(f"a volume percent is that of a gas, and {label} is none; give mole or mass percent", *at)
         records[record] = share / record.molar_mass if _by_weight(feed, label) else share
     whole = sum(given.values()) if by_mass else sum(records.values())
     if not whole > 0.0:
         raise RuleError("holds nothing; at least one amount must be above zero", key)
     recipe = Recipe(
         name,
-        {record: n / whole for record, n in records.items() if n > 0.0},
+        moistened(feed, {record: n / whole for record, n in records.items() if n > 0.0}, find),
         {symbol: n / whole for symbol, n in atoms.items() if n > 0.0},
         by_mass,
         key,
         feed.sized_by,
         whole,
         None if feed.temperature is None else in_si(feed.temperature, "K"),
-        None if feed.pressure is None else in_si(feed.pressure, "Pa"),
+        pressure_of(feed),
+        to=feed.to or "",
+        per=feed.per or "as received",
     )
+    if feed.frozen:
+        recipe = _frozen(recipe)
     if feed.sized_by == "amounts":
         return recipe
     try:
         return replace(recipe, size=recipe.units(*feed_size(feed)))
     except FeedError as error:
         raise RuleError(str(error), feed.sized_by) from None
+
+
+def _kind(record: Species) -> str:
+    """Tell water and ash, as analyses count them, from the rest."""
+    if dict(record.elements) == {"H": 2.0, "O": 1.0}:
+        return "water"
+    try:
+        return "ash" if record.condensed and oxygen_need(record.elements) <= 0.0 else "fuel"
+    except FeedError:  # made of something whose oxide is a matter of choice
+        return "ash"
+
+
+def _frozen(recipe: Recipe) -> Recipe:
+    """Give the species of a frozen feed names of their own, so that they are balanced by themselves."""
+    if recipe.atoms:
+        raise RuleError("a feed known by its elements cannot be frozen; give it by species", "frozen")
+    species = {replace(record, name=record.name + FROZEN, aliases=()): n for record, n in recipe.species.items()}
+    return replace(recipe, species=species, inert=frozenset(record.name for record in species))
 
 
 def feed_size(feed: Feed) -> tuple[float, str]:
@@ -171,7 +218,7 @@ def _given(feed: Feed) -> dict[str, float]:
     if feed.species is not None:
         return {feed.species: 1.0}
     if feed.composition is not None:
-        return dict(DRY_AIR)
+        return air_as_fed(feed)[0]
     if feed.amounts is not None:
         return {label: in_si(value, *ANY_SIZE) for label, value in feed.amounts.items()}
     shares: dict[str, float] = getattr(feed, feed.made_of)

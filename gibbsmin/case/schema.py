@@ -11,6 +11,7 @@ from gibbsmin.case.axes import MAX_STATES, Axis, axis_values
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import Number, RuleError, Table, Text
 from gibbsmin.case.held_schema import Held, Surroundings
+from gibbsmin.case.rules_schema import Approach, Constraint, Percent
 
 FROM_FEEDS: Final = "from feeds"
 MAX_AXES: Final = 2
@@ -18,7 +19,7 @@ MAX_AXES: Final = 2
 
 Names = list[Text]
 NAME: Final = r"^[A-Za-z0-9_-]{1,40}$"
-"""What the name of a feed may be."""
+"""What the name of a feed, a reaction or a constraint may be."""
 
 
 class SpeciesTable(Table):
@@ -42,6 +43,22 @@ class SpeciesTable(Table):
         description="Species that pass through without reacting; their atoms take no part.",
         examples=[["Ar"]],
     )
+    conversion: dict[Text, Percent] | None = Field(
+        default=None,
+        description=(
+            "Given conversion of a species, in percent of what the feeds bring: the rest of it leaves as it came, and "
+            "no more of it forms."
+        ),
+        examples=[{"CH4": 85.0}],
+    )
+    carbon_conversion: Percent | None = Field(
+        default=None,
+        description=(
+            "Given conversion of the carbon of fuels, in percent: the rest leaves as graphite of the temperature of "
+            "the mixture and takes no part. Carbon counts as for steam_to_carbon."
+        ),
+        examples=[98.0],
+    )
     files: Names = Field(
         default=[],
         description="Files of own species (TOML), in the folder of the case.",
@@ -54,6 +71,9 @@ class SpeciesTable(Table):
         clash = [key for key, value in usual.items() if getattr(self, key) != value]
         if self.allow is not None and clash:
             raise RuleError(f"allow lists every species that may form; leave out {' and '.join(clash)}", clash[0])
+        twice = [name for name in self.conversion or {} if name in (*self.inert, *self.exclude)]
+        if twice:
+            raise RuleError(f"{twice[0]} has a given conversion and is inert or excluded; choose one", "conversion")
         if self.allow is not None and not self.allow:
             raise RuleError("lists no species; name at least one, or leave allow out", "allow")
         return self
@@ -93,6 +113,18 @@ class Case(Table):
         description="The table [held]: the two conditions that stay fixed while the mixture settles.",
         examples=[{"temperature": "870 degC", "pressure": "24 bar"}, {"adiabatic": True, "pressure": "1 bar"}],
     )
+    approach: dict[str, Approach] = Field(
+        default={},
+        json_schema_extra={"propertyNames": {"pattern": NAME}},
+        description="Reactions that stop short of equilibrium: a table each, [approach.NAME].",
+        examples=[{"reforming": {"reaction": "CH4 + H2O = CO + 3 H2", "temperature": "-10 K"}}],
+    )
+    constraint: dict[str, Constraint] = Field(
+        default={},
+        json_schema_extra={"propertyNames": {"pattern": NAME}},
+        description="Sums of amounts that are held: a table each, [constraint.NAME].",
+        examples=[{"slip": {"amounts": {"CH4": 1.0}, "sum": "5 kmol/h"}}],
+    )
     surroundings: Surroundings = Field(
         default=Surroundings(),
         description="The table [surroundings]: the place around, for the second-law account.",
@@ -115,10 +147,12 @@ class Case(Table):
             raise RuleError("there are no feeds; add at least one table [feeds.NAME]", "feeds")
         if len(self.sweep) > MAX_AXES:
             raise RuleError(f"{len(self.sweep)} inputs are varied; at most {MAX_AXES} can be", "sweep", MAX_AXES)
-        for name in self.feeds:
-            if not re.search(NAME, name):
-                message = f"{name!r} will not do as the name of a feed; use up to 40 letters, digits, _ and -"
-                raise RuleError(message, "feeds", name)
+        tables = (("feeds", "feed", self.feeds), ("approach", "reaction", self.approach))
+        for table, kind, named in (*tables, ("constraint", "constraint", self.constraint)):
+            for name in named:
+                if not re.search(NAME, name):
+                    message = f"{name!r} will not do as the name of a {kind}; use up to 40 letters, digits, _ and -"
+                    raise RuleError(message, table, name)
         for number, axis in enumerate(self.sweep):
             if axis.vary in [earlier.vary for earlier in self.sweep[:number]]:
                 raise RuleError(f"{axis.vary} is varied twice", "sweep", number, "vary")

@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import Find, Recipe
+from gibbsmin.case.rules import Rules
 from gibbsmin.case.schema import FROM_FEEDS, SpeciesTable
 from gibbsmin.elements import ATOMIC_WEIGHT, CHARGE
 from gibbsmin.errors import InputError, SpeciesError, nearest
@@ -29,7 +30,7 @@ def finder(own: Sequence[Species]) -> Find:
     return find
 
 
-def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[Species]) -> System:
+def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[Species], rules: Rules) -> System:
     """Make the system that a case asks for.
 
     Parameters
@@ -40,6 +41,8 @@ def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[
         The feeds, for their elements.
     own : sequence of Species
         Species of the user's own files.
+    rules : Rules
+        Conversions, constraints and approach temperatures.
 
     Returns
     -------
@@ -54,16 +57,19 @@ def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[
     allow = _found(table.allow or [], "allow", find)
     exclude = _found(table.exclude, "exclude", find)
     inert = _found(table.inert, "inert", find)
-    inert_names = [record.name for record in inert]
+    inert += [record for recipe in recipes for record in recipe.species if record.name in recipe.inert]
+    inert_names = list(dict.fromkeys(record.name for record in inert))
+    added = {record.name: record for record in (*inert, *rules.needed)}
+    rows = {"constraints": rules.constraints, "approaches": rules.approaches}
     try:
         if allow:
-            listed = [*allow, *(record for record in inert if record not in allow)]
-            return System.from_species(listed, inert=inert_names)
+            listed = {record.name: record for record in allow} | added
+            return System.from_species(list(listed.values()), inert_names, **rows)
         elements = _elements(table, recipes, inert)
-        names = [record.name for record in exclude]
-        ours = [record for record in own if record in inert or _wanted(record, table, elements)]
+        names = [record.name for record in exclude if record not in rules.needed]
+        ours = [*(record for record in own if _wanted(record, table, elements)), *added.values()]
         return System.from_elements(
-            elements, condensed=table.condensed, ions=table.ions, exclude=names, inert=inert_names, extra=ours
+            elements, condensed=table.condensed, ions=table.ions, exclude=names, inert=inert_names, extra=ours, **rows
         )
     except RuleError:
         raise

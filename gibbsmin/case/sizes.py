@@ -3,18 +3,25 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from typing import Final
 
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.case.feed_schema import RATIOS, Feed
+from gibbsmin.case.feed_schema import OXYGEN_RATIOS, PLAIN_RATIOS, RATIOS, Feed
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import ANY_SIZE, Recipe, feed_size
-from gibbsmin.errors import FeedError
-from gibbsmin.practice.ratios import oxygen_need
+from gibbsmin.errors import FeedError, nearest
+from gibbsmin.practice.ratios import supply_and_need
 from gibbsmin.units import one_of
 
 Floats = NDArray[np.float64]
+
+_ASKED_FOR: Final = {
+    **dict.fromkeys(("steam_to_carbon", "oxygen_to_carbon"), "carbon that counts"),
+    "mole_ratio": "amount",
+    "mass_ratio": "mass",
+}
 
 
 def read_basis(feeds: Mapping[str, Feed]) -> str:
@@ -74,64 +81,107 @@ def feed_units(recipes: Sequence[Recipe], sizes: Mapping[str, Floats | float]) -
 
     Notes
     -----
-    A feed k sized by a ratio r_k brings q_k of the wanted substance a unit and answers to the needs c_j of the other
-    feeds: q_k s_k - r_k sum_{j != k} c_j s_j = 0. The feeds that are so sized follow from one linear system.
+    A feed k sized by a ratio r_k sets one linear equation, sum_j (b_j - r_k c_j) s_j = 0: what the feeds bring, b, and
+    what they ask for, c, a unit. Feed k alone brings, and the others alone ask for it, save for the air ratio: there
+    every oxidant brings its O2, and all feeds ask for what they need to burn. The feeds so sized follow together.
     """
     size = np.stack(np.broadcast_arrays(*(np.atleast_1d(np.asarray(sizes[r.name], float)) for r in recipes)), axis=1)
-    ratio_of = [k for k, recipe in enumerate(recipes) if recipe.sized_by in RATIOS]
-    if not ratio_of:
+    sized = [k for k, recipe in enumerate(recipes) if recipe.sized_by in RATIOS]
+    if not sized:
         return size
-    known = [k for k in range(len(recipes)) if k not in ratio_of]
-    matrix = np.zeros((len(size), len(ratio_of), len(ratio_of)))
-    right = np.zeros((len(size), len(ratio_of), 1))
-    for row, k in enumerate(ratio_of):
-        key = recipes[k].sized_by
-        ratio = size[:, k] if key != "excess_air" else 1.0 + size[:, k] / 100.0
-        brings, needs = _brings_and_needs(recipes, k)
-        matrix[:, row, row] = brings
-        for column, j in enumerate(ratio_of):
-            if j != k:
-                matrix[:, row, column] = -ratio * needs[j]
-        right[:, row, 0] = ratio * (size[:, known] @ needs[known])
+    known = [k for k in range(len(recipes)) if k not in sized]
+    brings, asks = (np.array(one) for one in zip(*(_brought_and_asked(recipes, k) for k in sized), strict=True))
+    ratio = np.stack([_ratio(recipes[k].sized_by, size[:, k]) for k in sized], axis=1)
+    rows = brings - ratio[:, :, None] * asks  # (states, ratios, F)
     try:
-        solved = np.linalg.solve(matrix, right)[:, :, 0]  # (states, ratios)
+        solved = np.linalg.solve(rows[:, :, sized], -(rows[:, :, known] @ size[:, known, None]))[:, :, 0]
     except np.linalg.LinAlgError:
-        solved = np.full(right.shape[:2], np.nan)
-    if not np.all(np.isfinite(solved) & (solved >= 0.0)):
-        raise RuleError("the ratios of the feeds contradict each other", recipes[ratio_of[0]].name)
+        solved = np.full((len(size), len(sized)), np.nan)
     units = size.copy()
-    units[:, ratio_of] = solved
-    for k in ratio_of:
-        _, needs = _brings_and_needs(recipes, k)
-        others = np.delete(np.arange(len(recipes)), k)
-        if np.any(units[:, others] @ needs[others] <= 0.0):
-            what = "carbon that counts" if recipes[k].sized_by == "steam_to_carbon" else "need of oxygen"
-            raise RuleError(
-                f"the other feeds have no {what}, so there is no ratio", recipes[k].name, recipes[k].sized_by
-            )
+    units[:, sized] = solved
+    for place, k in enumerate(sized):
+        _check(recipes, k, units, brings[place], asks[place])
     return units
 
 
-def _brings_and_needs(recipes: Sequence[Recipe], k: int) -> tuple[float, Floats]:
-    """Give what a unit of feed ``k`` brings, and what a unit of each feed needs of it, [mol]."""
+def _check(recipes: Sequence[Recipe], k: int, units: Floats, brings: Floats, asks: Floats) -> None:
+    """Refuse a ratio that no size of its feed meets."""
     name, key = recipes[k].name, recipes[k].sized_by
-    if key == "steam_to_carbon":
-        brings, needs = recipes[k].of_composition(H=2.0, O=1.0), [recipe.carbon for recipe in recipes]
-        what = "H2O"
-    else:
-        rivals = [recipe.name for recipe in recipes if recipe.sized_by in ("air_ratio", "excess_air")]
-        if len(rivals) > 1:
-            raise RuleError(f"{' and '.join(rivals)} are both sized by the need of oxygen; only one can be", name, key)
-        brings = recipes[k].of_composition(O=2.0)
-        needs = [0.0 if j == k else _need(recipe, name, key) for j, recipe in enumerate(recipes)]
-        what = "O2"
-    if not brings > 0.0:
-        raise RuleError(f"the feed holds no {what}, so {key} cannot size it", name, key)
-    return brings, np.array(needs)
+    others = [j for j in range(len(recipes)) if j != k]
+    if not np.all(np.isfinite(units)):
+        raise RuleError("the ratios of the feeds contradict each other", name, key)
+    asked, brought = units[:, others] @ asks[others], units[:, others] @ brings[others]
+    if np.any(asked <= 0.0):
+        what = _ASKED_FOR.get(key, "need of oxygen")
+        raise RuleError(f"the other feeds have no {what}, so there is no ratio", name, key)
+    if np.any(units[:, k] < 0.0):
+        worst = int(np.argmin(units[:, k]))
+        if brought[worst] > 0.0:
+            rivals = " and ".join(recipes[j].name for j in others if brings[j] > 0.0)
+            raise RuleError(
+                f"{rivals} alone gives an air ratio of {brought[worst] / asked[worst]:.4g}, more than is asked for",
+                name,
+                key,
+            )
+        raise RuleError("the ratios of the feeds contradict each other", name, key)
 
 
-def _need(recipe: Recipe, name: str, key: str) -> float:
+def _ratio(key: str, value: Floats) -> Floats:
+    """What is brought over what is asked for, from the value of a key."""
+    if key == "excess_air":
+        return 1.0 + value / 100.0
+    return 1.0 / value if key == "equivalence_ratio" else value
+
+
+def _brought_and_asked(recipes: Sequence[Recipe], k: int) -> tuple[Floats, Floats]:
+    """Give what a unit of each feed brings to the ratio of feed ``k``, and what it asks for, (F,) each."""
+    one, key = recipes[k], recipes[k].sized_by
+    if key in OXYGEN_RATIOS:
+        return _oxygen(recipes, k)
+    brings, asks = np.zeros(len(recipes)), np.zeros(len(recipes))
+    if key in PLAIN_RATIOS:
+        counted = _counted(recipes, k)
+        if key == "mole_ratio":
+            massive = next((recipes[j].name for j in (k, *counted) if recipes[j].by_mass), "")
+            if massive:
+                raise RuleError(f"{massive} is known by an analysis and has no moles; use mass_ratio", one.name, key)
+        brings[k] = 1.0 if key == "mole_ratio" else one.mass
+        asks[counted] = [1.0 if key == "mole_ratio" else recipes[j].mass_per(one.per) for j in counted]
+        return brings, asks
+    what, atoms = ("H2O", {"H": 2.0, "O": 1.0}) if key == "steam_to_carbon" else ("O2", {"O": 2.0})
+    brings[k] = one.reacting.of_composition(**atoms)
+    if not brings[k] > 0.0:
+        raise RuleError(f"the feed holds no {what}, so {key} cannot size it", one.name, key)
+    asks[:] = [0.0 if other is one else other.reacting.carbon for other in recipes]
+    return brings, asks
+
+
+def _oxygen(recipes: Sequence[Recipe], k: int) -> tuple[Floats, Floats]:
+    """Give the O2 that a unit of each feed supplies, and what it needs to burn, (F,) each."""
+    name, key = recipes[k].name, recipes[k].sized_by
+    rivals = [recipe.name for recipe in recipes if recipe.sized_by in OXYGEN_RATIOS]
+    if len(rivals) > 1:
+        raise RuleError(f"{' and '.join(rivals)} are both sized by the need of oxygen; only one can be", name, key)
     try:
-        return oxygen_need(recipe.elements)
+        live = [recipe.reacting for recipe in recipes]
+        balances = [supply_and_need(one.elements, one.of_composition(O=2.0)) for one in live]
     except FeedError as error:
         raise RuleError(str(error), name, key) from None
+    supply, need = (np.array(one) for one in zip(*balances, strict=True))
+    if not supply[k] > 0.0:
+        without = recipes[k].reacting.of_composition(O=2.0) == 0.0
+        why = "holds no O2" if without else "needs more oxygen to burn than it holds"
+        raise RuleError(f"the feed {why}, so {key} cannot size it", name, key)
+    return supply, need
+
+
+def _counted(recipes: Sequence[Recipe], k: int) -> list[int]:
+    """Say which feeds the ratio of feed ``k`` counts."""
+    one, names = recipes[k], [recipe.name for recipe in recipes]
+    if not one.to:
+        return [j for j in range(len(recipes)) if j != k]
+    if one.to == one.name or one.to not in names:
+        others = [name for name in names if name != one.name]
+        found = "is this feed itself" if one.to == one.name else f"is no feed{nearest(one.to, others)}"
+        raise RuleError(f"{one.to!r} {found}; the others are {', '.join(others) or 'none'}", one.name, "to")
+    return [names.index(one.to)]

@@ -17,6 +17,7 @@ from gibbsmin.case.described import describe
 from gibbsmin.case.feed_states import FeedStates
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import Recipe, read_recipe
+from gibbsmin.case.rules import Rules, read_rules
 from gibbsmin.case.schema import Case
 from gibbsmin.case.selection import choose_system, element_row, finder
 from gibbsmin.case.shown import shown_units
@@ -24,7 +25,7 @@ from gibbsmin.case.sizes import feed_units, read_basis
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge import judge
 from gibbsmin.results.result import FeedAmounts, Result
-from gibbsmin.states.system import System
+from gibbsmin.states.system import System, constraint_row
 from gibbsmin.studies.expansion import expansion
 from gibbsmin.studies.labelled import Axis
 from gibbsmin.studies.sweep import Progress, grid, solve_in_chunks
@@ -49,6 +50,8 @@ class Study:
         The varied inputs.
     basis : str
         ``"mol"``, or ``"mol/s"`` where the feeds are flows.
+    rules : Rules
+        Conversions, constraints and approach temperatures.
     path, sha256 : str
         The file and its checksum; empty where there is none.
     """
@@ -58,6 +61,7 @@ class Study:
     recipes: tuple[Recipe, ...]
     axes: tuple[AxisValues, ...]
     basis: str
+    rules: Rules
     path: str = ""
     sha256: str = ""
 
@@ -91,13 +95,14 @@ class Study:
             except RuleError as error:
                 raise RuleError(error.message, "feeds", name, *error.key) from None
         axes = tuple(axis_values(axis, case.feeds, case.held) for axis in case.sweep)
-        system = choose_system(case.species, recipes, own)
+        rules = read_rules(case, find, own)
+        system = choose_system(case.species, recipes, own, rules)
         try:
-            study = cls(case, system, tuple(recipes), axes, read_basis(case.feeds), path, sha256)
+            study = cls(case, system, tuple(recipes), axes, read_basis(case.feeds), rules, path, sha256)
             study.element_rows, study.units  # noqa: B018 - made here so that what is wrong shows before anything runs
         except RuleError as error:
             raise RuleError(error.message, "feeds", *error.key) from None
-        study.conditions  # noqa: B018 - likewise
+        study.conditions, study.element_amounts  # noqa: B018 - likewise
         return study
 
     @cached_property
@@ -129,6 +134,14 @@ class Study:
     def element_rows(self) -> Floats:
         """Element amounts in one unit of each feed, (F, E), [mol]."""
         return np.array([element_row(recipe, self.system) for recipe in self.recipes])
+
+    @cached_property
+    def element_amounts(self) -> Floats:
+        """Amount of each element, and what each constraint holds, in every state, (states, E), [mol or mol/s]."""
+        amounts = self.units @ self.element_rows
+        for name, values in self.rules.held(self.recipes, self.units, self.columns, self.basis).items():
+            amounts[:, self.system.elements.index(constraint_row(name))] = values
+        return amounts
 
     @cached_property
     def feeds(self) -> dict[str, FeedAmounts]:
@@ -183,10 +196,11 @@ class Study:
 
     def _solve(self, progress: Progress | None) -> Result:
         """Solve all states."""
-        conditions, elements = self.conditions, self.units @ self.element_rows
+        conditions, elements = self.conditions, self.element_amounts
         held = conditions.held
         if conditions.efficiency is None:
-            batch = solve_in_chunks(self.system, elements, held, progress)
+            approach = self.rules.approach(self.columns, self.states)
+            batch = solve_in_chunks(self.system, elements, held, progress, approach)
         else:
             inlet = conditions.account.feed_enthalpy
             assert inlet is not None, "the feeds were checked"

@@ -107,7 +107,7 @@ BAD = [
     ('threshold = "1 ppm"', 'threshold = "1 bar"', 27, "show.threshold", "expected a plain number"),
     ('threshold = "1 ppm"', "threshold = 1", 27, "show.threshold", "less than 1"),
     ('threshold = "1 ppm"', 'sort = "mass"', 27, "show.sort", "'amount' or 'name'"),
-    ("[show]", "[target]", 26, "target", "known here are title, species, feeds, held, surroundings, sweep"),
+    ("[show]", "[target]", 26, "target", "known here are title, species, feeds, held, approach, constraint"),
     ("[show]", "[[stage]]", 26, "stage", "no such table or key in this version"),
     ('title = "Tube outlet of an invented reformer"', "", None, "title", "is missing"),
     ('title = "Tube outlet of an invented reformer"', 'title = " "', 1, "title", "not empty"),
