@@ -42,6 +42,7 @@ _TABLE: Final = f"""
 0 1 0 0 0    | a mass                | kg 1  g 1e-3  t 1e3  lb 0.45359237
 0 1 -1 0 0   | a mass flow           |
 0 0 1 0 0    | a time                | s 1  min 60  h 3600  hr 3600  d 86400
+1 0 0 0 0    | a length              | m 1  km 1e3  ft 0.3048
 3 0 0 0 0    | a volume              | m3 1  L 1e-3  cm3 1e-6
 3 0 -1 0 0   | a volume flow         |
 -1 1 -2 0 0  | a pressure            | Pa 1  hPa 1e2  kPa 1e3  MPa 1e6  bar 1e5  mbar 1e2  atm {ATMOSPHERE} torr {ATMOSPHERE / 760}
@@ -144,9 +145,8 @@ def one_of(value: Measurable, units: tuple[str, ...], what: str) -> tuple[float,
     fitting = [unit for unit in units if typed and _dimension(typed, what, value) == _dimension(unit, what, unit)]
     if typed and not fitting:
         wanted = " or ".join(_wanted(unit, what) for unit in units)
-        raise UnitError(
-            f"{what}: {_short(value)} is {_kind(_dimension(typed, what, value))}, expected {wanted}{_hint(typed)}"
-        )
+        found = _kind(_dimension(typed, what, value))
+        raise UnitError(f"{what}: {_short(value)} is {found}, expected {wanted}{_hint(typed, units[0])}")
     unit = fitting[0] if fitting else units[0]
     return quantity(value, unit, what), unit
 
@@ -218,7 +218,8 @@ def _convert(number: float, typed: str, unit: str, what: str, value: object) -> 
     spelled, target = _spell(typed), _spell(unit)
     dimension, wanted = _dimension(typed, what, value), _dimension(unit, what, unit)
     if dimension != wanted:
-        raise UnitError(f"{what}: {_short(value)} is {_kind(dimension)}, expected {_wanted(unit, what)}{_hint(typed)}")
+        right = _wanted(unit, what) + _hint(typed, unit)
+        raise UnitError(f"{what}: {_short(value)} is {_kind(dimension)}, expected {right}")
     if spelled == target:
         return number
     if spelled in _SCALES:
@@ -300,8 +301,12 @@ def _wanted(unit: str, what: str) -> str:
     return _kind(_dimension(unit, what, unit)) + ("" if unit == "1" else f" ({unit})")
 
 
-def _hint(typed: str) -> str:
-    """Point out the two letters that mean a temperature to the trade and electricity to pint."""
+def _hint(typed: str, unit: str) -> str:
+    """Point out what the trade writes and a unit does not say: degrees by a letter, gas by a bare volume."""
+    if _dimension(unit, "unit", unit)[4] > 0.0 and _dimension(typed, "unit", typed)[:2] == (3.0, 0.0):
+        return (
+            "; a volume of gas is an amount only with its conditions: Nm3 (0 degC, 101325 Pa), Sm3 (15 degC, 101325 Pa)"
+        )
     hints = {"C": "; degrees Celsius are written degC", "F": "; degrees Fahrenheit are written degF"}
     return hints.get(typed.strip(), "")
 

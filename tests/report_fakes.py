@@ -81,6 +81,7 @@ class FakeFeed:
     """A feed's amounts."""
 
     amounts: dict[str, float]
+    temperature: float | None = None
 
 
 class FakeResult:
@@ -98,6 +99,7 @@ class FakeResult:
         self.held = {"temperature": self.batch.temperature.copy(), "pressure": self.batch.pressure.copy()}
         self.account = Account(feed_enthalpy=self.batch.enthalpy - 6.8e6)
         self.properties: dict[str, Any] = {}
+        self.key_figures: dict[str, Any] = {}
         varied = count > 1
         self.inputs = {"held.temperature": self.batch.temperature - 273.15} if varied else {}
         self.input_units = {"held.temperature": "degC"} if varied else {}

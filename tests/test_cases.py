@@ -87,14 +87,15 @@ def fed_to_furnace(air_ratio: float) -> dict[str, float]:
 
 def fed_to_gasifier() -> dict[str, float]:
     """Moles of elements, from 5 t/h of fuel and air at 0.35."""
-    analysis = {"C": 41.0, "H": 5.5, "O": 23.5, "N": 0.8, "S": 0.3, "Cl": 0.7, "H2O(l)": 15.2, "SiO2(s)": 6.0,
-                "Al2O3(s)": 2.2, "CaO(s)": 3.0, "Fe2O3(s)": 0.9, "Na2O(s)": 0.5, "K2O(s)": 0.4}  # fmt: skip
+    analysis = {"C": 41.0, "H": 5.5, "O": 23.5, "N": 0.8, "S": 0.3, "Cl": 0.7, "H2O(l)": 15.2}
+    ash = {"SiO2(s)": 46, "Al2O3(s)": 17, "CaO(s)": 23, "Fe2O3(s)": 7, "Na2O(s)": 4, "K2O(s)": 3}  # 13 % of the fuel
+    analysis |= {name: 0.13 * share for name, share in ash.items()}
     moles = {}
     for name, mass in scaled(analysis, 5e6 / 3600).items():  # g/s
         moles[name] = mass / sum(MASS[symbol] * count for symbol, count in atoms(name).items())
     # oxygen for CO2, H2O, SO2, HCl, less the fuel's own; water and oxides of the ash need none
     need = moles["C"] + moles["H"] / 4 + moles["S"] - moles["O"] / 2 - moles["Cl"] / 4
-    air = scaled({"N2": 0.78084, "O2": 0.209476, "Ar": 0.00934, "CO2": 0.000314}, 0.35 * need / 0.209476 * 0.99997)
+    air = scaled({"N2": 0.78087, "O2": 0.209476, "Ar": 0.00934, "CO2": 0.000314}, 0.35 * need / 0.209476)
     return elements({**moles, **air})
 
 
@@ -132,8 +133,7 @@ def test_furnace_elements_close(results: dict[str, Any]) -> None:
 
 def test_gasifier_elements_close(results: dict[str, Any]) -> None:
     for state in results["gasifier"][0]["states"]:
-        # the air of ISO 2533 sums to 0.99997 before it is normalised: hence a wider tolerance by hand
-        close(elements(state["amounts"]), fed_to_gasifier(), 1e-4)
+        close(elements(state["amounts"]), fed_to_gasifier(), 1e-9)
 
 
 @pytest.mark.parametrize("name", NAMES)
@@ -142,10 +142,6 @@ def test_energy_and_entropy_close_in_every_state(name: str, results: dict[str, A
     for state in results[name][0]["states"]:
         kind = "internal_energy" if "volume" in state["held"] else "enthalpy"
         fed = state[f"feed_{kind}"]
-        if fed is None:  # an ultimate analysis has no energy of its own
-            assert state["heat"] is None
-            assert state["audit"] is None
-            continue
         turnover = abs(state[kind]) + abs(fed)
         assert state[kind] - fed == pytest.approx(state["heat"] + state["work"], abs=1e-9 * turnover)
         audit = state["audit"]
@@ -188,7 +184,7 @@ def test_explosion_against_cantera(results: dict[str, Any]) -> None:
 
     gas = cantera.Solution("gri30.yaml")
     for ratio, state in along(results, "vessel_explosion", "feeds.air.air_ratio").items():
-        air = {"N2": 0.78084, "O2": 0.209476, "AR": 0.00934, "CO2": 0.000314}
+        air = {"N2": 0.78087, "O2": 0.209476, "AR": 0.00934, "CO2": 0.000314}
         amounts = {species: x * ratio * 2.0 / 0.209476 for species, x in air.items()}
         gas.TPX = 298.15, 101325.0, {**amounts, "CH4": 1.0}
         gas.equilibrate("UV", rtol=1e-10)
@@ -335,5 +331,4 @@ def test_the_cases_show_what_their_comments_promise(results: dict[str, Any]) -> 
     gasifier = results["gasifier"][0]["states"]
     assert gasifier[0]["amounts"]["C(s):graphite"] == 0.0  # 1200 degC
     assert gasifier[-1]["amounts"]["C(s):graphite"] > 0.0  # 500 degC
-    for salt in ("NaCl(s)", "KCl(s)"):
-        assert gasifier[-1]["amounts"][salt] > gasifier[0]["amounts"][salt] == 0.0
+    assert gasifier[-1]["amounts"]["NaCl(s)"] > gasifier[0]["amounts"]["NaCl(s)"] == 0.0

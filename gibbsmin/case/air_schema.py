@@ -12,16 +12,24 @@ MOISTURES: Final = ("relative_humidity", "dew_point", "wet_bulb", "humidity_rati
 """Keys that say how much water vapour a gas holds; a feed has at most one of them."""
 
 
+MEASURED_AT: Final[dict[str, tuple[str, ...]]] = {
+    "humidity_temperature": ("relative_humidity", "wet_bulb"),
+    "humidity_pressure": ("relative_humidity", "wet_bulb", "dew_point"),
+}
+"""Keys that say where a humidity was measured, with those that need it."""
+
+
 class AirKeys(Table):
     """What may be said of a feed that is air, or of one that is a gas known dry."""
 
-    composition: Literal["air"] | None = Field(
+    composition: Literal["air", "flue gas"] | None = Field(
         default=None,
         description=(
-            "Named composition. air: dry air of ISO 2533, N2 78.084, O2 20.9476, Ar 0.934, CO2 0.0314 mole %; its "
-            "water is given by relative_humidity or one of its like."
+            "Named composition. air: dry air of ISO 2533, O2 20.9476, Ar 0.934, CO2 0.0314 and N2 78.087 mole %, its "
+            "traces counted as N2; its water is given by relative_humidity or one of its like. flue gas: what "
+            "[flue_gas] freezes of the settled mixture, of which a part goes back."
         ),
-        examples=["air"],
+        examples=["air", "flue gas"],
     )
     carbon_dioxide_in_air: Annotated[Number, Field(ge=0.0, le=0.01)] | None = Field(
         default=None,

@@ -152,7 +152,9 @@ class AnalysisTable(Table):
         if self.basis == AIR_DRIED and self.moisture_percent is None and self.moisture_percent_dry is None:
             raise RuleError("an air-dried analysis needs moisture_percent too, the moisture of the fuel as received")
         if self.moisture_in_hydrogen and self.basis not in (AS_RECEIVED, AIR_DRIED):
-            raise RuleError(f"a {self.basis} analysis holds no moisture that H and O could count", "moisture_in_hydrogen")
+            raise RuleError(
+                f"a {self.basis} analysis holds no moisture that H and O could count", "moisture_in_hydrogen"
+            )
         return self
 
     @model_validator(mode="after")

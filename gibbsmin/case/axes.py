@@ -2,47 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Annotated, Any, Final, Literal, NamedTuple
+from typing import TYPE_CHECKING, Annotated, Any, Final, Literal
 
 from pydantic import Field, field_validator, model_validator
 
-from gibbsmin.case.feed_schema import SIZES, Feed
-from gibbsmin.case.fields import LARGEST, LARGEST_RATIO, OF_FEEDS, RuleError, Table, Text
-from gibbsmin.case.held_schema import Held
-from gibbsmin.case.sizes import read_basis
-from gibbsmin.errors import InputError, nearest
+from gibbsmin.case.fields import RuleError, Table, Text
+from gibbsmin.case.inputs import Limits, limits_of
+from gibbsmin.case.rules_schema import difference
+from gibbsmin.errors import InputError
 from gibbsmin.units import from_si, one_of, unit_of
+
+if TYPE_CHECKING:
+    from gibbsmin.case.schema import Case
 
 MAX_STATES: Final = 100_000
 """Largest number of states that one case may ask for."""
-
-
-class Limits(NamedTuple):
-    """What an input may be: SI ``units``, ``lowest`` (itself allowed unless ``above``), ``highest``."""
-
-    units: tuple[str, ...]
-    lowest: float = 0.0
-    above: bool = False
-    highest: float = LARGEST
-
-
-_LIMITS: Final = {
-    "temperature": Limits(("K",), above=True),
-    "pressure": Limits(("Pa",), above=True),
-    "volume": Limits(("m3",), above=True),
-    "isentropic_efficiency": Limits(("1",), above=True, highest=1.0),
-    "flow": Limits(("mol/s", "kg/s")),
-    "amount": Limits(("mol", "kg")),
-    "steam_to_carbon": Limits(("1",), highest=LARGEST_RATIO),
-    "air_ratio": Limits(("1",), highest=LARGEST_RATIO),
-    "excess_air": Limits(("1",), lowest=-100.0, highest=LARGEST_RATIO),
-    "equivalence_ratio": Limits(("1",), above=True, highest=LARGEST_RATIO),
-    "oxygen_to_carbon": Limits(("1",), highest=LARGEST_RATIO),
-    "mole_ratio": Limits(("1",), highest=LARGEST_RATIO),
-    "mass_ratio": Limits(("1",), highest=LARGEST_RATIO),
-}
 
 
 class Axis(Table):
@@ -50,8 +25,9 @@ class Axis(Table):
 
     vary: Text = Field(
         description=(
-            "What is varied: a number that [held] holds, as held.KEY, or the size, temperature or pressure of a feed, "
-            "as feeds.NAME.KEY."
+            "What is varied, by its dotted name: a number that [held] holds, as held.KEY; the size, temperature or "
+            "pressure of a feed, as feeds.NAME.KEY; a conversion, as species.carbon_conversion; an approach "
+            "temperature, as approach.NAME.temperature; what a constraint holds; flue_gas.frozen_at."
         ),
         examples=["held.temperature", "feeds.steam.steam_to_carbon", "feeds.air.temperature"],
     )
@@ -112,17 +88,15 @@ class AxisValues:
     typed_unit: str
 
 
-def axis_values(axis: Axis, feeds: Mapping[str, Feed], held: Held) -> AxisValues:
+def axis_values(axis: Axis, case: Case) -> AxisValues:
     """Work out the values of one varied input.
 
     Parameters
     ----------
     axis : Axis
         The ``[[sweep]]`` table.
-    feeds : mapping of str to Feed
-        The feeds of the case, for what can be varied.
-    held : Held
-        What is held, for the same.
+    case : Case
+        The case, for what can be varied.
 
     Returns
     -------
@@ -133,7 +107,7 @@ def axis_values(axis: Axis, feeds: Mapping[str, Feed], held: Held) -> AxisValues
     RuleError
         There is no such input, or a value does not suit it.
     """
-    limits = _limits(axis.vary, feeds, held)
+    limits = limits_of(axis.vary, case)
     if axis.values is None:
         found = [_read(axis.start, limits, "from"), _read(axis.to, limits, "to")]
         values = _between(axis, found[0][0], found[1][0])
@@ -147,43 +121,20 @@ def axis_values(axis: Axis, feeds: Mapping[str, Feed], held: Held) -> AxisValues
         raise RuleError("the values are part amounts of substance, part masses; use one kind")
     if len(set(values)) < len(values):
         raise RuleError("two values are the same; give each once", "to" if axis.values is None else "values")
+    if limits.difference:
+        return AxisValues(axis.vary, values, unit, values, unit)
     typed_unit = (unit_of(first) if first is not None else "") or unit
     typed = values if typed_unit == unit else [float(f"{from_si(value, typed_unit):.12g}") for value in values]
     return AxisValues(axis.vary, values, unit, typed, typed_unit)
 
 
-def _limits(vary: str, feeds: Mapping[str, Feed], held: Held) -> Limits:
-    """Say what values of ``vary`` may be; complain if there is nothing of that name to vary."""
-    known = _known(feeds, held)
-    if vary not in known:
-        raise RuleError(f"{vary!r} cannot be varied{nearest(vary, known)} Known here: {', '.join(known)}", "vary")
-    key = vary.rpartition(".")[2]
-    if key == "heat":
-        return Limits(("W" if _are_flows(feeds) else "J",), lowest=-LARGEST)
-    return _LIMITS[key]
-
-
-def _known(feeds: Mapping[str, Feed], held: Held) -> list[str]:
-    """List what can be varied: numbers that the case gives, so that it also stands without its sweep."""
-    numbers = ("temperature", "heat", "isentropic_efficiency", "pressure", "volume")
-    known = [f"held.{key}" for key in numbers if getattr(held, key) not in (None, OF_FEEDS)]
-    for name, feed in feeds.items():
-        known += [f"feeds.{name}.{key}" for key in SIZES if feed.sized_by == key]
-        known += [f"feeds.{name}.{key}" for key in ("temperature", "pressure") if getattr(feed, key) is not None]
-    return known
-
-
-def _are_flows(feeds: Mapping[str, Feed]) -> bool:
-    try:
-        return read_basis(feeds) == "mol/s"
-    except RuleError:  # told where the feeds are sized
-        return True
-
-
 def _read(value: float | str | None, limits: Limits, *key: str | int) -> tuple[float, str]:
     """Read one value of an axis and check that the input takes it."""
+    given = 0.0 if value is None else value
     try:
-        found, unit = one_of(0.0 if value is None else value, limits.units, "value")
+        found, unit = (difference(given), "K") if limits.difference else one_of(given, limits.units, "value")
+    except ValueError as error:
+        raise RuleError(str(error), *key) from None
     except InputError as error:
         raise RuleError(str(error).removeprefix("value: "), *key) from None
     shown = "" if unit == "1" else f" {unit}"

@@ -117,15 +117,16 @@ def _check_feeds(held: Held, feeds: FeedStates, basis: str) -> None:
         feed = feeds.without_enthalpy[0]
         what = "volume of feeds" if held.thermal == "temperature" else held.thermal
         why = f"{'' if what == 'adiabatic' else 'held '}{what} needs the energy of every feed"
-        if feed.atoms:
-            raise RuleError(
-                f"{why}, and that of one known by its elements only is not known; give it by species, or hold a "
-                "temperature",
-                "feeds",
-                feed.name,
-                feed.made_of,
-            )
         raise RuleError(f'{why}; give its temperature, for example temperature = "25 degC"', "feeds", feed.name)
+    if held.thermal == "entropy" and feeds.fuels:
+        fuel = feeds.fuels[0]
+        raise RuleError(
+            "held entropy needs that of every feed, and of a fuel known by its analysis there is only an estimate; "
+            "give it by species",
+            "feeds",
+            fuel.name,
+            fuel.made_of,
+        )
     if held.mechanical == "volume" and (by_volume or held.thermal == "entropy") and feeds.without_pressure:
         raise RuleError(
             f"held {'volume of feeds' if by_volume else 'entropy at a held volume'} needs the pressure of every gas;"
@@ -157,10 +158,13 @@ def _source(case: Case) -> float | None:
 
 
 def _remark(feeds: FeedStates, otherwise: Floats | None) -> str:
-    """Say which feeds are taken at the held pressure, or lack one for the second-law account."""
-    names = ", ".join(feed.name for feed in feeds.without_pressure)
-    if not names or feeds.without_enthalpy:
+    """Say which feeds are taken at the held pressure, which lack one, and which have an estimate of their entropy."""
+    if feeds.without_enthalpy:
         return ""
-    if otherwise is None:
+    names = ", ".join(feed.name for feed in feeds.without_pressure)
+    if names and otherwise is None:
         return f"no second-law account: the pressure of {names} is not given"
-    return f"taken at the held pressure: {names}"
+    said = [f"taken at the held pressure: {names}"] if names else []
+    if fuels := ", ".join(feed.name for feed in feeds.fuels):
+        said.append(f"entropy estimated (Eisermann et al. 1980): {fuels}")
+    return "; ".join(said)

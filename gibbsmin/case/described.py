@@ -4,15 +4,20 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any, Final
 
+from gibbsmin.case.feed_ratios import feed_ratios
+from gibbsmin.case.fuel_described import describe_fuel
 from gibbsmin.case.recipe import Recipe
 from gibbsmin.case.shown import shown_units
-from gibbsmin.constants import STANDARD_TEMPERATURE
+from gibbsmin.case.sizes import feed_units
+from gibbsmin.constants import ATMOSPHERE, STANDARD_TEMPERATURE
 from gibbsmin.errors import FeedError
+from gibbsmin.practice.air import WATER_MOLAR_MASS, dew_point, humidity_ratio
 from gibbsmin.practice.heating import AT_15_CELSIUS, heating_value
 
 if TYPE_CHECKING:
     from gibbsmin.case.study import Study
 
+_WATER: Final = {"H": 2.0, "O": 1.0}
 _BURNS: Final = 1e3  # J/mol; a lower heating value below it is rounding, or the evaporation of water
 
 
@@ -29,13 +34,17 @@ def describe(study: Study) -> dict[str, Any]:
         ``title``, ``file``, ``basis``; ``elements`` (name to amount), ``species`` (``gas``, ``condensed``: names;
         ``exclude``, ``inert``), ``phases`` (names), ``feeds`` (a dict each: ``name``, ``amounts``, ``atoms``,
         ``element_amounts``, ``mass``, ``temperature``, ``pressure``), ``heating_values`` (of feeds that burn: name to
-        a dict each, by reference temperature in K), ``held`` (as typed), ``remark``, ``sweep`` (a dict each: ``vary``,
+        a dict each, by reference temperature in K), ``fuels`` (by analysis: name to what
+        `describe_fuel` gives), ``ratios`` (see `feed_ratios`), ``moisture`` (of gas with water
+        vapour in it, by feed: ``mole_fraction``, ``humidity_ratio``, ``dew_point`` and the ``pressure`` that it is
+        at), ``held`` (as typed), ``remark``, ``sweep`` (a dict each: ``vary``,
         ``first``, ``last``, ``unit``, ``points``), ``states``, ``units`` (as typed). SI throughout, save for what is
         typed.
     """
     system, case = study.system, study.case
     gas = list(map(bool, system.gas))
     names = list(system.species)
+    sizes = {one.name: one.size for one in study.recipes}
     total: dict[str, float] = {}
     for feed in study.feeds.values():
         for element, n in feed.element_amounts.items():
@@ -54,6 +63,9 @@ def describe(study: Study) -> dict[str, Any]:
         "phases": list(system.phases),
         "feeds": [feed.to_dict() for feed in study.feeds.values()],
         "heating_values": {one.name: found for one in study.recipes if (found := _heating_values(one))},
+        "fuels": {one.name: describe_fuel(one.fuel) for one in study.recipes if one.fuel is not None},
+        "ratios": feed_ratios(study.recipes, feed_units(study.recipes, sizes)[0]),
+        "moisture": {one.name: water for one in study.recipes if (water := _moisture(one))},
         "held": case.held.model_dump(exclude_none=True),
         "remark": study.conditions.account.remark,
         "sweep": [
@@ -71,9 +83,25 @@ def describe(study: Study) -> dict[str, Any]:
     }
 
 
+def _moisture(recipe: Recipe) -> dict[str, float]:
+    """Water vapour of a gas, and its dew point at the pressure of the feed, else at 101325 Pa."""
+    water = sum(n for one, n in recipe.species.items() if not one.condensed and dict(one.elements) == _WATER)
+    dry = recipe.gas - water
+    if recipe.fuel is not None or not (water > 0.0 and dry > 0.0):
+        return {}
+    pressure = ATMOSPHERE if recipe.pressure is None else recipe.pressure
+    dry_mass = sum(n * one.molar_mass for one, n in recipe.species.items() if not one.condensed)
+    return {
+        "mole_fraction": water / recipe.gas,
+        "humidity_ratio": humidity_ratio(water / recipe.gas, dry_mass / dry - water / dry * WATER_MOLAR_MASS),
+        "dew_point": dew_point(water / recipe.gas, pressure),
+        "pressure": pressure,
+    }
+
+
 def _heating_values(recipe: Recipe) -> dict[float, dict[str, tuple[float, float]]]:
     """Higher and lower heating value of a feed that burns, by reference temperature [K]: a mole, a kilogram, a Nm3."""
-    if recipe.atoms:
+    if recipe.fuel is not None:  # told with its analysis
         return {}
     found = {}
     for T in (STANDARD_TEMPERATURE, AT_15_CELSIUS):

@@ -6,7 +6,8 @@ from typing import Annotated, Any, Final, Literal
 
 from pydantic import Field, field_validator, model_validator
 
-from gibbsmin.case.air_schema import MOISTURES, AirKeys
+from gibbsmin.case.air_schema import MEASURED_AT, MOISTURES, AirKeys
+from gibbsmin.case.analysis_schema import AnalysisTable
 from gibbsmin.case.fields import (
     LARGEST_RATIO,
     Amount,
@@ -26,7 +27,7 @@ COMPOSITIONS: Final = (
     "mole_fraction",
     "mass_percent",
     "mass_fraction",
-    "ultimate_percent",
+    "analysis",
     "amounts",
     "species",
     "composition",
@@ -39,7 +40,17 @@ OXYGEN_RATIOS: Final = ("air_ratio", "excess_air", "equivalence_ratio")
 PLAIN_RATIOS: Final = ("mole_ratio", "mass_ratio")
 """Keys that size a feed by amount or mass of other feeds, those of ``to``."""
 
-RATIOS: Final = ("steam_to_carbon", "oxygen_to_carbon", *OXYGEN_RATIOS, *PLAIN_RATIOS)
+RETURNS: Final = ("recirculated_percent", "recirculation_ratio")
+"""Keys that size a feed that is flue gas going back."""
+
+RATIOS: Final = (
+    "steam_to_carbon",
+    "oxygen_to_carbon",
+    *OXYGEN_RATIOS,
+    "flue_gas_oxygen_percent",
+    *PLAIN_RATIOS,
+    *RETURNS,
+)
 """Keys that size a feed against the other feeds."""
 
 SIZES: Final = ("flow", "amount", *RATIOS)
@@ -48,11 +59,9 @@ SIZES: Final = ("flow", "amount", *RATIOS)
 _GO_WITH: Final[dict[str, tuple[str, ...]]] = {
     "to": PLAIN_RATIOS,
     "per": ("mass_ratio",),
-    "carbon_dioxide_in_air": ("composition",),
-    "oxygen_mole_percent": ("composition",),
+    "dried": RETURNS,
     "enriched_with": ("oxygen_mole_percent",),
-    "humidity_temperature": ("relative_humidity", "wet_bulb"),
-    "humidity_pressure": ("relative_humidity", "wet_bulb", "dew_point"),
+    **MEASURED_AT,
 }
 """Keys that say something only beside one of others."""
 
@@ -91,14 +100,13 @@ class Feed(AirKeys):
         description="Composition by species in mass fractions; must sum to 1 within 0.005 and is then normalised.",
         examples=[{"CH4": 0.2, "O2": 0.8}],
     )
-    ultimate_percent: dict[str, Share] | None = Field(
+    analysis: AnalysisTable | None = Field(
         default=None,
         description=(
-            "Ultimate analysis in mass percent: elements by symbol, and whatever is known as a substance (moisture, "
-            "minerals of the ash) by its species name. Must sum to 100 within 0.5 and is then normalised. "
-            "The size must be a mass."
+            "The table [feeds.NAME.analysis]: a solid or liquid fuel by its ultimate analysis, with moisture, ash and "
+            "heating value. The size must be a mass."
         ),
-        examples=[{"C": 69.0, "H": 4.6, "O": 7.4, "N": 1.4, "S": 0.9, "H2O(l)": 8.0, "SiO2(s)": 8.7}],
+        examples=[{"ultimate_percent": {"C": 50.0, "H": 6.0, "O": 43.4, "ash": 0.6}, "basis": "dry"}],
     )
     amounts: dict[str, AmountOrFlow] | None = Field(
         default=None,
@@ -157,6 +165,27 @@ class Feed(AirKeys):
         ),
         examples=[0.5],
     )
+    flue_gas_oxygen_percent: Annotated[float, Field(gt=0.0, lt=100.0, allow_inf_nan=False)] | None = Field(
+        default=None,
+        description=(
+            "Size of the air by what it leaves: so much that the dry flue gas, as [flue_gas] freezes it, holds this "
+            "mole percent of O2."
+        ),
+        examples=[3.0],
+    )
+    recirculated_percent: Annotated[float, Field(ge=0.0, lt=100.0, allow_inf_nan=False)] | None = Field(
+        default=None,
+        description="Size of a returned flue gas: percent of all flue gas that goes back.",
+        examples=[65.0],
+    )
+    recirculation_ratio: Annotated[float, Field(ge=0.0, le=1000.0, allow_inf_nan=False)] | None = Field(
+        default=None,
+        description="Size of a returned flue gas: what goes back over what leaves.",
+        examples=[0.15],
+    )
+    dried: bool | None = Field(
+        default=None, description="true where the water vapour of a returned flue gas is taken out.", examples=[True]
+    )
     mole_ratio: Ratio | None = Field(
         default=None,
         description="Size by ratio: mol of this feed per mol of the feed that `to` names, or of all other feeds.",
@@ -194,7 +223,7 @@ class Feed(AirKeys):
         default=None, description="Pressure of the feed, absolute. A bare number is Pa.", examples=["26 bar"]
     )
 
-    @field_validator("mole_percent", "volume_percent", "mass_percent", "ultimate_percent", "enriched_with")
+    @field_validator("mole_percent", "volume_percent", "mass_percent", "enriched_with")
     @classmethod
     def _sums_to_100(cls, value: dict[str, float]) -> dict[str, float]:
         return _sums(value, 100.0)
@@ -227,6 +256,19 @@ class Feed(AirKeys):
         return self
 
     @model_validator(mode="after")
+    def _returned_gas(self) -> Feed:
+        back = self.given(RETURNS)
+        if self.composition == "flue gas":
+            if not back:
+                raise RuleError(f"flue gas that goes back is sized by {' or '.join(RETURNS)}", "composition")
+            other = [*self.given(MOISTURES), *(["frozen"] if self.frozen else [])]
+            if other:
+                raise RuleError(f"{other[0]} does not go with flue gas; it is what the flue gas is", other[0])
+        elif back:
+            raise RuleError(f'{back[0]} goes with composition = "flue gas"', back[0])
+        return self
+
+    @model_validator(mode="after")
     def _keys_that_go_together(self) -> Feed:
         moist = self.given(MOISTURES)
         if len(moist) > 1:
@@ -234,9 +276,12 @@ class Feed(AirKeys):
         for key, needed in _GO_WITH.items():
             if self.given((key,)) and not self.given(needed):
                 raise RuleError(f"{key} goes with {' or '.join(needed)}, and the feed has none", key)
+        for_air = self.given(("carbon_dioxide_in_air", "oxygen_mole_percent"))
+        if for_air and self.composition != "air":
+            raise RuleError(f'{for_air[0]} goes with composition = "air"', for_air[0])
         if moist and self.amounts is not None:
             raise RuleError(f"amounts says what the feed holds, so {moist[0]} cannot; add its H2O there", moist[0])
-        if self.altitude is not None and self.pressure is not None and not self.given(_GO_WITH["humidity_pressure"]):
+        if self.altitude is not None and self.pressure is not None and not self.given(MEASURED_AT["humidity_pressure"]):
             raise RuleError(
                 "altitude says nothing here: the feed has its pressure, and no humidity needs it", "altitude"
             )

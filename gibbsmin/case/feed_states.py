@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -13,13 +14,45 @@ from gibbsmin.case.axes import AxisValues
 from gibbsmin.case.recipe import Recipe
 from gibbsmin.case.sizes import feed_units
 from gibbsmin.constants import R
-from gibbsmin.errors import FeedError
 from gibbsmin.practice.audit import feed_enthalpy, feed_entropy
-from gibbsmin.practice.heating import heating_value
 from gibbsmin.practice.mixing import mixed_entropy
+from gibbsmin.practice.settled import FeedFacts
 from gibbsmin.thermo.record import Species
 
 Floats = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class ReturnedGas:
+    """Flue gas that goes back to the fire.
+
+    Attributes
+    ----------
+    name : str
+        Name of the feed.
+    records : tuple of Species
+        What it is made of.
+    amounts : array (states, S)
+        Amount of each, [mol or mol/s].
+    temperature, pressure : array (states,)
+        [K], [Pa].
+    """
+
+    name: str
+    records: tuple[Species, ...]
+    amounts: Floats
+    temperature: Floats
+    pressure: Floats
+
+    @property
+    def enthalpy(self) -> Floats:
+        """Enthalpy, (states,), [J or W]."""
+        return np.asarray(feed_enthalpy(self.records, self.amounts, self.temperature))
+
+    @property
+    def entropy(self) -> Floats:
+        """Entropy, (states,), [J/K or W/K]."""
+        return np.asarray(feed_entropy(self.records, self.amounts, self.temperature, self.pressure))
 
 
 @dataclass(frozen=True)
@@ -36,17 +69,24 @@ class FeedStates:
         Value of each varied input in every state, in SI.
     states : int
         Number of states.
+    ratios : dict of str to array (states,)
+        Ratios that were found, by the name of the feed that they size.
+    returned : ReturnedGas or None
+        Flue gas that goes back.
     """
 
     recipes: tuple[Recipe, ...]
     axes: tuple[AxisValues, ...]
     columns: Mapping[str, Floats]
     states: int
+    ratios: Mapping[str, Floats] = field(default_factory=dict)
+    returned: ReturnedGas | None = None
 
     @cached_property
     def units(self) -> Floats:
         """Units of each feed in every state, (states, F), [mol, kg, or either per second]."""
         sizes: dict[str, Floats | float] = {recipe.name: recipe.size for recipe in self.recipes}
+        sizes |= self.ratios
         for axis in self.axes:
             table, _, key = axis.vary.rpartition(".")
             recipe = next((one for one in self.recipes if f"feeds.{one.name}" == table), None)
@@ -64,8 +104,13 @@ class FeedStates:
 
     @property
     def without_enthalpy(self) -> list[Recipe]:
-        """Feeds whose enthalpy is not known: without temperature, or known by elements only."""
-        return [one for one in self.recipes if self.temperature(one) is None or one.atoms]
+        """Feeds whose enthalpy is not known, because their temperature is not."""
+        return [one for one in self.recipes if self.temperature(one) is None]
+
+    @property
+    def fuels(self) -> list[Recipe]:
+        """Feeds known by an analysis, whose entropy is an estimate."""
+        return [one for one in self.recipes if one.fuel is not None]
 
     @property
     def without_pressure(self) -> list[Recipe]:
@@ -77,7 +122,8 @@ class FeedStates:
         """Enthalpy of all feeds, (states,), [J or W]; None where that of one is not known."""
         if self.without_enthalpy:
             return None
-        return self._summed([feed_enthalpy(*_parts(one), self._temperature(one)) for one in self.recipes])
+        fresh = self._summed([self._enthalpy(one) for one in self.recipes])
+        return fresh if self.returned is None else fresh + self.returned.enthalpy
 
     @cached_property
     def internal_energy(self) -> Floats | None:
@@ -109,9 +155,8 @@ class FeedStates:
         """
         if self.without_enthalpy or (otherwise is None and self.without_pressure):
             return None
-        return self._summed(
-            [feed_entropy(*_parts(one), self._temperature(one), self._pressure(one, otherwise)) for one in self.recipes]
-        )
+        fresh = self._summed([self._entropy(one, otherwise) for one in self.recipes])
+        return fresh if self.returned is None else fresh + self.returned.entropy
 
     def mixed_entropy(self, otherwise: Floats | None) -> Floats | None:
         """Entropy of all feeds after they mix, without heat or reaction, at the lowest pressure among them.
@@ -136,12 +181,8 @@ class FeedStates:
     @cached_property
     def lower_heating_value(self) -> Floats | None:
         """Lower heating value of all feeds at 25 degC, (states,), [J or W]; None where it is not defined."""
-        if any(one.atoms for one in self.recipes):
-            return None
-        try:
-            return self._summed([heating_value(*_parts(one)).lower for one in self.recipes])
-        except FeedError:
-            return None
+        values = [one.heating_value for one in self.recipes]
+        return self._summed([value[1] for value in values if value]) if all(values) else None
 
     def _summed(self, values: Sequence[Floats | float]) -> Floats:
         """Sum over the feeds of what a unit of each has, (states,)."""
@@ -149,6 +190,18 @@ class FeedStates:
         for k, value in enumerate(values):
             total += self.units[:, k] * value
         return total
+
+    def _enthalpy(self, recipe: Recipe) -> Any:
+        """Enthalpy of a unit of a feed that has a temperature, (states,) or one for all."""
+        T = self._temperature(recipe)
+        known = feed_enthalpy(*_parts(recipe), T) if recipe.species else 0.0
+        return known if recipe.fuel is None else known + recipe.fuel.enthalpy(T)
+
+    def _entropy(self, recipe: Recipe, otherwise: Floats | None) -> Any:
+        """Entropy of a unit of a feed that has a temperature, (states,) or one for all."""
+        T = self._temperature(recipe)
+        known = feed_entropy(*_parts(recipe), T, self._pressure(recipe, otherwise)) if recipe.species else 0.0
+        return known if recipe.fuel is None else known + recipe.fuel.entropy(T)
 
     def _temperature(self, recipe: Recipe) -> Floats | float:
         """Temperature of a feed that has one."""
@@ -160,6 +213,24 @@ class FeedStates:
         P = self.pressure(recipe)
         P = otherwise if P is None else P
         return 1.0 if P is None else P
+
+
+def feed_facts(feeds: FeedStates) -> dict[str, FeedFacts]:
+    """Put down what the trade's numbers need of the fresh feeds, by name."""
+    found = {}
+    for k, one in enumerate(feeds.recipes):
+        units, T = feeds.units[:, k], feeds.temperature(one)
+        value = one.heating_value
+        found[one.name] = FeedFacts(
+            {record.substance: n * units for record, n in one.species.items()},
+            {element: n * units for element, n in one.elements.items()},
+            one.mass * units,
+            None if value is None else value[0] * units,
+            None if value is None else value[1] * units,
+            one.fuel is not None,
+            None if T is None else np.broadcast_to(np.asarray(T, float), units.shape),
+        )
+    return found
 
 
 def _parts(recipe: Recipe) -> tuple[list[Species], list[float]]:

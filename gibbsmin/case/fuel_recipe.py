@@ -110,7 +110,9 @@ def read_fuel(table: AnalysisTable, find: Find) -> Fuel:
     notes += [*told, *seen]
     received = analysis.on(AS_RECEIVED)
     atoms = {part: percent / 100.0 / ATOMIC_WEIGHT[part] for part, percent in received.items() if part in ATOMIC_WEIGHT}
-    by_name = {record: received[name] / 100.0 / record.molar_mass for name, record in minerals.items() if name in received}
+    by_name = {
+        record: received[name] / 100.0 / record.molar_mass for name, record in minerals.items() if name in received
+    }
     species = {find(WATER): moisture / 100.0 / find(WATER).molar_mass} if moisture else {}
     species |= by_name
     inert, amount = frozenset[str](), received.get(ASH, 0.0) / 100.0
@@ -214,7 +216,9 @@ def _with_proximate(table: AnalysisTable, analysis: Analysis) -> tuple[Analysis,
     fixed = rest - given.volatile_matter if given.fixed_carbon is None else given.fixed_carbon
     if abs(fixed + given.volatile_matter - rest) > _DIFFER or fixed < -_DIFFER:
         total = 100.0 - rest + given.volatile_matter + max(fixed, 0.0)
-        raise RuleError(f"the proximate analysis sums to {total:.6g}; expected 100 within {_DIFFER}", "proximate_percent")
+        raise RuleError(
+            f"the proximate analysis sums to {total:.6g}; expected 100 within {_DIFFER}", "proximate_percent"
+        )
     scale = (1.0 - analysis.minerals / 100.0) if free else 1.0 / (1.0 - wet / 100.0)
     volatile, fixed = given.volatile_matter * scale, max(fixed, 0.0) * scale
     return replace(analysis, volatile_matter=volatile, fixed_carbon=fixed), notes

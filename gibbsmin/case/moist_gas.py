@@ -87,8 +87,6 @@ def moistened(feed: Feed, dry: Mapping[Species, float], find: Callable[[str], Sp
     key, water = said[0], find("H2O")
     if water in dry:
         raise RuleError(f"the composition holds H2O already; give it dry, or leave {key} out", key)
-    if not dry:
-        raise RuleError(f"{key} is that of a gas, and the feed is known by its elements", key)
     if odd := next((record.name for record in dry if record.condensed), ""):
         raise RuleError(f"{key} is that of a gas, and the feed holds {odd}", key)
     try:

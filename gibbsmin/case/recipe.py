@@ -1,19 +1,24 @@
 """What a unit of each feed is made of.
 
-A unit is a mole where the feed is known by species, a kilogram where it is known by an ultimate analysis.
+A unit is a mole where the feed is known by species, a kilogram where it is a fuel known by its analysis.
 """
 
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
+from functools import cached_property
 from typing import Final
 
+from gibbsmin.case.air_schema import MOISTURES
+from gibbsmin.case.analysis_schema import AnalysisTable
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError, in_si
+from gibbsmin.case.fuel_recipe import Fuel, read_fuel
 from gibbsmin.case.moist_gas import air_as_fed, moistened, pressure_of
 from gibbsmin.elements import ATOMIC_WEIGHT
 from gibbsmin.errors import FeedError, SpeciesError
+from gibbsmin.practice.heating import heating_value
 from gibbsmin.practice.ratios import counted_carbon, oxygen_need
 from gibbsmin.thermo.record import Species
 from gibbsmin.units import one_of
@@ -21,8 +26,6 @@ from gibbsmin.units import one_of
 ANY_SIZE: Final = ("mol", "kg", "mol/s", "kg/s")
 """SI units of amounts and flows."""
 
-FROZEN: Final = " [frozen]"
-"""Ends the name of a species of a frozen feed, which is one of its own."""
 
 Find = Callable[[str], Species]
 
@@ -52,6 +55,8 @@ class Recipe:
     to, per : str
         Feed that a ratio of amount or mass counts, none for all others, and what of it: ``"as received"``, ``"dry"``
         or ``"dry ash-free"``.
+    fuel : Fuel or None
+        A fuel known by its analysis, of which a unit is a kilogram as received; its atoms are those of ``atoms``.
     """
 
     name: str
@@ -66,6 +71,7 @@ class Recipe:
     inert: frozenset[str] = frozenset()
     to: str = ""
     per: str = "as received"
+    fuel: Fuel | None = None
 
     @property
     def elements(self) -> dict[str, float]:
@@ -101,6 +107,17 @@ class Recipe:
         known = sum(n * counted_carbon(record.elements) for record, n in self.species.items())
         return known + self.atoms.get("C", 0.0)
 
+    @cached_property
+    def heating_value(self) -> tuple[float, float] | None:
+        """Higher and lower heating value of one unit at 25 °C, [J]; None where they are not defined."""
+        if self.fuel is not None:
+            return self.fuel.heat.higher, self.fuel.heat.lower
+        try:
+            value = heating_value(list(self.species), list(self.species.values()))
+        except FeedError:
+            return None
+        return value.higher, value.lower
+
     @property
     def reacting(self) -> Recipe:
         """What is left of it without the species that take no part."""
@@ -115,7 +132,7 @@ class Recipe:
         """Convert a size to a number of units; ``unit`` is mol, kg, or either per second."""
         massive = unit.startswith("kg")
         if self.by_mass and not massive and unit != "1":
-            raise FeedError("an ultimate analysis has no molar mass; give the size as a mass, for example '10 t/h'")
+            raise FeedError("a fuel by analysis has no molar mass; give the size as a mass, for example '10 t/h'")
         return value / self.mass if massive and not self.by_mass else value
 
 
@@ -141,15 +158,11 @@ def read_recipe(name: str, feed: Feed, find: Find) -> Recipe:
         A species is not known, is named twice, or the size does not suit; with the key.
     """
     key = feed.made_of
+    if feed.analysis is not None:
+        return _by_analysis(name, feed, feed.analysis, find)
     given = _given(feed)
-    by_mass = key == "ultimate_percent"
-    atoms = {
-        label: share / ATOMIC_WEIGHT[label] for label, share in given.items() if by_mass and label in ATOMIC_WEIGHT
-    }
     records: dict[Species, float] = {}
     for label, share in given.items():
-        if label in atoms:
-            continue
         at = (key,) if key in ("species", "composition") else (key, label)
         try:
             record = find(label)
@@ -160,14 +173,14 @@ def read_recipe(name: str, feed: Feed, find: Find) -> Recipe:
         if key == "volume_percent" and record.condensed:
             raise RuleError(f"a volume percent is that of a gas, and {label} is none; give mole or mass percent", *at)
         records[record] = share / record.molar_mass if _by_weight(feed, label) else share
-    whole = sum(given.values()) if by_mass else sum(records.values())
+    whole = sum(records.values())
     if not whole > 0.0:
         raise RuleError("holds nothing; at least one amount must be above zero", key)
     recipe = Recipe(
         name,
         moistened(feed, {record: n / whole for record, n in records.items() if n > 0.0}, find),
-        {symbol: n / whole for symbol, n in atoms.items() if n > 0.0},
-        by_mass,
+        {},
+        False,
         key,
         feed.sized_by,
         whole,
@@ -178,8 +191,32 @@ def read_recipe(name: str, feed: Feed, find: Find) -> Recipe:
     )
     if feed.frozen:
         recipe = _frozen(recipe)
-    if feed.sized_by == "amounts":
-        return recipe
+    return recipe if feed.sized_by == "amounts" else _sized(recipe, feed)
+
+
+def _by_analysis(name: str, feed: Feed, table: AnalysisTable, find: Find) -> Recipe:
+    """Work out what a fuel known by its analysis is made of."""
+    if feed.frozen:
+        raise RuleError("a fuel known by its analysis cannot be frozen; give it by species", "frozen")
+    if moist := feed.given(MOISTURES):
+        raise RuleError(f"{moist[0]} is for gases; a fuel has its moisture in the table analysis", moist[0])
+    try:
+        fuel = read_fuel(table, find)
+    except RuleError as error:
+        raise RuleError(error.message, feed.made_of, *error.key) from None
+    temperature = None if feed.temperature is None else in_si(feed.temperature, "K")
+    recipe = Recipe(
+        name, fuel.species, fuel.atoms, True, feed.made_of, feed.sized_by, 1.0, temperature, pressure_of(feed),
+        fuel.inert, feed.to or "", feed.per or "as received", fuel,
+    )  # fmt: skip
+    return _sized(recipe, feed)
+
+
+def _sized(recipe: Recipe, feed: Feed) -> Recipe:
+    """Give a recipe the size that its table has; air for a wanted oxygen begins with the air ratio of dry air."""
+    if feed.flue_gas_oxygen_percent is not None:
+        short = 20.95 / (20.95 - min(feed.flue_gas_oxygen_percent, 15.0))
+        return replace(recipe, sized_by="air_ratio", size=short)
     try:
         return replace(recipe, size=recipe.units(*feed_size(feed)))
     except FeedError as error:
@@ -198,9 +235,7 @@ def _kind(record: Species) -> str:
 
 def _frozen(recipe: Recipe) -> Recipe:
     """Give the species of a frozen feed names of their own, so that they are balanced by themselves."""
-    if recipe.atoms:
-        raise RuleError("a feed known by its elements cannot be frozen; give it by species", "frozen")
-    species = {replace(record, name=record.name + FROZEN, aliases=()): n for record, n in recipe.species.items()}
+    species = {record.frozen(): n for record, n in recipe.species.items()}
     return replace(recipe, species=species, inert=frozenset(record.name for record in species))
 
 
@@ -214,7 +249,7 @@ def feed_size(feed: Feed) -> tuple[float, str]:
 
 
 def _given(feed: Feed) -> dict[str, float]:
-    """Shares or amounts by species (or element) as the table has them, in SI."""
+    """Shares or amounts by species as the table has them, in SI."""
     if feed.species is not None:
         return {feed.species: 1.0}
     if feed.composition is not None:
@@ -229,4 +264,4 @@ def _by_weight(feed: Feed, label: str) -> bool:
     """Tell whether the share or amount of a species is a mass."""
     if feed.amounts is not None:
         return one_of(feed.amounts[label], ANY_SIZE, label)[1].startswith("kg")
-    return feed.made_of.startswith(("mass", "ultimate"))
+    return feed.made_of.startswith("mass")

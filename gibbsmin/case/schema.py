@@ -10,6 +10,7 @@ from pydantic import Field, model_validator
 from gibbsmin.case.axes import MAX_STATES, Axis, axis_values
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import Number, RuleError, Table, Text
+from gibbsmin.case.flue_gas_schema import FlueGasTable
 from gibbsmin.case.held_schema import Held, Surroundings
 from gibbsmin.case.rules_schema import Approach, Constraint, Percent
 
@@ -18,6 +19,27 @@ MAX_AXES: Final = 2
 """Largest number of inputs that one case may vary."""
 
 Names = list[Text]
+KeySet = Literal[
+    "reforming",
+    "shift",
+    "synthesis gas",
+    "methanation",
+    "ammonia",
+    "methanol",
+    "gasification",
+    "fuel gas",
+    "sulfur",
+    "sulfuric acid",
+    "reduction",
+    "furnace atmosphere",
+    "catalyst",
+    "kiln",
+    "salts",
+    "halogens",
+    "deposition",
+]
+"""Sets of key figures, those of `gibbsmin.results.key_figures`."""
+
 NAME: Final = r"^[A-Za-z0-9_-]{1,40}$"
 """What the name of a feed, a reaction or a constraint may be."""
 
@@ -125,6 +147,16 @@ class Case(Table):
         description="Sums of amounts that are held: a table each, [constraint.NAME].",
         examples=[{"slip": {"amounts": {"CH4": 1.0}, "sum": "5 kmol/h"}}],
     )
+    flue_gas: FlueGasTable | None = Field(
+        default=None,
+        description="The table [flue_gas]: asks for the numbers of a flue gas, and says how they are reported.",
+        examples=[{"frozen_at": "1000 degC", "application": "gas or liquid fuel", "stack_temperature": "140 degC"}],
+    )
+    key_figures: list[KeySet] = Field(
+        default=[],
+        description="Sets of the trade's numbers that are reported; written before the first table.",
+        examples=[["reforming", "catalyst"]],
+    )
     surroundings: Surroundings = Field(
         default=Surroundings(),
         description="The table [surroundings]: the place around, for the second-law account.",
@@ -157,15 +189,40 @@ class Case(Table):
             if axis.vary in [earlier.vary for earlier in self.sweep[:number]]:
                 raise RuleError(f"{axis.vary} is varied twice", "sweep", number, "vary")
             try:
-                axis_values(axis, self.feeds, self.held)
+                axis_values(axis, self)
             except RuleError as error:
                 raise RuleError(error.message, "sweep", number, *error.key) from None
+        self._check_flue_gas()
         states = 1
         for axis in self.sweep:
             states *= axis.points or len(axis.values or [])
         if states > MAX_STATES:
             raise RuleError(f"the sweep has {states:,} states; at most {MAX_STATES:,} can be solved", "sweep", 0)
         return self
+
+    def _check_flue_gas(self) -> None:
+        """Refuse a flue gas that goes back, or is to hold so much oxygen, where nothing says what it is."""
+        back = [name for name, feed in self.feeds.items() if feed.composition == "flue gas"]
+        if len(back) > 1:
+            raise RuleError(f"{' and '.join(back)} are both flue gas that goes back; one can be", "feeds", back[1])
+        if back and len(back) == len(self.feeds):
+            raise RuleError("only flue gas is fed; something must burn", "feeds", back[0])
+        air = [name for name, feed in self.feeds.items() if feed.flue_gas_oxygen_percent is not None]
+        if len(air) > 1:
+            raise RuleError(f"{' and '.join(air)} both give the flue gas its oxygen; one can", "feeds", air[1])
+        for name in [*back, *air]:
+            if self.held.mechanical == "volume" or self.held.thermal == "entropy":
+                raise RuleError(
+                    "flue gas that goes back, or that is to hold so much oxygen, goes with a held pressure and"
+                    " temperature or heat",
+                    *("feeds", name),
+                )
+            if self.held.thermal != "temperature" and (self.flue_gas is None or self.flue_gas.frozen_at is None):
+                raise RuleError(
+                    "say at which temperature the composition of the flue gas is frozen, for example [flue_gas]"
+                    ' frozen_at = "1000 degC"',
+                    *("feeds", name),
+                )
 
 
 def case_schema() -> dict[str, Any]:

@@ -127,7 +127,7 @@ def _check(recipes: Sequence[Recipe], k: int, units: Floats, brings: Floats, ask
 
 
 def _ratio(key: str, value: Floats) -> Floats:
-    """What is brought over what is asked for, from the value of a key."""
+    """Turn the value of a key into what is brought over what is asked for."""
     if key == "excess_air":
         return 1.0 + value / 100.0
     return 1.0 / value if key == "equivalence_ratio" else value

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from pathlib import Path
 from typing import Any
@@ -14,16 +14,22 @@ from numpy.typing import NDArray
 from gibbsmin.case.axes import AxisValues, axis_values
 from gibbsmin.case.conditions import Conditions, number, read_conditions
 from gibbsmin.case.described import describe
-from gibbsmin.case.feed_states import FeedStates
+from gibbsmin.case.feed_states import FeedStates, feed_facts
 from gibbsmin.case.fields import RuleError
+from gibbsmin.case.flue_gas import closed_feeds, frozen, setting
 from gibbsmin.case.recipe import Recipe, read_recipe
 from gibbsmin.case.rules import Rules, read_rules
 from gibbsmin.case.schema import Case
 from gibbsmin.case.selection import choose_system, element_row, finder
 from gibbsmin.case.shown import shown_units
 from gibbsmin.case.sizes import feed_units, read_basis
+from gibbsmin.case.source import dotted
+from gibbsmin.errors import CaseError
+from gibbsmin.practice.flue_gas import flue_gas
+from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge import judge
+from gibbsmin.results.key_figures import SETS, settled
 from gibbsmin.results.result import FeedAmounts, Result
 from gibbsmin.states.system import System, constraint_row
 from gibbsmin.studies.expansion import expansion
@@ -90,11 +96,13 @@ class Study:
         find = finder(own)
         recipes = []
         for name, feed in case.feeds.items():
+            if feed.composition == "flue gas":
+                continue
             try:
                 recipes.append(read_recipe(name, feed, find))
             except RuleError as error:
                 raise RuleError(error.message, "feeds", name, *error.key) from None
-        axes = tuple(axis_values(axis, case.feeds, case.held) for axis in case.sweep)
+        axes = tuple(axis_values(axis, case) for axis in case.sweep)
         rules = read_rules(case, find, own)
         system = choose_system(case.species, recipes, own, rules)
         try:
@@ -138,14 +146,25 @@ class Study:
     @cached_property
     def element_amounts(self) -> Floats:
         """Amount of each element, and what each constraint holds, in every state, (states, E), [mol or mol/s]."""
-        amounts = self.units @ self.element_rows
-        for name, values in self.rules.held(self.recipes, self.units, self.columns, self.basis).items():
+        return self.elements_of(self.feed_states)
+
+    def elements_of(self, feeds: FeedStates) -> Floats:
+        """Amount of each element, and what each constraint holds, of feeds, (states, E), [mol or mol/s]."""
+        amounts = feeds.units @ self.element_rows
+        if feeds.returned is not None:
+            at = [self.system.index[record.name] for record in feeds.returned.records]
+            amounts = amounts + feeds.returned.amounts @ self.system.element_matrix[:, at].T
+        for name, values in self.rules.held(self.recipes, feeds.units, self.columns, self.basis).items():
             amounts[:, self.system.elements.index(constraint_row(name))] = values
         return amounts
 
     @cached_property
     def feeds(self) -> dict[str, FeedAmounts]:
         """Each feed as its table has it, without the sweep, by name."""
+        return self._feed_amounts(self._base_units)
+
+    def _feed_amounts(self, base_units: Floats) -> dict[str, FeedAmounts]:
+        """Put down the feeds by name, for so many units of each, (F,)."""
         return {
             recipe.name: FeedAmounts(
                 recipe.name,
@@ -156,7 +175,7 @@ class Study:
                 recipe.temperature,
                 recipe.pressure,
             )
-            for recipe, row, units in zip(self.recipes, self.element_rows, map(float, self._base_units), strict=True)
+            for recipe, row, units in zip(self.recipes, self.element_rows, map(float, base_units), strict=True)
         }
 
     @property
@@ -186,17 +205,24 @@ class Study:
         ------
         InputError
             The folder cannot be written, or holds something that is not a result.
+        CaseError
+            No air gives the flue gas its oxygen, or no returned flue gas is steady.
         """
         if out is not None:
             check_place(Path(out))
-        result = self._solve(progress)
+        try:
+            result = self._solve(progress)
+        except RuleError as error:  # what only solving tells
+            raise CaseError(error.message, self.path, dotted(error.key)) from None
         if out is not None:
             write_folder(result, judge(result), Path(out))
         return result
 
     def _solve(self, progress: Progress | None) -> Result:
         """Solve all states."""
-        conditions, elements = self.conditions, self.element_amounts
+        feeds = closed_feeds(self)
+        elements = self.elements_of(feeds)
+        conditions = read_conditions(self.case, feeds, self.basis)
         held = conditions.held
         if conditions.efficiency is None:
             approach = self.rules.approach(self.columns, self.states)
@@ -208,7 +234,7 @@ class Study:
                 self.system, elements, held["entropy"], inlet, held["pressure"], conditions.efficiency, progress
             )
         typed = grid([axis.typed_values for axis in self.axes])
-        return Result(
+        result = Result(
             title=self.case.title,
             case=self.case.model_dump(by_alias=True, exclude_none=True),
             case_path=self.path,
@@ -220,10 +246,25 @@ class Study:
             axes=tuple(Axis(axis.vary, np.array(axis.typed_values), axis.typed_unit) for axis in self.axes),
             batch=batch,
             display_units=shown_units(self.case, self.basis),
-            feeds=self.feeds,
+            feeds=self._feed_amounts(feeds.units[0]) if self.states == 1 else self.feeds,
             held=held,
             account=conditions.account,
         )
+        return replace(result, key_figures=self._key_figures(result, feeds, elements))
+
+    def _key_figures(self, result: Result, feeds: FeedStates, elements: Floats) -> dict[str, list[KeyFigure]]:
+        """Work out the numbers of the trade that the case asks for, by set."""
+        facts, is_flow = feed_facts(feeds), self.basis == "mol/s"
+        found: dict[str, list[KeyFigure]] = {}
+        if not (self.case.key_figures or self.case.flue_gas):
+            return found
+        here = settled(result.batch, facts, result.heats, is_flow)
+        if self.case.flue_gas is not None:
+            gas = settled(frozen(self, result.batch, elements), facts, result.heats, is_flow)
+            found["flue gas"] = flue_gas(here, setting(self.case, feeds), gas)
+        for name in self.case.key_figures:
+            found[name] = SETS[name](here)
+        return found
 
     def describe(self) -> dict[str, Any]:
         """Say what the case asks for, without solving it; see `gibbsmin.case.described.describe`."""

@@ -160,6 +160,9 @@ OXYGEN_ENRICHED: Final = 0.235
 OXYGEN_DEFICIENT: Final = 0.195
 """Mole fraction of oxygen below which an atmosphere is deficient, [-] (OSHA, 29 CFR 1910.146)."""
 
+OXYGEN_DEADLY: Final = 0.10
+"""Mole fraction of oxygen below which a few breaths can kill, [-]; common practice, no source."""
+
 AIR_OXYGEN: Final = 0.21
 """Oxygen in the oxidant up to which the limits in air hold, mole fraction, [-]."""
 
@@ -171,3 +174,41 @@ CARBONYL_PRESSURE: Final = 0.1e5
 
 CARBON_NEAR: Final = 0.7
 """Carbon activity from which the margin is called thin, [-]; common practice, no source."""
+
+REACTIVE: Final = {"F2": 1e-3, "ClF3": 1e-3, "O3": 1e-2, "NCl3": 1e-3, "ClO2": 0.1}
+"""Gases that burn most materials or explode by themselves, and the mole fraction a caution begins at; common practice,
+no source."""
+
+DUSTING_RANGE: Final = (400.0 + 273.15, 800.0 + 273.15)
+"""Temperatures of a metal at which it dusts where carbon may form, [K]; common practice, no source."""
+
+DUSTING_MONOXIDE: Final = 0.01
+"""Mole fraction of CO from which it is watched for, [-]; common practice, no source."""
+
+HYDROGEN_ATTACK: Final = (220.0 + 273.15, 3.45e5)
+"""Temperature [K] and partial pressure of hydrogen [Pa] above which steel is chosen by API RP 941: the temperature by
+common practice, no source; the pressure (50 psi) from memory."""
+
+SULFIDATION: Final = (260.0 + 273.15, 10e-6)
+"""Temperature [K] and mole fraction of H2S above which steel scales in it; common practice, no source."""
+
+NITRIDING: Final = (350.0 + 273.15, 1e-3)
+"""Temperature [K] and mole fraction of NH3 above which steel takes up nitrogen; common practice, no source."""
+
+DEW_MARGIN: Final = 10.0
+"""How far a wall stays above the highest dew point, [K]; common practice, no source."""
+
+DIOXIN_RANGE: Final = (200.0 + 273.15, 450.0 + 273.15)
+"""Temperatures at which dioxins form on fly ash, [K]; common practice, no source."""
+
+CHLORINE: Final = ("HCl", "Cl2", "Cl", "KCl", "NaCl")
+"""Gases that bring chlorine to fly ash; common practice, no source."""
+
+DIOXIN_TRACE: Final = 1e-6
+"""Mole fraction of chlorine gases, and of oxygen, from which they are watched for, [-]; common practice, no source."""
+
+IGNITION_MARGIN: Final = 50.0
+"""How far a mixture with air stays below its self-ignition, [K]; common practice, no source."""
+
+FUEL_CRACKS: Final = 550.0 + 273.15
+"""Temperature above which hydrocarbons without steam crack to soot, [K]; common practice, no source."""

@@ -1,7 +1,8 @@
 """What ratios of feeds count: carbon for steam to carbon, oxygen need for air ratio.
 
-Common practice, no source, except where said: the stoichiometric reference burns C, H, S, N, Cl, F to CO2, H2O,
-SO2, N2, HCl, HF, and takes the elements of ash to the oxides of the usual ash analysis, whatever equilibrium says.
+Common practice, no source, except where said: the stoichiometric reference burns C, H, S, N and halogens to CO2, H2O,
+SO2, N2 and HCl (HF, HBr, HI), and takes the elements of ash to the oxides of the usual ash analysis, whatever
+equilibrium says.
 """
 
 from __future__ import annotations
@@ -22,6 +23,8 @@ _VALENCE: Final = {
     "O": -2,
     "Cl": -1,
     "F": -1,
+    "Br": -1,
+    "I": -1,
     "He": 0,
     "Ne": 0,
     "Ar": 0,
@@ -71,6 +74,40 @@ def oxygen_need(elements: Mapping[str, float]) -> float:
             f"choice; give the size of the air as a flow or an amount"
         )
     return sum(_VALENCE[element] * count for element, count in atoms.items()) / 4.0
+
+
+def supply_and_need(elements: Mapping[str, float], oxygen: float) -> tuple[float, float]:
+    """Split the oxygen balance of a feed into what it supplies and what it needs.
+
+    Global air ratio, as burners and boilers have it: supply over need, summed over the feeds. A feed is an oxidant
+    where it holds O2, and more of it than burns whatever else it holds: its O2 is supply, and what it holds besides is
+    need. In any other feed O2 and bound oxygen are taken off the need (a fuel gas with air in it, coal with its own
+    oxygen); a feed without O2 that has oxygen to spare (N2O, H2O2) lowers the need, too.
+
+    Parameters
+    ----------
+    elements : mapping of str to float
+        Atoms of each element in the feed, [mol].
+    oxygen : float
+        O2 in it as such, [mol].
+
+    Returns
+    -------
+    supply, need : float
+        O2, [mol].
+
+    Raises
+    ------
+    FeedError
+        As for `oxygen_need`.
+
+    Examples
+    --------
+    >>> supply_and_need({"O": 2.0, "N": 8.0}, 1.0)
+    (1.0, 0.0)
+    """
+    need = oxygen_need(elements)
+    return (oxygen, need + oxygen) if oxygen > 0.0 and need < 0.0 else (0.0, need)
 
 
 def counted_carbon(elements: Mapping[str, float]) -> float:

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from math import isfinite
 from typing import Any, Final
 
+from gibbsmin.report.fuel_sheet import fuel_sheet
 from gibbsmin.report.held_words import held_words
 from gibbsmin.report.numbers import figures, plain
 from gibbsmin.report.table import heading
@@ -35,10 +36,15 @@ def explained(told: Mapping[str, Any]) -> list[str]:
     lines = heading(told["title"])
     for feed in told["feeds"]:
         lines += _feed(feed, told["basis"], mass, units)
+        lines += fuel_sheet(told["fuels"][feed["name"]]) if feed["name"] in told["fuels"] else []
+        lines += _moisture(told["moisture"].get(feed["name"]), units)
+        lines += _ratios("ratios", told["ratios"].get(feed["name"], {}))
         lines += [*_heating(told["heating_values"].get(feed["name"], {})), ""]
     lines.append(f"{'all feeds, by element':<32}{told['basis']:>16}")
     lines += [f"  {element:<30}{figures(n):>16}" for element, n in told["elements"].items()]
     lines.append("")
+    if ratios := _ratios("all feeds", told["ratios"].get("all feeds", {})):
+        lines += [*ratios, ""]
     lines += _species(told["species"])
     lines += labelled("held", held_words(told["held"]))
     if told["remark"]:
@@ -66,6 +72,36 @@ def _feed(feed: Mapping[str, Any], basis: str, mass: str, units: Mapping[str, st
     if len(shown) > _ROWS:
         lines.append(f"  {len(shown) - _ROWS} more")
     return lines
+
+
+def _moisture(moist: Mapping[str, float] | None, units: Mapping[str, str]) -> list[str]:
+    """Water vapour of a gas."""
+    if moist is None:
+        return []
+    x = moist["mole_fraction"]
+    told = f"{figures(100.0 * x)} mole %" if x >= 1e-3 else f"{figures(1e6 * x)} ppmv"
+    told += f" of water vapour, {figures(1e3 * moist['humidity_ratio'])} g/kg dry gas"
+    if isfinite(moist["dew_point"]):
+        temperature, pressure = (units.get(key, si) for key, si in (("temperature", "K"), ("pressure", "Pa")))
+        told += (
+            f", dew point {from_si(moist['dew_point'], temperature):.1f} {temperature} at "
+            f"{figures(from_si(moist['pressure'], pressure))} {pressure}"
+        )
+    return labelled("moisture", told)
+
+
+def _ratios(label: str, ratios: Mapping[str, float]) -> list[str]:
+    """Air ratio in its three forms, steam and oxygen to carbon, as far as there are any."""
+    told = []
+    if "air_ratio" in ratios:
+        excess = f"excess air {100.0 * ratios['excess_air']:.4g} %, " if ratios["excess_air"] > -1e-9 else ""
+        inverse = f"equivalence ratio {figures(ratios['equivalence_ratio'])}"
+        told.append(f"air ratio {figures(ratios['air_ratio'])} ({excess}{inverse})")
+    if "steam_to_carbon" in ratios:
+        told.append(f"steam to carbon {figures(ratios['steam_to_carbon'])} mol/mol")
+    if "oxygen_to_carbon" in ratios:
+        told.append(f"O2 to carbon {figures(ratios['oxygen_to_carbon'])} mol/mol")
+    return labelled(label, ", ".join(told)) if told else []
 
 
 def _heating(values: Mapping[float, Mapping[str, tuple[float, float]]]) -> list[str]:

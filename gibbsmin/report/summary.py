@@ -7,6 +7,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from gibbsmin.practice.cautions import CLOSING, Caution, gather
+from gibbsmin.report.key_figure_table import state_key_figures, sweep_key_figures
 from gibbsmin.report.sweep_table import sweep_table
 from gibbsmin.report.table import THRESHOLD, state_table
 from gibbsmin.report.view import view
@@ -34,10 +35,14 @@ def summary(result: Result, judged: Sequence[Sequence[Caution]], folder: Path) -
         None longer than 80 columns, but for the name of the folder.
     """
     if len(result.batch) > 1:
-        lines = sweep_table(result)
+        lines = [*sweep_table(result), *sweep_key_figures(result.key_figures)]
     else:
         threshold = float(result.case.get("show", {}).get("threshold") or THRESHOLD)
         lines = state_table(result.title, view(result, 0), result.basis, result.display_units, threshold)
+        if result.batch.certified[0]:
+            lines += state_key_figures(result.key_figures, 0)
+    if result.key_figures:
+        lines.append("")
     found = gather(judged, peaks(result))
     for caution in found:
         lines += labelled("caution", caution.text)

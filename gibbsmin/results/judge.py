@@ -9,18 +9,24 @@ from numpy.typing import NDArray
 
 from gibbsmin.constants import STANDARD_TEMPERATURE
 from gibbsmin.practice.carbon import carbon_activity
-from gibbsmin.practice.cautions import Caution, Circumstances, cautions, flammable_feed
-from gibbsmin.practice.hazards import FLAMMABLE, SELF_IGNITING, TOXIC
+from gibbsmin.practice.caution import Caution, Fed
+from gibbsmin.practice.cautions import Circumstances, cautions
+from gibbsmin.practice.hazards import CHLORINE, FLAMMABLE, REACTIVE, SELF_IGNITING, TOXIC
+from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.practice.vessels import vessel
 from gibbsmin.results.fractions import gas_fractions
 from gibbsmin.thermo.database import load
-from gibbsmin.thermo.record import Species
+from gibbsmin.thermo.record import FROZEN, Species
+from gibbsmin.units import quantity
 
 if TYPE_CHECKING:
     from gibbsmin.results.result import Result
 
 GRAPHITE: Final = "C(s):graphite"
-_WATCHED: Final = frozenset({*TOXIC, *FLAMMABLE, *SELF_IGNITING, "O2"})
+FLUE_GAS: Final = "flue gas"
+"""Set of key figures that the cautions about stacks and permits are judged by."""
+
+_WATCHED: Final = frozenset({*TOXIC, *FLAMMABLE, *SELF_IGNITING, *REACTIVE, *CHLORINE, "O2"})
 
 
 def judge(result: Result) -> list[list[Caution]]:
@@ -37,9 +43,9 @@ def judge(result: Result) -> list[list[Caution]]:
     """
     batch, system = result.batch, result.system
     watched = [
-        (k, name)
+        (k, substance)
         for k, (name, gas) in enumerate(zip(system.species, system.gas, strict=True))
-        if gas and name in _WATCHED
+        if gas and (substance := name.removesuffix(FROZEN)) in _WATCHED
     ]
     amounts, potentials, certified = batch.amounts, batch.element_potentials, batch.certified
     gas_total = amounts[:, system.gas].sum(axis=1)  # (states,)
@@ -49,7 +55,8 @@ def judge(result: Result) -> list[list[Caution]]:
     if graphite is not None:
         T = np.where(certified, batch.temperature, STANDARD_TEMPERATURE)  # any will do where there is no answer
         activity = carbon_activity(potentials[:, system.elements.index("C")], graphite, T)
-    mixed = feed = _mixed_feed(result)
+    vessels: list[Caution] = []
+    flue = _flue_gas(result)
     is_gas = np.asarray(system.gas, bool)
     start, keeps_heat = _start(result), "temperature" not in result.held
     found: list[list[Caution]] = []
@@ -58,7 +65,9 @@ def judge(result: Result) -> list[list[Caution]]:
             found.append([])
             continue
         total = float(gas_total[i])
-        gas = {name: float(amounts[i, k]) / total for k, name in watched} if total > 0.0 else {}
+        gas: dict[str, float] = {}
+        for k, name in watched if total > 0.0 else ():
+            gas[name] = gas.get(name, 0.0) + float(amounts[i, k]) / total
         here = Circumstances(
             gas=gas,
             temperature=float(batch.temperature[i]),
@@ -66,15 +75,21 @@ def judge(result: Result) -> list[list[Caution]]:
             carbon_activity=None if activity is None else float(activity[i]),
             solid_carbon=float(amounts[i, solid]) if solid is not None else 0.0,
             warnings=batch.state(i).warnings,
+            feeds=_feeds(result, i),
+            wall_temperature=_at(flue, "stack_temperature", i),
+            dew_points={one.label: float(one.value[i]) for one in flue.values() if one.name.startswith("dew_point_")},
+            measured_oxygen=_at(flue, "oxygen_dry", i),
+            reference_oxygen=_at(flue, "reference_oxygen", i),
+            oxidant_oxygen=_at(flue, "oxidant_oxygen", i),
         )
         if start is not None:
             condensed = bool(amounts[i, ~is_gas].any())
-            feed = [vessel(here.pressure, _known(start[i]), keeps_heat=keeps_heat, condensed=condensed), *mixed]
+            vessels = [vessel(here.pressure, _known(start[i]), keeps_heat=keeps_heat, condensed=condensed)]
         account = result.audit(i)
         against = []
         if account is not None and account.entropy_generated < 0.0:
             against = [Caution("second law", account.sentence.replace("°C", "degC"), -account.lost_work)]
-        found.append([*against, *feed, *cautions(here)])
+        found.append([*against, *vessels, *cautions(here)])
     return found
 
 
@@ -107,11 +122,25 @@ def _known(value: float) -> float | None:
     return float(value) if value > 0.0 else None
 
 
-def _mixed_feed(result: Result) -> list[Caution]:
-    """Return the caution about the feeds as they meet, if any."""
-    mixed: dict[str, float] = {}
-    for feed in result.feeds.values():
-        for name, n in feed.amounts.items():
-            mixed[name] = mixed.get(name, 0.0) + n
-    caution = flammable_feed(mixed)
-    return [] if caution is None else [caution]
+def _feeds(result: Result, i: int) -> list[Fed]:
+    """Gather the feeds of one state: amounts as the case has them, temperatures as they are varied."""
+    feeds = []
+    for name, feed in result.feeds.items():
+        varied = f"feeds.{name}.temperature"
+        temperature = feed.temperature
+        if varied in result.inputs:
+            typed = f"{float(result.inputs[varied][i])!r} {result.input_units[varied]}"
+            temperature = quantity(typed, "K", varied)
+        feeds.append(Fed(name, feed.amounts, temperature))
+    return feeds
+
+
+def _flue_gas(result: Result) -> dict[str, KeyFigure]:
+    """Key figures of the flue gas by name; empty where the case does not ask for them."""
+    return {one.name: one for one in result.key_figures.get(FLUE_GAS, ())}
+
+
+def _at(figures: dict[str, KeyFigure], name: str, i: int) -> float | None:
+    """Value of a key figure in one state; None where there is none."""
+    value = float(figures[name].value[i]) if name in figures else np.nan
+    return value if np.isfinite(value) else None

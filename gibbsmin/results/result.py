@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping
-from dataclasses import asdict, dataclass
+from collections.abc import Mapping, Sequence
+from dataclasses import asdict, dataclass, field
 from functools import cached_property
 from typing import TYPE_CHECKING, Any, Final
 
@@ -12,6 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.practice.audit import Audit
+from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.results.account import Account
 from gibbsmin.results.properties import PROPERTIES, properties
 from gibbsmin.states.batch import Batch
@@ -103,6 +104,8 @@ class Result:
         The two conditions that were held, by the names that `equilibria` takes, in SI.
     account : Account
         What the feeds bring, and how energy is exchanged.
+    key_figures : dict of str to list of KeyFigure
+        Numbers of the trade that the case asks for, by set.
     """
 
     title: str
@@ -119,6 +122,7 @@ class Result:
     feeds: dict[str, FeedAmounts]
     held: dict[str, Floats]
     account: Account
+    key_figures: Mapping[str, Sequence[KeyFigure]] = field(default_factory=dict)
 
     def state(self, index: int) -> State:
         """Return state ``index``, counted from 0."""
@@ -200,8 +204,16 @@ class Result:
             "input_units": self.input_units,
             **({"remark": self.account.remark} if self.account.remark else {}),
             "provenance": {"case_sha256": self.case_sha256, "data_version": load().version},
+            **({"key_figures": self._legend()} if self.key_figures else {}),
             **({"left_out": {"below_mole_fraction": NAMED_FRACTION, "species": left_out}} if left_out else {}),
             "states": [self._state(i, arrays, named, reasons[i]) for i in range(len(batch))],
+        }
+
+    def _legend(self) -> dict[str, dict[str, dict[str, str]]]:
+        """Tell what the numbers of the trade are, by set and name."""
+        return {
+            group: {one.name: {"label": one.label, "unit": one.unit, "note": one.note} for one in figures}
+            for group, figures in self.key_figures.items()
         }
 
     def _state(self, i: int, arrays: dict[str, Any], named: NDArray[np.intp], reason: str) -> dict[str, Any]:
@@ -218,6 +230,16 @@ class Result:
             "heat": self.heat(i),
             "work": self.work(i),
             **{name: _plain(values[i]) for name, values in self.properties.items()},
+            **(
+                {
+                    "key_figures": {
+                        group: {one.name: _plain(one.value[i]) for one in figures}
+                        for group, figures in self.key_figures.items()
+                    }
+                }
+                if self.key_figures
+                else {}
+            ),
             "audit": None if (account := self.audit(i)) is None else account.to_dict(),
             "phases": phases,
             "amounts": {names[k]: _plain(amounts[k]) for k in named},
@@ -253,6 +275,9 @@ class Result:
             if one.name in self.properties:
                 kind = one.rate if self.basis == "mol/s" else one.unit
                 extra[one.name] = (self.properties[one.name], kind, one.meaning)
+        for group, figures in self.key_figures.items():
+            for figure in figures:
+                extra[f"{group}.{figure.name}"] = (figure.value, figure.unit, figure.label)
         data = labelled(self.system, self.batch, self.axes, self.basis, extra)
         return data.assign_attrs(title=self.title, case_sha256=self.case_sha256)
 

@@ -68,6 +68,11 @@ def spreadsheet(result: Result) -> str:
         for one in PROPERTIES
         if (values := result.properties.get(one.name)) is not None
     ]
+    columns += [
+        (f"{group}.{one.name} [{_unit(one.unit)}]", _cells(one.value, good))
+        for group, figures in result.key_figures.items()
+        for one in figures
+    ]
     columns += [(f"{system.species[k]} [{result.basis}]", _cells(amounts[:, k], good)) for k in listed + solids]
     columns += [(f"{system.species[k]} [mol/mol gas]", _cells(fractions[:, k], good)) for k in listed]
     columns += [

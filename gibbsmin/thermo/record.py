@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from math import log
 from typing import Any, Final, NamedTuple
@@ -22,6 +22,10 @@ from gibbsmin.thermo.polynomial import (
 
 R_OF_FIT: Final = 8.31451
 """Gas constant that the polynomials of NASA TM-4513 were fitted with, [J/mol/K]; H and S come back exact with it."""
+
+
+FROZEN: Final = " [frozen]"
+"""Ends the name of a species that stands for the part of a substance that does not react."""
 
 
 class Piece(NamedTuple):
@@ -93,6 +97,15 @@ class Species:
 
     def __hash__(self) -> int:
         return hash(self.name)
+
+    def frozen(self) -> Species:
+        """Return the same substance as a species of its own, for a part that does not react."""
+        return replace(self, name=self.substance + FROZEN, aliases=())
+
+    @property
+    def substance(self) -> str:
+        """Name without the mark of a frozen part."""
+        return self.name.removesuffix(FROZEN)
 
     @property
     def condensed(self) -> bool:

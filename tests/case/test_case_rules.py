@@ -145,3 +145,30 @@ def test_what_a_rule_asks_for_and_cannot_be_is_told_of_the_state(run: Callable[.
     result = run(rest='[constraint.slip]\namounts = { CH4 = 1.0 }\nsum = "200 kmol/h"\n')
     assert not result.batch.certified[0]
     assert "constraints" in result.batch.reason[0]
+
+
+def test_rules_can_be_varied(run: Callable[..., gm.Result]) -> None:
+    rest = '[approach.r]\nreaction = "CH4 + H2O = CO + 3 H2"\ntemperature = -10\n'
+    rest += '[[sweep]]\nvary = "approach.r.temperature"\nvalues = ["-20 K", 0, 10.0]\n'
+    rest += '[[sweep]]\nvary = "species.carbon_conversion"\nfrom = 90\nto = 100\npoints = 2\n'
+    result = run("carbon_conversion = 95.0", rest=rest)
+    assert result.batch.certified.all()
+    graphite = result.batch.amounts[:, result.system.index["C(s):graphite"]]
+    assert graphite == pytest.approx(np.tile([10.1, 0.0], 3) * KMOL_H, abs=1e-12)
+    methane = result.batch.amounts[:, result.system.index["CH4"]].reshape(3, 2)
+    assert (np.diff(methane, axis=0) < 0.0).all(), "the nearer to equilibrium, the less methane is left"
+
+
+@pytest.mark.parametrize(
+    ("vary", "values", "words"),
+    [
+        ("approach.r.temperature", '["10 degC"]', "kelvin"),
+        ("approach.r.temperature", "[600.0]", "too far"),
+        ("species.carbon_conversion", "[101.0]", "at most 100"),
+        ("constraint.slip.sum", '["1 kmol/h"]', "Known here"),
+    ],
+)
+def test_values_of_rules_that_will_not_do(run: Callable[..., gm.Result], vary: str, values: str, words: str) -> None:
+    rest = '[approach.r]\nreaction = "CH4 + H2O = CO + 3 H2"\ntemperature = -10\n'
+    with pytest.raises(CaseError, match=words):
+        run("carbon_conversion = 95.0", rest=f'{rest}[[sweep]]\nvary = "{vary}"\nvalues = {values}\n')

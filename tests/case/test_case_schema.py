@@ -144,7 +144,7 @@ def test_no_more_problems_than_a_screen_holds(write):
 
 def sweep_of(write, text):
     case = read(write(('vary = "held.temperature"\nfrom = "800 degC"\nto = "900 degC"\npoints = 3', text)))
-    return axis_values(case.sweep[0], case.feeds, case.held)
+    return axis_values(case.sweep[0], case)
 
 
 def test_linear_values_in_si_and_as_typed(write):

@@ -6,21 +6,21 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from gibbsmin.practice.cautions import (
-    CLOSING,
-    Circumstances,
+from gibbsmin.practice.caution import DATA, GRAVE, HARMFUL, MOST, PLANT, Caution, Fed, foremost
+from gibbsmin.practice.cautions import CLOSING, Circumstances, cautions, gather, sentences
+from gibbsmin.practice.gas_cautions import (
     asphyxiant,
-    carbon,
     carbonyl,
-    cautions,
     flammable,
     flammable_feed,
-    gather,
+    hot_limits,
     oxygen,
-    sentences,
+    premix,
+    reactive,
     toxic,
 )
 from gibbsmin.practice.hazards import FLAMMABLE, TOXIC
+from gibbsmin.practice.plant_cautions import acid, carbon, cracking, diluted, dioxins, metal_dusting, steel
 
 AIR = {"N2": 0.78084, "O2": 0.209476, "Ar": 0.00934, "CO2": 0.000314}
 
@@ -153,6 +153,7 @@ def test_air_gets_no_caution_at_all() -> None:
 def test_every_list_ends_by_deferring_to_local_codes_and_practice() -> None:
     found = cautions(Circumstances({"CO": 0.5, "N2": 0.5}, 400.0, 2e6, warnings=["X is used outside its range."]))
     assert [caution.kind for caution in found] == ["toxic", "flammable", "carbonyl", "data"]
+    assert [caution.grade for caution in found] == [GRAVE, GRAVE, GRAVE, DATA]
     assert sentences(found)[-1] == CLOSING
     assert "Local codes and licensed practice decide" in CLOSING
 
@@ -183,3 +184,168 @@ def test_any_gas_gives_one_sentence_a_kind(gas: dict[str, float], temperature: f
 def test_more_of_a_toxic_gas_never_silences_its_caution(gas: dict[str, float], factor: float) -> None:
     if toxic(gas) is not None:
         assert toxic({name: x * factor for name, x in gas.items()}) is not None
+
+
+def test_lower_limit_of_hot_methane() -> None:
+    """Zabetakis (1965): 4.4 - 0.75 (200 - 25) / 191.8, in percent and kcal/mol of the lower heating value."""
+    lower, upper = hot_limits("CH4", 473.15)
+    assert 100.0 * lower == pytest.approx(4.4 - 0.75 * 175.0 / 191.8, abs=2e-3)
+    assert 100.0 * upper == pytest.approx(17.0 + 0.75 * 175.0 / 191.8, abs=2e-3)
+    assert hot_limits("CH4", 200.0) == (FLAMMABLE["CH4"].lower, FLAMMABLE["CH4"].upper)
+
+
+@given(st.sampled_from(sorted(FLAMMABLE)), st.floats(200.0, 3000.0), st.floats(0.0, 500.0))
+def test_heat_only_widens_the_limits(name: str, temperature: float, more: float) -> None:
+    low, high = hot_limits(name, temperature)
+    lower, higher = hot_limits(name, temperature + more)
+    assert 0.0 <= lower <= low < high <= higher <= 1.0
+
+
+def test_a_lean_feed_becomes_flammable_when_hot() -> None:
+    feed = {"CH4": 4.0, "O2": 20.2, "N2": 75.8}
+    assert flammable_feed(feed) is None
+    assert flammable_feed(feed, 673.15) is not None
+
+
+MIXTURE = {"CH4": 9.0, "O2": 19.0, "N2": 72.0}
+
+
+@pytest.mark.parametrize(("celsius", "raised"), [(500.0, False), (560.0, True)])
+def test_premix_near_its_self_ignition(celsius: float, raised: bool) -> None:
+    """Methane in air: 600 degC (IEC 60079-20-1), less 50."""
+    found = premix([Fed("air", {"O2": 21.0, "N2": 79.0}, 900.0), Fed("mixture", MIXTURE, celsius + 273.15)])
+    assert (found is not None) is raised
+    assert premix([Fed("mixture", MIXTURE, None)]) is None
+    assert premix([Fed("gas", {"CH4": 1.0}, 1000.0), Fed("lean", {"CH4": 0.1, "O2": 21.0, "N2": 79.0}, 700.0)]) is None
+
+
+@pytest.mark.parametrize(
+    ("amounts", "celsius", "raised"),
+    [
+        ({"CH4": 0.9, "N2": 0.1}, 560.0, True),
+        ({"CH4": 0.9, "N2": 0.1}, 540.0, False),
+        ({"CH4": 1.0, "H2O": 3.0}, 650.0, False),
+        ({"H2": 1.0}, 700.0, False),
+        ({"C6H6:benzene": 0.2, "H2": 0.8}, 700.0, True),
+        ({"CH4": 1.0}, None, False),
+    ],
+)
+def test_fuel_gas_that_cracks(amounts: dict[str, float], celsius: float | None, raised: bool) -> None:
+    feed = Fed("fuel", amounts, None if celsius is None else celsius + 273.15)
+    assert (cracking([feed]) is not None) is raised
+
+
+@pytest.mark.parametrize(
+    ("activity", "monoxide", "celsius", "raised"),
+    [
+        (1.2, 0.2, 600.0, True),
+        (1.0, 0.2, 900.0, True),  # it cools past the range somewhere
+        (0.9, 0.2, 600.0, False),
+        (1.2, 0.001, 600.0, False),
+        (1.2, 0.2, 350.0, False),
+        (None, 0.2, 600.0, False),
+    ],
+)
+def test_metal_dusting(activity: float | None, monoxide: float, celsius: float, raised: bool) -> None:
+    assert (metal_dusting({"CO": monoxide}, activity, celsius + 273.15) is not None) is raised
+
+
+def test_graphite_that_settles_out_dusts_metal() -> None:
+    found = cautions(Circumstances({"CO": 0.3, "H2": 0.7}, 900.0, 1e5, carbon_activity=1.0, solid_carbon=0.1))
+    assert {"carbon", "metal dusting"} <= {caution.kind for caution in found}
+
+
+@pytest.mark.parametrize(
+    ("gas", "celsius", "bar", "words"),
+    [
+        ({"H2": 0.5}, 400.0, 20.0, ["H2 at 10 bar", "API RP 941"]),
+        ({"H2": 0.5}, 200.0, 20.0, []),
+        ({"H2": 0.5}, 400.0, 5.0, []),
+        ({"H2S": 1e-4}, 300.0, 1.0, ["H2S 100 ppmv scales"]),
+        ({"H2S": 1e-4}, 250.0, 1.0, []),
+        ({"NH3": 0.05, "H2": 0.6}, 450.0, 150.0, ["H2 at 90 bar", "NH3 5 % nitrides"]),
+        ({"NH3": 0.05}, 340.0, 150.0, []),
+    ],
+)
+def test_steel(gas: dict[str, float], celsius: float, bar: float, words: list[str]) -> None:
+    found = steel(gas, celsius + 273.15, bar * 1e5)
+    assert (found is None) is (not words)
+    assert found is None or all(word in found.text for word in words)
+
+
+@pytest.mark.parametrize(
+    ("wall", "raised", "word"),
+    [(120.0, True, "below the highest"), (140.0, True, "less than 10 K above"), (148.0, False, ""), (None, False, "")],
+)
+def test_acid_condensation(wall: float | None, raised: bool, word: str) -> None:
+    dews = {"water": 319.0, "H2SO4": 137.3 + 273.15, "HCl": float("nan")}
+    found = acid(None if wall is None else wall + 273.15, dews)
+    assert (found is not None) is raised
+    assert found is None or (word in found.text and "H2SO4: 137 degC" in found.text)
+    assert acid(300.0, {"HCl": float("nan")}) is None
+
+
+@pytest.mark.parametrize(
+    ("gas", "celsius", "wall", "raised"),
+    [
+        ({"HCl": 1e-3, "O2": 0.08, "CO2": 0.1}, 300.0, None, True),
+        ({"HCl": 1e-3, "O2": 0.08, "CO2": 0.1}, 1100.0, None, False),
+        ({"HCl": 1e-3, "O2": 0.08, "CO2": 0.1}, 1100.0, 180.0, True),  # it is cooled through the range
+        ({"HCl": 1e-3, "O2": 0.08, "CO2": 0.1}, 150.0, 120.0, False),
+        ({"HCl": 1e-3, "CO2": 0.1}, 300.0, None, False),
+        ({"O2": 0.08, "CO2": 0.1}, 300.0, None, False),
+        ({"HCl": 1e-3, "O2": 0.08}, 300.0, None, False),
+    ],
+)
+def test_dioxins(gas: dict[str, float], celsius: float, wall: float | None, raised: bool) -> None:
+    found = dioxins(gas, celsius + 273.15, None if wall is None else wall + 273.15)
+    assert (found is not None) is raised
+
+
+@pytest.mark.parametrize(
+    ("measured", "reference", "oxidant", "word"),
+    [
+        (0.18, 0.03, 0.2095, "fourfold"),
+        (0.05, 0.03, 0.95, "no air"),
+        (0.05, 0.03, 0.2095, None),
+        (0.18, None, 0.95, None),
+        (None, 0.03, None, None),
+    ],
+)
+def test_reference_oxygen_that_does_not_fit(
+    measured: float | None, reference: float | None, oxidant: float | None, word: str | None
+) -> None:
+    found = diluted(measured, reference, oxidant)
+    assert (found is None) if word is None else (found is not None and word in found.text)
+
+
+def test_fluorine_is_reactive() -> None:
+    assert reactive({"F2": 2e-3}) is not None
+    assert reactive({"F2": 1e-5, "N2": 1.0}) is None
+
+
+def test_no_air_to_breathe_is_grave_and_told_beside_a_lesser_poison() -> None:
+    thin, none = asphyxiant({"O2": 0.15, "N2": 0.85}), asphyxiant({"N2": 1.0})
+    assert (thin and thin.grade, none and none.grade) == (HARMFUL, GRAVE)
+    kinds = [caution.kind for caution in cautions(Circumstances({"N2": 0.9997, "CO": 3e-4}, 300.0, 1e5))]
+    assert kinds == ["asphyxiant", "toxic"]
+
+
+grades = st.lists(st.sampled_from([GRAVE, HARMFUL, PLANT, DATA]), max_size=20)
+
+
+@given(grades)
+def test_what_can_kill_is_never_left_out_of_a_list(given_grades: list[int]) -> None:
+    found = [Caution(f"kind {k}", f"Text {k}.", grade=grade) for k, grade in enumerate(given_grades)]
+    shown = foremost(found)
+    grave = [caution for caution in found if caution.grade == GRAVE]
+    assert [caution for caution in shown if caution.grade == GRAVE] == grave
+    assert [caution.grade for caution in shown] == sorted(caution.grade for caution in shown)
+    assert len(shown) <= max(MOST, len(grave)) + 1
+    last = shown[-1].text if shown else ""
+    assert all(caution in shown or caution.kind in last for caution in found), "what is left out is named"
+
+
+def test_a_short_list_is_shown_whole() -> None:
+    found = [Caution("a", "A.", grade=DATA), Caution("b", "B.", grade=GRAVE)]
+    assert [caution.kind for caution in foremost(found)] == ["b", "a"]

@@ -79,6 +79,14 @@ def test_explained() -> None:
                 298.15: {"per_mole": (8.906e5, 8.026e5), "per_mass": (55.5e6, 50e6), "per_normal_volume": (nan, nan)}
             }
         },
+        "fuels": {},
+        "moisture": {
+            "gas": {"mole_fraction": 0.01, "humidity_ratio": 0.0063, "dew_point": 280.45, "pressure": 101325.0}
+        },
+        "ratios": {
+            "gas": {"air_ratio": 1.15, "excess_air": 0.15, "equivalence_ratio": 1 / 1.15},
+            "all feeds": {"air_ratio": 0.25, "excess_air": -0.75, "equivalence_ratio": 4.0, "steam_to_carbon": 3.0},
+        },
         "sweep": [{"vary": "held.temperature", "first": 600.0, "last": 1000.0, "unit": "degC", "points": 81}],
         "states": 81,
     }
@@ -94,4 +102,8 @@ def test_explained() -> None:
     assert "and 60 more" in text
     assert "C2H2:acetylene" in text
     assert "81 values from 600 to 1000 degC" in text
+    words = " ".join(text.split())
+    assert "1.000 mole % of water vapour, 6.300 g/kg dry gas, dew point 7.3 degC at 1.013 bar" in words
+    assert "ratios air ratio 1.150 (excess air 15 %, equivalence ratio 0.8696)" in words
+    assert "all feeds air ratio 0.2500 (equivalence ratio 4.000), steam to carbon 3.000 mol/mol" in words
     assert "81 states" in text
