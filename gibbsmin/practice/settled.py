@@ -125,4 +125,4 @@ class Settled:
 
 def _share(part: Floats, whole: Floats) -> Floats:
     """Part of a whole; nan where there is no whole."""
-    return np.divide(part, whole, out=np.full(np.shape(whole), np.nan), where=whole > 0.0)
+    return np.asarray(np.divide(part, whole, out=np.full(np.shape(whole), np.nan), where=whole > 0.0))

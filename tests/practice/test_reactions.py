@@ -296,7 +296,7 @@ def test_no_crossover() -> None:
     assert reaction("H2 + Cl2 = 2 HCl").crossovers == ()
 
 
-@pytest.mark.parametrize("equation", ["7 S(l) = S7", "S5 = 5 S(l)", "C8H18(g):n-octane = C8H18:isooctane"])
+@pytest.mark.parametrize("equation", ["C8H18(g):n-octane = C8H18:isooctane"])
 def test_every_crossover_is_found(equation: str) -> None:
     r = reaction(equation)
     T = np.linspace(*r.search_range, 20001)
@@ -422,7 +422,7 @@ def test_uncertainty_is_the_quadrature_of_the_species() -> None:
 
 
 def test_assumed_uncertainties_are_named() -> None:
-    assert "CaCO3(s):calcite" in reaction("CaCO3(s) = CaO(s) + CO2").uncertainty(500.0).assumed
+    assert "K2CO3(s)" in reaction("K2CO3(s) = K2O(s) + CO2").uncertainty(500.0).assumed
 
 
 def test_a_crossover_moves_with_the_enthalpy_as_its_uncertainty_says() -> None:

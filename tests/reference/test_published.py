@@ -265,6 +265,8 @@ MOVED = {
     "reaction-a28-OH": "OH re-anchored to ATcT",
     "property-j-OH": "OH re-anchored to ATcT",
     "reaction-jhcn-1500": "HCN re-anchored to ATcT",
+    "reaction-fe2o3-H": "Fe2O3 from CRC",
+    "reaction-thermite-H": "Fe2O3 from CRC",
     "humid-20": "abridged atomic weights",
     "humid-25": "abridged atomic weights",
     "humid-40": "abridged atomic weights",
