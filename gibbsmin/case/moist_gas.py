@@ -46,12 +46,14 @@ def air_as_fed(feed: Feed) -> tuple[dict[str, float], float]:
     Raises
     ------
     RuleError
-        The air cannot be enriched that far.
+        The air cannot be enriched that far, or what is added is not dry; with the key.
     """
     air = dry_air(feed.carbon_dioxide_in_air)
     if feed.oxygen_mole_percent is None:
         return air, 1.0
     added = feed.enriched_with or {"O2": 100.0}
+    if "H2O" in added:
+        raise RuleError("what air is enriched with is given dry; leave its water out", "enriched_with", "H2O")
     whole = sum(added.values())
     try:
         return enriched(air, {name: x / whole for name, x in added.items()}, feed.oxygen_mole_percent / 100.0)

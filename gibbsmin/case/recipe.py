@@ -164,6 +164,8 @@ def read_recipe(name: str, feed: Feed, find: Find) -> Recipe:
     records: dict[Species, float] = {}
     for label, share in given.items():
         at = (key,) if key in ("species", "composition") else (key, label)
+        if label in (feed.enriched_with or {}):
+            at = ("enriched_with", label)
         try:
             record = find(label)
         except SpeciesError as error:

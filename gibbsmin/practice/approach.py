@@ -153,7 +153,6 @@ def approach(settled: Settled, watched: Watched) -> list[KeyFigure]:
             T_eq,
             "K",
             "degC",
-            f"Where {each.equation} would be in balance with this gas.",
         ),
         KeyFigure(f"{watched.key}_approach", f"approach of {watched.label}", away, "K", note=note),
     ]

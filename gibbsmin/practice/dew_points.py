@@ -170,7 +170,7 @@ def dew_points(
         figures.append(
             KeyFigure(
                 f"dew_point_sulfuric_acid_{name}",
-                f"dew point H2SO4, {author.replace(' and ', '-').rsplit(' ', 1)[0]}",
+                f"dew point H2SO4, {author.split(' ')[0]}",
                 _above_water(function(p_w, p_a), p_w),
                 "K",
                 "degC",

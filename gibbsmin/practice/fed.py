@@ -17,6 +17,8 @@ Floats = NDArray[np.float64]
 WATER: Final = ("H2O", "H2O(l)", "H2O(s)")
 """Water in all its forms."""
 
+_NO_HEAT: Final = 1e3  # J/kg
+
 
 def hydrocarbon_carbon(settled: Settled) -> Floats:
     """Carbon of hydrocarbons, oxygenates and fuels in all feeds; that of CO, CO2 and carbonates does not count.
@@ -48,11 +50,14 @@ def fed_amount(settled: Settled) -> Floats:
 
 
 def fuels(settled: Settled) -> list[FeedFacts]:
-    """List the feeds that burn: with a lower heating value above zero in some state, or by analysis and none known."""
+    """List the feeds that burn: with a lower heating value above nothing in some state, or by analysis and none known.
+
+    Nothing is 1 kJ/kg, so that rounding does not make a fuel of the vapour in moist air.
+    """
     return [
         feed
         for feed in settled.feeds.values()
-        if (feed.by_analysis if feed.lower is None else bool((feed.lower > 0.0).any()))
+        if (feed.by_analysis if feed.lower is None else bool((feed.lower > _NO_HEAT * feed.mass).any()))
     ]
 
 

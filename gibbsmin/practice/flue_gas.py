@@ -113,8 +113,11 @@ def flue_gas(settled: Settled, setting: FlueGasSetting, frozen: Settled) -> list
     list of KeyFigure
         Without fuel and oxidant among the feeds, composition, concentrations and dew points only.
     """
-    stays = 1.0 - np.asarray(setting.recirculated)
-    leaving = replace(frozen, amounts={name: stays * n for name, n in frozen.amounts.items()})
+    back = np.asarray(setting.recirculated)
+    gases = frozenset(frozen.gases)
+    leaving = replace(
+        frozen, amounts={name: (1.0 - back) * n if name in gases else n for name, n in frozen.amounts.items()}
+    )
     fire = firing(settled, setting.air_oxygen)
     enriched = np.zeros(len(settled.temperature), bool) if fire is None else fire.oxidant_oxygen > ENRICHED
     basis = Basis(
@@ -127,7 +130,12 @@ def flue_gas(settled: Settled, setting: FlueGasSetting, frozen: Settled) -> list
     pressure = _spread(setting.stack_pressure, settled.pressure)
     figures = _analysis(leaving)
     if fire is not None:
-        figures += _fire(fire, leaving, enriched) + _volumes(fire, leaving)
+        figures += _fire(fire, leaving, enriched)
+        if np.any(back > 0.0):
+            figures.append(_mixed_oxidant(settled, frozen, fire, back))
+        figures += _volumes(fire, leaving)
+    if not np.array_equal(settled.temperature, frozen.temperature, equal_nan=True):
+        figures += _unfrozen(settled)
     figures += pollutants(leaving, basis)
     if setting.reference_oxygen is not None:
         given = _spread(setting.reference_oxygen, settled.temperature)
@@ -211,6 +219,27 @@ def _fire(fire: Firing, leaving: Settled, enriched: NDArray[np.bool_]) -> list[K
             "Nm3/GJ",
             "No air left over. EPA Method 19 (from memory, turned to 0 degC): gas 218, oil 230, coal 245.",
         ),
+    ]
+
+
+def _mixed_oxidant(settled: Settled, frozen: Settled, fire: Firing, back: Floats) -> KeyFigure:
+    """O2 of the oxidants and the returned gas together; what hydrogen came back besides that of acids is water."""
+    came = settled.element("H") - settled.fed_element("H")
+    other = frozen.element("H", [name for name in frozen.gases if name != "H2O"])
+    returned = back * frozen.dry_gas + np.maximum(0.0, came - back * other) / 2.0
+    oxygen = fire.free_oxygen + back * frozen.amount("O2")
+    value = ratio(oxygen, fire.oxidant(dry=False) + returned)
+    note = "Oxidants and returned flue gas together, as the burner has them."
+    return KeyFigure("oxidant_oxygen_mixed", "O2 in oxidant with recycle, wet", value, "1", "%", note)
+
+
+def _unfrozen(settled: Settled) -> list[KeyFigure]:
+    """Give what the fire itself holds of gases that slow down on the way to the stack."""
+    note = f"Equilibrium at {spread(settled.temperature)}: what the fire tends to, not what the stack has."
+    return [
+        KeyFigure(f"{name.lower()}_settled", f"{name} where it settles, wet", settled.wet(name), "1", "ppmv", note)
+        for name in ("NO", "CO")
+        if name in settled.amounts
     ]
 
 

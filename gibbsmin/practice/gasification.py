@@ -21,6 +21,7 @@ from gibbsmin.practice.carbon import carbon
 from gibbsmin.practice.fed import fuels, moisture
 from gibbsmin.practice.firing import firing
 from gibbsmin.practice.gas_quality import heat_of_burning
+from gibbsmin.practice.heating import NORMAL_MOLAR_VOLUME
 from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.practice.potentials import record_of
 from gibbsmin.practice.settled import FeedFacts, Settled
@@ -71,8 +72,8 @@ def _charged(settled: Settled, burning: Sequence[FeedFacts]) -> list[KeyFigure]:
         KeyFigure(
             "gas_per_fuel",
             "dry gas per kg dry fuel",
-            ratio(settled.dry_gas, dry_fuel),
-            "mol/kg",
+            ratio(NORMAL_MOLAR_VOLUME * settled.dry_gas, dry_fuel),
+            "m3/kg",
             "Nm3/kg",
             "Nm3 at 0 degC and 101325 Pa.",
         ),
@@ -106,10 +107,11 @@ def _efficiency(settled: Settled, burning: Sequence[FeedFacts]) -> list[KeyFigur
             name, label = f"cold_gas_efficiency_{word}", f"cold-gas efficiency, {word[0].upper()}HV"
             figures.append(KeyFigure(name, label, value, shown="%", note=f"By {word} heating values, {basis}"))
     note = "At 25 degC for each Nm3 (0 degC, 101325 Pa) of dry gas, sulfur species included."
+    lower, higher = (ratio(heat, NORMAL_MOLAR_VOLUME * settled.dry_gas) for heat in (raw[1], raw[0]))
     return [
         *figures,
-        KeyFigure("raw_gas_lower", "LHV of raw gas, dry", ratio(raw[1], settled.dry_gas), "J/mol", "MJ/Nm3", note),
-        KeyFigure("raw_gas_higher", "HHV of raw gas, dry", ratio(raw[0], settled.dry_gas), "J/mol", "MJ/Nm3", note),
+        KeyFigure("raw_gas_lower", "LHV of raw gas, dry", lower, "J/m3", "MJ/Nm3", note),
+        KeyFigure("raw_gas_higher", "HHV of raw gas, dry", higher, "J/m3", "MJ/Nm3", note),
     ]
 
 

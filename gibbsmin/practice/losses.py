@@ -166,9 +166,15 @@ def losses(frozen: Settled, lower: Floats, higher: Floats, stack: Stack) -> list
     figures = [
         _percent("loss_flue_gas", "loss: flue gas", q_gas, f"{basis} Water as vapour, condensate as liquid."),
         _percent("loss_unburnt_gas", "loss: unburnt gas", q_burn, own),
-        _percent("loss_unburnt_carbon", "loss: unburnt solids", q_carbon, own),
-        _percent("loss_ash", "loss: heat of ash", q_ash, f"{basis} Ash leaves as hot as the gas."),
-        _percent("loss_wall", "loss: walls", np.full(q_gas.shape, stack.wall_loss), "Given, not calculated."),
+    ]
+    if np.any(q_carbon > 0.0):
+        figures.append(_percent("loss_unburnt_carbon", "loss: unburnt solids", q_carbon, own))
+    if np.any(np.abs(q_ash) > 0.0):
+        figures.append(_percent("loss_ash", "loss: heat of ash", q_ash, f"{basis} Ash leaves as hot as the gas."))
+    if stack.wall_loss > 0.0:
+        given = np.full(q_gas.shape, stack.wall_loss)
+        figures.append(_percent("loss_wall", "loss: walls", given, "Given, not calculated."))
+    figures += [
         _percent("efficiency_lower", "efficiency on LHV", efficiency, "100 % less all losses; fuel alone is input."),
         _percent("efficiency_higher", "efficiency on HHV", efficiency * ratio(lower, higher), "The same heat per HHV."),
         _percent("water_condensed", "water condensed", share, "Part of the vapour, at equilibrium with the stack gas."),

@@ -22,7 +22,7 @@ from gibbsmin.practice.tally import known, ratio
 
 Floats = NDArray[np.float64]
 
-LEAST: Final = 1e-9
+LEAST: Final = 1e-8
 """Dry mole fraction that a pollutant must reach in some state to be listed, [-]."""
 
 _COUNTED: Final = {
@@ -41,6 +41,9 @@ _COUNTED: Final = {
     "Hg": ("Hg", ("Hg",)),
 }
 _ORGANIC: Final = "TOC"
+_BY_VOLUME: Final = ("NOx", "CO", "NH3")
+"""Pollutants that rules for turbines and engines limit by volume, too (common practice, no source)."""
+_TURNED: Final = "Dry, 0 degC, 101325 Pa; none where the oxidant is enriched."
 
 
 @dataclass(frozen=True)
@@ -81,7 +84,7 @@ def pollutants(frozen: Settled, basis: Basis) -> list[KeyFigure]:
     Returns
     -------
     list of KeyFigure
-        Those that reach 1 ppb by volume in some state.
+        Those that reach 10 ppb by volume in some state.
     """
     at = f"equilibrium at T = {spread(frozen.temperature)}; measured stacks decide"
     figures: list[KeyFigure] = []
@@ -89,8 +92,10 @@ def pollutants(frozen: Settled, basis: Basis) -> list[KeyFigure]:
         present = [member for member in members if member in frozen.amounts]
         if name in ("NOx", "SOx"):
             text = f"{' + '.join(present)} as {counted}, {at}."
-        else:
+        elif len(present) > 1:
             text = f"{' + '.join(present)}, {at}."
+        else:
+            text = f"Of {at}."
         figures += _rows(frozen, basis, name, frozen.dry(*present), molar_mass(parse_formula(counted)[0]), text)
     carbon = ratio(frozen.element("C", _organic(frozen)), frozen.dry_gas)
     text = f"C of gases with C and H, HCN apart; {at}."
@@ -144,10 +149,14 @@ def _rows(frozen: Settled, basis: Basis, name: str, fraction: Floats, weight: fl
     """Make the rows of one pollutant; none where it never reaches ``LEAST``."""
     if not (fraction >= LEAST).any():
         return []
-    key, end = name.lower(), ", equilibrium at T"
+    key, end = name.lower(), ", at equilibrium"
     mass = fraction * frozen.dry_gas * weight
-    volume = KeyFigure(f"{key}_dry", f"{name} dry{end}", fraction, "1", "ppmv", note)
-    return [volume, *known(_by_mass(frozen, basis, key, name, mass_concentration(fraction, weight), mass, note, end))]
+    figures = [KeyFigure(f"{key}_dry", f"{name} dry{end}", fraction, "1", "ppmv", note)]
+    if basis.reference is not None and name in _BY_VOLUME:
+        label = f"{name} at {_percent(basis.reference)}{end}"
+        turned = _at_reference(fraction, frozen, basis, basis.reference)
+        figures.append(KeyFigure(f"{key}_volume_at_reference_oxygen", label, turned, "1", "ppmv", f"{note} {_TURNED}"))
+    return known([*figures, *_by_mass(frozen, basis, key, name, mass_concentration(fraction, weight), mass, note, end)])
 
 
 def _by_mass(
@@ -157,17 +166,24 @@ def _by_mass(
     if basis.reference is None:
         figures = [KeyFigure(f"{key}_mass", f"{name}{end}, as it is", value, "kg/m3", "mg/Nm3", note)]
     else:
-        turned = at_reference_oxygen(
-            value, frozen.dry("O2"), basis.reference, basis.air_oxygen, only_above=basis.only_above
-        )
-        text = f"{note} Dry, 0 degC, 101325 Pa; none where the oxidant is enriched."
-        label = f"{name} at {round(100.0 * basis.reference, 1):g} % O2{end}"
-        turned = np.where(basis.enriched, np.nan, turned)
-        figures = [KeyFigure(f"{key}_at_reference_oxygen", label, turned, "kg/m3", "mg/Nm3", text)]
+        label = f"{name} at {_percent(basis.reference)}{end}"
+        turned = _at_reference(value, frozen, basis, basis.reference)
+        figures = [KeyFigure(f"{key}_at_reference_oxygen", label, turned, "kg/m3", "mg/Nm3", f"{note} {_TURNED}")]
     if basis.lower is not None:
         per = ratio(mass, basis.lower)
         figures.append(KeyFigure(f"{key}_per_energy", f"{name} per LHV{end}", per, "kg/J", "mg/MJ", note))
     return figures
+
+
+def _at_reference(value: Floats, frozen: Settled, basis: Basis, reference: float) -> Floats:
+    """Turn a concentration in dry gas to the reference oxygen; nan where the oxidant is enriched."""
+    turned = at_reference_oxygen(value, frozen.dry("O2"), reference, basis.air_oxygen, only_above=basis.only_above)
+    return np.where(basis.enriched, np.nan, turned)
+
+
+def _percent(oxygen: float) -> str:
+    """Write a reference oxygen."""
+    return f"{round(100.0 * oxygen, 1):g} % O2"
 
 
 def _organic(frozen: Settled) -> list[str]:

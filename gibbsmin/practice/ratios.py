@@ -1,8 +1,8 @@
 """What ratios of feeds count: carbon for steam to carbon, oxygen need for air ratio.
 
 Common practice, no source, except where said: the stoichiometric reference burns C, H, S, N and halogens to CO2, H2O,
-SO2, N2 and HCl (HF, HBr, HI), and takes the elements of ash to the oxides of the usual ash analysis, whatever
-equilibrium says.
+SO2, N2 and HCl (HF, HBr, HI), and takes metals to the oxides of the usual ash analysis (Fe2O3, MnO, Cr2O3, V2O5, and
+those of divalent Zn, Pb, Cu, Ni, Ba, Sr), whatever equilibrium says.
 """
 
 from __future__ import annotations
@@ -40,6 +40,14 @@ _VALENCE: Final = {
     "Ti": 4,
     "P": 5,
     "Mn": 2,
+    "Ba": 2,
+    "Sr": 2,
+    "Zn": 2,
+    "Pb": 2,
+    "Cu": 2,
+    "Ni": 2,
+    "Cr": 3,
+    "V": 5,
 }
 
 

@@ -33,6 +33,9 @@ METALS: Final = (
 _SHOWN_SHARE: Final = 0.01
 """Share of a metal from which a phase is named."""
 
+_SHOWN_VAPOUR: Final = 1e-4
+"""Share of a metal from which its vapour is told of."""
+
 
 def reduction(settled: Settled) -> list[KeyFigure]:
     """Numbers of a reducing or roasting step.
@@ -125,23 +128,26 @@ def _metal(settled: Settled, metal: str) -> list[KeyFigure]:
     total = settled.element(metal)
     metallic = settled.element(metal, [name for name in holders if _is_metallic(settled.records[name])])
     vapour = settled.element(metal, [name for name in holders if not settled.records[name].condensed])
-    found = [
+    figures = [
         KeyFigure(
             f"metallisation_{key(metal)}",
             f"{metal} as metal",
             ratio(metallic, total),
             shown="%",
             note="Metallisation: atoms of the metal, its vapour and alloys (for iron its carbide too), over all of it.",
-        ),
-        KeyFigure(f"{key(metal)}_in_gas", f"{metal} in the gas", ratio(vapour, total), shown="%"),
+        )
     ]
-    for name in holders:
-        record = settled.records[name]
-        share = ratio(settled.element(metal, [name]), total)
-        if record.condensed and np.any(share >= _SHOWN_SHARE):
-            note = f"Share of all {metal}."
-            found.append(KeyFigure(f"{key(metal)}_as_{key(name)}", f"{metal} as {name}", share, shown="%", note=note))
-    return found
+    note = f"Share of all {metal}."
+    in_gas = ratio(vapour, total)
+    if np.any(in_gas >= _SHOWN_VAPOUR):
+        figures.append(KeyFigure(f"{key(metal)}_in_gas", f"{metal} in the gas", in_gas, shown="%", note=note))
+    shares = {name: ratio(settled.element(metal, [name]), total) for name in holders if settled.records[name].condensed}
+    figures += [
+        KeyFigure(f"{key(metal)}_as_{key(name)}", f"{metal} as {name}", share, shown="%", note=note)
+        for name, share in shares.items()
+        if np.any(share >= _SHOWN_SHARE)
+    ]
+    return figures
 
 
 def _is_metallic(record: Species) -> bool:

@@ -10,7 +10,8 @@ path from feeds to settled gas, n(z) = n_feeds + z (n_settled - n_feeds), methan
 
     K_M(T) x_CH4(z)/(x_H2(z)² p) > 1                                                                      (2)
 
-at the temperature of the settled gas, which is the case up to the share z of the way that is told.
+at the temperature of the settled gas, which is the case up to the share z of the way that is told. A flame is no such
+path, so that nothing is told where oxygen is fed.
 """
 
 from __future__ import annotations
@@ -161,7 +162,8 @@ def _cracking(settled: Settled) -> KeyFigure:
     """How far the gas must have come for its methane not to crack at this temperature, eq. (2)."""
     total = fed_amount(settled)
     feeds = {name: settled.fed(name) for name in ("CH4", "H2")}
-    asked = np.asarray((feeds["CH4"] > 0.0) & (settled.amount("H2") > feeds["H2"]) & (total > 0.0), bool)
+    makes_hydrogen = (feeds["CH4"] > 0.0) & (settled.amount("H2") > feeds["H2"])
+    asked = np.asarray(makes_hydrogen & (total > 0.0) & (settled.fed("O2") == 0.0), bool)
     low, high = settled.zero, settled.zero + 1.0
 
     def cracks(z: Floats) -> NDArray[np.bool_]:

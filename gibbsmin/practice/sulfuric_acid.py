@@ -54,6 +54,7 @@ def _inlet(settled: Settled) -> list[KeyFigure]:
 def _conversion(settled: Settled) -> list[KeyFigure]:
     """Conversion in the bed, and over all that has been made before it."""
     left, fed = settled.amount("SO2"), settled.fed("SO2")
+    other = settled.fed_element("S") - fed
     return [
         KeyFigure(
             "so2_conversion",
@@ -65,7 +66,7 @@ def _conversion(settled: Settled) -> list[KeyFigure]:
         KeyFigure(
             "so2_conversion_of_all_sulfur",
             "SO2 converted, of all sulfur",
-            _converted(settled),
+            np.where(other > 1e-12 * fed, _converted(settled), np.nan),
             shown="%",
             note="SO3 fed counts as converted; real beds end 3 to 15 K short of it (common practice, no source).",
         ),

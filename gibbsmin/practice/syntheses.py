@@ -40,7 +40,7 @@ def ammonia(settled: Settled) -> list[KeyFigure]:
     return known(
         [
             _share_fed(settled, "NH3", "nh3_inlet", "NH3, inlet"),
-            KeyFigure("nh3_outlet", "NH3, outlet", settled.wet("NH3"), shown="%", note=_caveat(settled)),
+            _outlet(settled, "NH3", "nh3_outlet"),
             _conversion(settled, "N2", "N2 conversion per pass"),
             KeyFigure("h2_to_n2", "H2/N2, inlet", ratio(settled.fed("H2"), settled.fed("N2")), note="3 is used up."),
             _inert(settled, ("H2", "N2", "NH3")),
@@ -68,7 +68,7 @@ def methanol(settled: Settled) -> list[KeyFigure]:
     return known(
         [
             KeyFigure("feed_module", "module of feed", ratio(H2 - CO2, oxides), note="(H2 - CO2)/(CO + CO2), aim 2.0."),
-            KeyFigure("methanol_outlet", "CH3OH, outlet", settled.wet("CH3OH"), shown="%", note=_caveat(settled)),
+            _outlet(settled, "CH3OH", "methanol_outlet"),
             KeyFigure("water_outlet", "H2O, outlet", settled.wet("H2O"), shown="%", note="Mole fraction, whole gas."),
             KeyFigure(
                 "carbon_per_pass",
@@ -146,9 +146,10 @@ def _inert(settled: Settled, active: tuple[str, ...]) -> KeyFigure:
     return KeyFigure("inerts_inlet", "inerts, inlet", share, shown="%", note=f"All but {', '.join(active)}.")
 
 
-def _caveat(settled: Settled) -> str:
-    """Say what an ideal gas leaves out, where it matters."""
-    basis = "Mole fraction, whole gas, at equilibrium."
+def _outlet(settled: Settled, species: str, name: str) -> KeyFigure:
+    """Mole fraction of a product, with what an ideal gas leaves out where it matters."""
+    label, note = f"{species}, outlet", "Mole fraction, whole gas."
     if np.any(settled.pressure > _IDEAL_UP_TO):
-        return f"{basis[:-1]} of ideal gases; real equilibrium holds more of it above about 50 bar."
-    return basis
+        label += ", as ideal gas"
+        note = f"{note[:-1]}, by constants of ideal gases; real equilibrium holds more of it above about 50 bar."
+    return KeyFigure(name, label, settled.wet(species), shown="%", note=note)

@@ -94,9 +94,12 @@ def _ratios(label: str, ratios: Mapping[str, float]) -> list[str]:
     """Air ratio in its three forms, steam and oxygen to carbon, as far as there are any."""
     told = []
     if "air_ratio" in ratios:
-        excess = f"excess air {100.0 * ratios['excess_air']:.4g} %, " if ratios["excess_air"] > -1e-9 else ""
-        inverse = f"equivalence ratio {figures(ratios['equivalence_ratio'])}"
-        told.append(f"air ratio {figures(ratios['air_ratio'])} ({excess}{inverse})")
+        inverse = figures(ratios["equivalence_ratio"])
+        if ratios["excess_air"] > -1e-9:
+            more = f"excess air {100.0 * ratios['excess_air']:.4g} %, equivalence ratio {inverse}"
+        else:
+            more = f"the ER of gasification; equivalence ratio of burners {inverse}"
+        told.append(f"air ratio {figures(ratios['air_ratio'])} ({more})")
     if "steam_to_carbon" in ratios:
         told.append(f"steam to carbon {figures(ratios['steam_to_carbon'])} mol/mol")
     if "oxygen_to_carbon" in ratios:

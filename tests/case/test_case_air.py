@@ -186,6 +186,16 @@ def test_air_that_cannot_be(keys, key, words):
 
 
 @pytest.mark.parametrize(
+    ("added", "words"),
+    [({"O2": 95.0, "H2O": 5.0}, "given dry; leave its water out"), ({"O2": 95.0, "Arr": 5.0}, "no species 'Arr'")],
+)
+def test_what_air_is_not_enriched_with(added, words):
+    with pytest.raises(RuleError, match=words) as caught:
+        air(oxygen_mole_percent=30.0, enriched_with=added)
+    assert caught.value.key == ("enriched_with", list(added)[1])
+
+
+@pytest.mark.parametrize(
     ("keys", "words"),
     [
         ({"mole_percent": {"N2": 95.0, "H2O": 5.0}}, "holds H2O already; give it dry"),

@@ -57,7 +57,7 @@ def test_coal_by_hand() -> None:
     assert need == pytest.approx(72.655, abs=0.01)
     assert found["gasification_air_ratio"][0] == pytest.approx(26.0 / need)
     assert found["oxygen_per_fuel"][0] == pytest.approx(26.0 * 0.031998)
-    assert found["gas_per_fuel"][0] == pytest.approx(dry)
+    assert found["gas_per_fuel"][0] == pytest.approx(0.022414 * dry, rel=1e-5)  # Nm3
     assert found["carbon_conversion"][0] == pytest.approx(1.0)
     assert found["h2_to_co"][0] == pytest.approx(24.0 / 55.0)
     assert found["synthesis_gas_dry"][0] == pytest.approx(79.0 / dry)
@@ -74,8 +74,8 @@ def test_cold_gas_efficiency_by_printed_heats() -> None:
     assert found["cold_gas_efficiency_higher"][0] == pytest.approx(higher / HIGHER, rel=5e-4)
     assert found["cold_gas_efficiency_lower"][0] == pytest.approx(lower / LOWER, rel=5e-4)
     sulfur = 1e3 * (0.112 * 518.0 + 0.2 * 548.2)  # lower, H2S and COS, CRC Handbook (from memory)
-    per_mole = (lower + sulfur) / (sum(GAS.values()) - 4.0)
-    assert found["raw_gas_lower"][0] == pytest.approx(per_mole, rel=5e-4)
+    per_volume = (lower + sulfur) / (sum(GAS.values()) - 4.0) / 0.022414  # J/Nm3
+    assert found["raw_gas_lower"][0] == pytest.approx(per_volume, rel=5e-4)
 
 
 def test_carbon_monoxide_from_carbon() -> None:

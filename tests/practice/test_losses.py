@@ -44,7 +44,7 @@ def test_heat_of_carbon_monoxide() -> None:
     """283.0 kJ/mol of CO (CODATA key values 1989: 393.51 - 110.53), 0.01 mol in the gas of 1 mol of CH4."""
     found = lost(methane(traces={"CO": 0.01}), 150.0)
     assert found["loss_unburnt_gas"] == pytest.approx(0.01 * 282.98e3 / LOWER, rel=1e-3)
-    assert found["loss_unburnt_carbon"] == 0.0
+    assert "loss_unburnt_carbon" not in found  # nothing solid is there
 
 
 def test_unburnt_carbon_and_hot_ash() -> None:
@@ -71,7 +71,7 @@ def test_efficiency_on_higher_value_stays_below_one(stack: float, air_ratio: flo
     assert found["efficiency_higher"] < 1.0
     assert found["efficiency_lower"] / found["efficiency_higher"] == pytest.approx(HIGHER / LOWER, rel=1e-4)
     losses = ("loss_flue_gas", "loss_unburnt_gas", "loss_unburnt_carbon", "loss_ash", "loss_wall")
-    assert found["efficiency_lower"] + sum(found[name] for name in losses) == pytest.approx(1.0)
+    assert found["efficiency_lower"] + sum(found.get(name, 0.0) for name in losses) == pytest.approx(1.0)
 
 
 @given(st.floats(26.0, 299.0))

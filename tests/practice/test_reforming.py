@@ -51,6 +51,7 @@ def test_oxygen_and_heat_by_hand() -> None:
     assert found["oxygen_to_carbon"][0] == pytest.approx(45.0 / 90.0)
     assert found["oxygen_per_1000_synthesis_gas"][0] == pytest.approx(1000.0 * 45.0 / 290.0)
     assert found["duty_per_carbon"][0] == pytest.approx(20.0e3)
+    assert "methane_cracking_up_to" not in found  # a flame is no straight path
     units = {figure.name: (figure.unit, figure.shown) for figure in reforming(state)}
     assert units["dry_gas"] == ("mol/s", "Nm3/h")
     assert units["water_in_gas"] == ("kg/s", "kg/h")

@@ -45,6 +45,8 @@ def test_ammonia_at_high_pressure_is_said_to_be_more() -> None:
     notes = [next(figure.note for figure in ammonia(state) if figure.name == "nh3_outlet") for state in (high, low)]
     assert "real equilibrium holds more" in notes[0]
     assert "real" not in notes[1]
+    labels = [next(figure.label for figure in ammonia(state) if figure.name == "nh3_outlet") for state in (high, low)]
+    assert labels == ["NH3, outlet, as ideal gas", "NH3, outlet"]
 
 
 @given(st.floats(600.0, 800.0), st.floats(20e5, 300e5), st.floats(2.0, 3.5), st.floats(1e-3, 0.4))

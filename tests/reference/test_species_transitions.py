@@ -125,6 +125,10 @@ def test_crystal_forms(name: str, form: str, T: float, within: float) -> None:
         ("C7H8(l):toluene", "C7H8:toluene", 383.8, 4),
         ("C8H18(l):n-octane", "C8H18:n-octane", 398.8, 4),
         ("TiBr4(l)", "TiBr4", 503, 8),
+        ("Cd(l)", "Cd", 1040, 5),
+        ("Fe(CO)5(l)", "Fe(CO)5", 376, 6),
+        # Gas and liquid come from sources that are 4 kJ/mol apart: the uncertainty of the liquid is 6.
+        ("ZnCl2(l)", "ZnCl2", 1005, 40),
     ],
 )
 def test_boiling(liquid: str, gas: str, published: float, within: float) -> None:
@@ -153,12 +157,6 @@ def test_boiling_with_dimers(metal: str, dimer: str, published: float, within: f
         middle = 0.5 * (low + high)
         low, high = (low, middle) if pressure(middle) > ATMOSPHERE / STANDARD_PRESSURE else (middle, high)
     assert low == pytest.approx(published, abs=within)
-
-
-def test_wustite_decomposes() -> None:
-    # Published 843 K; with the stoichiometric oxide alone it would be 447 K.
-    T = crossing({"Fe0.947O(s)": -4.0, "Fe3O4(s)": 1.0, "Fe(s)": 0.788}, 500.0, 1200.0)
-    assert pytest.approx(843.0, abs=50.0) == T
 
 
 @pytest.mark.parametrize(
@@ -192,15 +190,3 @@ def test_vapour_pressure(liquid: str, gas: str, kPa: float) -> None:
     T = 298.15
     difference = load().get(liquid).gibbs_energy(T) - load().get(gas).gibbs_energy(T)
     assert exp(difference / (R * T)) * 100.0 == pytest.approx(kPa, rel=0.01)
-
-
-def test_sulfur_vapour_regression() -> None:
-    # Published 717.8 K; the data (NIST-JANAF for S3 to S7, TM-4513 for S2, S8) boil at 754 K, with S2 and S8 alone
-    # at 926 K. What the data lack is in S8: its pressure over the liquid is half of what is measured.
-    vapours = [(k, load().get(f"S{k}")) for k in range(2, 9)]
-
-    def pressure(T: float) -> float:
-        G = load().get("S(l)").gibbs_energy(T)
-        return sum(exp((k * G - species.gibbs_energy(T)) / (R * T)) for k, species in vapours)
-
-    assert pressure(750.0) < ATMOSPHERE / STANDARD_PRESSURE < pressure(758.0)

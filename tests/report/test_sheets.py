@@ -105,5 +105,6 @@ def test_explained() -> None:
     words = " ".join(text.split())
     assert "1.000 mole % of water vapour, 6.300 g/kg dry gas, dew point 7.3 degC at 1.013 bar" in words
     assert "ratios air ratio 1.150 (excess air 15 %, equivalence ratio 0.8696)" in words
-    assert "all feeds air ratio 0.2500 (equivalence ratio 4.000), steam to carbon 3.000 mol/mol" in words
+    assert "all feeds air ratio 0.2500 (the ER of gasification; equivalence ratio of burners 4.000), steam" in words
+    assert "steam to carbon 3.000 mol/mol" in words
     assert "81 states" in text

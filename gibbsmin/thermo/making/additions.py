@@ -44,6 +44,8 @@ def add(drafts: Drafts, entry: Mapping[str, Any], classes: Mapping[str, Any]) ->
         source = f"Burcat & Ruscic 2005 ({entry['records'][0][0]})"
     elif origin == "crc":
         pieces, source, notes = from_crc(entry)
+    elif origin == "melt":
+        pieces, source = [melted(drafts[name.replace("(l)", "(s)")], entry)], entry["source"]
     else:
         pieces, source = given(entry), entry["source"]
     draft = Draft(name, pieces, source, entry["class"], list(entry.get("aliases", [])), notes)
@@ -77,6 +79,15 @@ def given(entry: Mapping[str, Any]) -> list[Piece]:
     """Make the piece of a species whose figures stand in the file: Cp = sum of terms in T^-2, T^-1, 1, T, T^2."""
     low, high = entry["range_K"]
     return [integrated(tuple(entry["Cp_J_K"]), low, high, 1e3 * entry["H_kJ"], entry["S_J_K"])]
+
+
+def melted(solid: Draft, entry: Mapping[str, Any]) -> Piece:
+    """Make the piece of a liquid from its solid, the temperature and enthalpy of melting, and a constant Cp."""
+    low, high = entry["range_K"]
+    liquid = Draft("", [integrated((0.0, 0.0, entry["Cp_J_K"]), low, high, 0.0, 0.0)], "", "")
+    H, S = solid.enthalpy(low) + 1e3 * entry["melting_kJ"], solid.entropy(low) + 1e3 * entry["melting_kJ"] / low
+    liquid.shift(H - liquid.enthalpy(low), S - liquid.entropy(low))
+    return liquid.pieces[0]
 
 
 def integrated(Cp: tuple[float, ...], low: float, high: float, H: float, S: float) -> Piece:

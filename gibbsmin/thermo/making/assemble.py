@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import csv
 import tomllib
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from importlib.resources import files
 from typing import Any
 
@@ -35,7 +35,12 @@ def read_toml(name: str) -> dict[str, Any]:
 
 def read_names() -> list[dict[str, str]]:
     """Read the naming table of the source records."""
-    return list(csv.DictReader(DATA.joinpath("names.csv").read_text("utf-8").splitlines()))
+    return read_csv("names.csv")
+
+
+def read_csv(name: str) -> list[dict[str, str]]:
+    """Read a table of the project."""
+    return list(csv.DictReader(DATA.joinpath(name).read_text("utf-8").splitlines()))
 
 
 def assemble() -> list[Draft]:
@@ -43,7 +48,7 @@ def assemble() -> list[Draft]:
     names, repairs, additions = read_names(), read_toml("repairs.toml"), read_toml("additions.toml")
     classes: Mapping[str, Any] = repairs["class"]
     drafts = join({row["name"]: read_record(row, classes) for row in names})
-    late = ("standard", "meet", "uncertainty", "off")
+    late = ("standard", "adjust", "meet", "uncertainty", "off")
     apply(drafts, repairs, [kind for kind in STEPS if kind not in late])
     for entry in additions["species"]:
         add(drafts, entry, classes)
@@ -53,6 +58,7 @@ def assemble() -> list[Draft]:
     reanchor(drafts, {entry["name"]: entry["atct"] for entry in tables if entry.get("atct")})
     apply(drafts, repairs, late)
     close_joins(drafts)
+    doubt_as_published(drafts, read_csv("key_values.csv"))
     for draft in drafts.values():
         mark_reference(draft)
     return sorted(drafts.values(), key=lambda draft: draft.name)
@@ -83,6 +89,18 @@ def read_record(row: Mapping[str, str], classes: Mapping[str, Any]) -> Draft:
     draft.records = [row["record"]]
     set_defaults(draft, classes, row["u_H_kJ_mol"], row["u_S_J_mol_K"])
     return draft
+
+
+def doubt_as_published(drafts: Drafts, rows: Iterable[Mapping[str, str]]) -> None:
+    """Take published uncertainties of H and S at 298.15 K, widened where the species lies further from the value."""
+    for row in rows:
+        draft, T = drafts[row["name"]], STANDARD_TEMPERATURE
+        distance, published = abs(draft.enthalpy(T) - 1e3 * float(row["H_kJ"])), 1e3 * float(row["u_H_kJ"])
+        source = row["source"] if distance <= published else f"distance from {row['source']}"
+        draft.doubt(round(max(published, distance), -1), source)
+        if row["S_J_K"]:
+            distance = abs(draft.entropy(T) - float(row["S_J_K"]))
+            draft.entropy_uncertainty = round(max(float(row["u_S_J_K"]), distance), 3)
 
 
 def mark_reference(draft: Draft) -> None:

@@ -3,14 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from math import log
 from typing import Any
 
 from gibbsmin.constants import STANDARD_TEMPERATURE
 from gibbsmin.elements import split_name
-from gibbsmin.thermo.making.draft import Draft
+from gibbsmin.thermo.making.draft import Draft, rounded
 from gibbsmin.thermo.making.fit import Segment, fit
 from gibbsmin.thermo.making.sources import atct, burcat, janaf, janaf_enthalpy
-from gibbsmin.thermo.record import Piece
+from gibbsmin.thermo.record import R_OF_FIT, Piece
 
 Drafts = dict[str, Draft]
 Entry = Mapping[str, Any]
@@ -130,9 +131,10 @@ def replace(drafts: Drafts, entry: Entry) -> None:
 
 
 def meet(drafts: Drafts, entry: Entry) -> None:
-    """Move H of a species so that its G equals that of another at a temperature."""
+    """Move H of a species so that its G equals that of another, or of amounts of others, at a temperature."""
     draft, T = drafts[entry["name"]], entry["T_K"]
-    draft.shift(H=drafts[entry["with"]].gibbs_energy(T) - draft.gibbs_energy(T))
+    others = entry["with"] if isinstance(entry["with"], Mapping) else {entry["with"]: 1.0}
+    draft.shift(H=sum(n * drafts[name].gibbs_energy(T) for name, n in others.items()) - draft.gibbs_energy(T))
 
 
 def meet_below(draft: Draft, T: float) -> None:
@@ -167,6 +169,18 @@ def standard(drafts: Drafts, entry: Entry) -> None:
     draft.source += f"; {'enthalpy of formation' if 'H_kJ' in entry else 'entropy'} from {source}"
 
 
+def adjust(drafts: Drafts, entry: Entry) -> None:
+    """Add a constant to Cp, with H and S at 298.15 K kept, and one to H; no other species moves with it."""
+    draft = drafts[entry["name"]]
+    T, Cp = STANDARD_TEMPERATURE, entry.get("Cp_J_K", 0.0)
+    draft.pieces = [
+        piece._replace(coefficients=(*a[:2], rounded(a[2] + Cp / R_OF_FIT), *a[3:]))
+        for piece in draft.pieces
+        for a in [piece.coefficients]
+    ]
+    draft.shift(entry.get("H_J", 0.0) - Cp * T, -Cp * log(T))
+
+
 def uncertainty(drafts: Drafts, entry: Entry) -> None:
     """Set the uncertainty of H or S."""
     draft = drafts[entry["name"]]
@@ -190,6 +204,7 @@ STEPS: dict[str, Callable[[Drafts, Entry], None]] = {
     "cut": cut,
     "limit": limit,
     "standard": standard,
+    "adjust": adjust,
     "meet": meet,
     "uncertainty": uncertainty,
     "off": off,
