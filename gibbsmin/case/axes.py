@@ -2,19 +2,18 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Annotated, Any, Final, Literal
+from typing import Annotated, Any, Final, Literal
 
 from pydantic import Field, field_validator, model_validator
 
+from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError, Table, Text
 from gibbsmin.case.inputs import Limits, limits_of
 from gibbsmin.case.rules_schema import difference
 from gibbsmin.errors import InputError
 from gibbsmin.units import from_si, one_of, unit_of
-
-if TYPE_CHECKING:
-    from gibbsmin.case.schema import Case
 
 MAX_STATES: Final = 100_000
 """Largest number of states that one case may ask for."""
@@ -88,15 +87,17 @@ class AxisValues:
     typed_unit: str
 
 
-def axis_values(axis: Axis, case: Case) -> AxisValues:
+def axis_values(axis: Axis, inputs: Mapping[str, Limits], feeds: Mapping[str, Feed]) -> AxisValues:
     """Work out the values of one varied input.
 
     Parameters
     ----------
     axis : Axis
         The ``[[sweep]]`` table.
-    case : Case
-        The case, for what can be varied.
+    inputs : mapping of str to Limits
+        What can be varied.
+    feeds : mapping of str to Feed
+        Tables of the feeds.
 
     Returns
     -------
@@ -107,7 +108,7 @@ def axis_values(axis: Axis, case: Case) -> AxisValues:
     RuleError
         There is no such input, or a value does not suit it.
     """
-    limits = limits_of(axis.vary, case)
+    limits = limits_of(axis.vary, inputs, feeds)
     if axis.values is None:
         found = [_read(axis.start, limits, "from"), _read(axis.to, limits, "to")]
         values = _between(axis, found[0][0], found[1][0])

@@ -11,7 +11,7 @@ from pydantic import ValidationError
 from gibbsmin.case.fields import RuleError, Table
 from gibbsmin.case.held_schema import Held
 from gibbsmin.case.lines import Key
-from gibbsmin.case.schema import Case
+from gibbsmin.case.schema import CaseFrame
 from gibbsmin.case.source import Source, dotted
 from gibbsmin.errors import CaseError, nearest
 
@@ -37,7 +37,7 @@ _LIMITS: Final = {
 _MOST: Final = 5
 
 
-def complaint(error: ValidationError, source: Source) -> CaseError:
+def complaint(error: ValidationError, source: Source, kind: type[CaseFrame]) -> CaseError:
     """Turn what the schema found into one error.
 
     Parameters
@@ -46,6 +46,8 @@ def complaint(error: ValidationError, source: Source) -> CaseError:
         From the schema.
     source : Source
         The file, for the lines.
+    kind : type of CaseFrame
+        What the file was read as.
 
     Returns
     -------
@@ -54,7 +56,7 @@ def complaint(error: ValidationError, source: Source) -> CaseError:
     """
     problems: dict[Key, str] = {}
     for detail in error.errors(include_url=False):
-        key, message = _explain(detail)
+        key, message = _explain(detail, kind)
         problems.setdefault(key, message)
     found = [source.error(message, key) for key, message in problems.items()]
     found.sort(key=lambda one: one.line or sys.maxsize)
@@ -65,7 +67,7 @@ def complaint(error: ValidationError, source: Source) -> CaseError:
     return CaseError(first.message + "".join(more), first.file, first.key, first.line)
 
 
-def _explain(detail: Any) -> tuple[Key, str]:
+def _explain(detail: Any, case: type[CaseFrame]) -> tuple[Key, str]:
     """Key and message of one problem."""
     kind, value, context = detail["type"], detail["input"], detail.get("ctx", {})
     key = _inside(detail["loc"])
@@ -74,16 +76,16 @@ def _explain(detail: Any) -> tuple[Key, str]:
         deeper = cause.key if isinstance(cause, RuleError) else ()
         return (*key, *deeper), str(cause)
     if kind == "extra_forbidden":
-        return key, _unknown(key)
+        return key, _unknown(key, case)
     if kind == "missing":
-        return key, f"is missing: {_purpose(key)}"
+        return key, f"is missing: {_purpose(key, case)}"
     if kind in _LIMITS:
         words, limit = _LIMITS[kind]
         return key, f"expected {words} {context[limit]}, got {value!r}"
     if kind == "literal_error":
         return key, f"expected {context['expected']}, got {_found(value)}"
-    if key == ("sweep",):
-        return key, "expected a list of tables; write each as [[sweep]], in double brackets"
+    if key in (("sweep",), ("stage",)):
+        return key, f"expected a list of tables; write each as [[{key[0]}]], in double brackets"
     return key, f"expected {_EXPECTED.get(kind, 'something else')}, got {_found(value)}"
 
 
@@ -93,17 +95,19 @@ def _inside(loc: tuple[Any, ...]) -> Key:
     return tuple(part for place, part in enumerate(loc) if not (place >= 2 and part in own))
 
 
-def _unknown(key: Key) -> str:
+def _unknown(key: Key, case: type[CaseFrame]) -> str:
     """Say that a key does not exist, and which do."""
     word = str(key[-1])
     if len(key) == 1:
-        known = list(Case.model_fields)
+        known = list(case.model_fields)
+        if word == "held" and "stage" in known:
+            return "is for a single mixture; in a train every [[stage]] holds its own"
         return f"there is no such table or key in this version{_choices(word, known)}"
     if key[0] == "held":
         energy = {"enthalpy": "heat", "internal_energy": "heat"}
         hint = f"; its place is taken by {energy[word]}, counted from the feeds" if word in energy else ""
         return f"cannot be held in a case{hint}{_choices(word, keys_of(Held))}"
-    known = keys_of(_table_at(key[:-1]))
+    known = keys_of(_table_at(key[:-1], case))
     return f"there is no key of this name{_choices(word, known)}"
 
 
@@ -116,9 +120,9 @@ def keys_of(table: type[Table]) -> list[str]:
     return [field.alias or name for name, field in table.model_fields.items()]
 
 
-def _table_at(key: Key) -> type[Table]:
+def _table_at(key: Key, case: type[CaseFrame]) -> type[Table]:
     """Kind of the table at a path; names of feeds and numbers of list entries lead on to what they are."""
-    table: type[Table] = Case
+    table: type[Table] = case
     for part in key:
         field = next((one for name, one in table.model_fields.items() if (one.alias or name) == part), None)
         table = table if field is None else next(_tables_in(field.annotation), table)
@@ -133,9 +137,9 @@ def _tables_in(annotation: Any) -> Iterator[type[Table]]:
         yield from _tables_in(part)
 
 
-def _purpose(key: Key) -> str:
+def _purpose(key: Key, case: type[CaseFrame]) -> str:
     """Say what a missing key is for, with an example."""
-    table = _table_at(key[:-1])
+    table = _table_at(key[:-1], case)
     field = next((one for name, one in table.model_fields.items() if (one.alias or name) == key[-1]), None)
     if field is None or not field.examples:
         return f"expected {dotted(key)}"

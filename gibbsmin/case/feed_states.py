@@ -122,7 +122,7 @@ class FeedStates:
         """Enthalpy of all feeds, (states,), [J or W]; None where that of one is not known."""
         if self.without_enthalpy:
             return None
-        fresh = self._summed([self._enthalpy(one) for one in self.recipes])
+        fresh = self._summed([self.unit_enthalpy(one) for one in self.recipes])
         return fresh if self.returned is None else fresh + self.returned.enthalpy
 
     @cached_property
@@ -155,7 +155,7 @@ class FeedStates:
         """
         if self.without_enthalpy or (otherwise is None and self.without_pressure):
             return None
-        fresh = self._summed([self._entropy(one, otherwise) for one in self.recipes])
+        fresh = self._summed([self.unit_entropy(one, otherwise) for one in self.recipes])
         return fresh if self.returned is None else fresh + self.returned.entropy
 
     def mixed_entropy(self, otherwise: Floats | None) -> Floats | None:
@@ -191,13 +191,13 @@ class FeedStates:
             total += self.units[:, k] * value
         return total
 
-    def _enthalpy(self, recipe: Recipe) -> Any:
+    def unit_enthalpy(self, recipe: Recipe) -> Any:
         """Enthalpy of a unit of a feed that has a temperature, (states,) or one for all."""
         T = self._temperature(recipe)
         known = feed_enthalpy(*_parts(recipe), T) if recipe.species else 0.0
         return known if recipe.fuel is None else known + recipe.fuel.enthalpy(T)
 
-    def _entropy(self, recipe: Recipe, otherwise: Floats | None) -> Any:
+    def unit_entropy(self, recipe: Recipe, otherwise: Floats | None) -> Any:
         """Entropy of a unit of a feed that has a temperature, (states,) or one for all."""
         T = self._temperature(recipe)
         known = feed_entropy(*_parts(recipe), T, self._pressure(recipe, otherwise)) if recipe.species else 0.0

@@ -8,16 +8,18 @@ from pydantic import ValidationError
 
 from gibbsmin.case.complaints import complaint
 from gibbsmin.case.fields import RuleError
-from gibbsmin.case.schema import Case
+from gibbsmin.case.schema import Case, CaseFrame
 from gibbsmin.case.source import Source, open_source
 from gibbsmin.case.study import Study
+from gibbsmin.case.train_schema import TrainCase
+from gibbsmin.case.train_study import TrainStudy
 from gibbsmin.errors import InputError
 from gibbsmin.interop import CANTERA_FILES, read_cantera_file
 from gibbsmin.thermo.own import read_species
 from gibbsmin.thermo.record import Species
 
 
-def read_case(path: str | Path, *, outside: bool = False) -> Study:
+def read_case(path: str | Path, *, outside: bool = False) -> Study | TrainStudy:
     """Read a case file.
 
     Parameters
@@ -29,8 +31,8 @@ def read_case(path: str | Path, *, outside: bool = False) -> Study:
 
     Returns
     -------
-    Study
-        Checked; ``run()`` solves it, ``describe()`` says what it asks for.
+    Study or TrainStudy
+        Checked; ``run()`` solves it, ``describe()`` says what it asks for. A file with ``[[stage]]`` tables is a train.
 
     Raises
     ------
@@ -38,17 +40,22 @@ def read_case(path: str | Path, *, outside: bool = False) -> Study:
         The file cannot be read, or asks for what is not possible; with file, line, key, and what would be right.
     """
     source = open_source(path)
+    kind = TrainCase if "stage" in source.data else Case
     try:
-        case = Case.model_validate(source.data)
+        case = kind.model_validate(source.data)
     except ValidationError as error:
-        raise complaint(error, source) from None
+        raise complaint(error, source, kind) from None
+    own = _own_species(case, source, outside)
     try:
-        return Study.of(case, _own_species(case, source, outside), str(source.path), source.sha256)
+        if isinstance(case, TrainCase):
+            return TrainStudy.of(case, own, str(source.path), source.sha256)
+        assert isinstance(case, Case), "there are two kinds"
+        return Study.of(case, own, str(source.path), source.sha256)
     except RuleError as error:
         raise source.error(error.message, error.key) from None
 
 
-def _own_species(case: Case, source: Source, outside: bool) -> list[Species]:
+def _own_species(case: CaseFrame, source: Source, outside: bool) -> list[Species]:
     """Read the files of own species that a case names."""
     own: list[Species] = []
     for number, name in enumerate(case.species.files):

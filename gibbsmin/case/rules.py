@@ -14,8 +14,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.case.fields import RuleError, in_si
+from gibbsmin.case.inputs import Ruled
 from gibbsmin.case.recipe import Find, Recipe
-from gibbsmin.case.schema import Case
 from gibbsmin.errors import InputError, SpeciesError
 from gibbsmin.practice.reactions import reaction
 from gibbsmin.thermo.record import Species
@@ -31,11 +31,14 @@ CONVERSION: Final = "unconverted "
 
 @dataclass(frozen=True)
 class Rules:
-    """The rules of a case.
+    """The rules of a case, or of a stage.
 
     Attributes
     ----------
-    case : Case
+    tables : Ruled
+        The case or stage.
+    at : str
+        What its dotted names begin with: nothing, or ``stages.NAME.``.
     constraints : dict of str to dict of str to float
         Coefficients of species by the name of the constraint.
     approaches : dict of str to dict of str to float
@@ -44,15 +47,46 @@ class Rules:
         Species that must be there for a constraint to hold.
     """
 
-    case: Case
+    tables: Ruled
+    at: str
     constraints: dict[str, dict[str, float]]
     approaches: dict[str, dict[str, float]]
     needed: tuple[Species, ...] = ()
 
+    def shares(self, columns: Mapping[str, Floats], states: int) -> dict[str, Floats]:
+        """Give the part of what is fed that a constraint holds, (states,) each, for those that hold a part, [-]."""
+        table, found = self.tables.species, {}
+        for name, percent in (table.conversion or {}).items():
+            converted = self._column(columns, f"species.conversion.{name}", percent, states)
+            found[CONVERSION + name] = 1.0 - converted / 100.0
+        if table.carbon_conversion is not None:
+            converted = self._column(columns, "species.carbon_conversion", table.carbon_conversion, states)
+            found[UNCONVERTED] = 1.0 - converted / 100.0
+        for name, one in self.tables.constraint.items():
+            if one.percent_of_feeds is not None:
+                key = f"constraint.{name}.percent_of_feeds"
+                found[name] = self._column(columns, key, one.percent_of_feeds, states) / 100.0
+        return found
+
+    def sums(self, columns: Mapping[str, Floats], states: int, basis: str) -> dict[str, Floats]:
+        """Give the amount that a constraint holds, (states,) each, for those that hold one, [mol or mol/s]."""
+        return {
+            name: self._column(columns, f"constraint.{name}.sum", _in_basis(one.sum, basis, name), states)
+            for name, one in self.tables.constraint.items()
+            if one.sum is not None
+        }
+
+    def approach(self, columns: Mapping[str, Floats], states: int) -> dict[str, Floats]:
+        """Give the approach temperature of each named reaction, (states,) each, [K]."""
+        return {
+            name: self._column(columns, f"approach.{name}.temperature", one.temperature, states)
+            for name, one in self.tables.approach.items()
+        }
+
     def held(
         self, recipes: Sequence[Recipe], units: Floats, columns: Mapping[str, Floats], basis: str
     ) -> dict[str, Floats]:
-        """Work out what each constraint holds.
+        """Work out what each constraint holds of feeds.
 
         Parameters
         ----------
@@ -70,48 +104,34 @@ class Rules:
         dict of str to array (states,)
             [mol or mol/s].
         """
-        table, found = self.case.species, {}
-        for name, percent in (table.conversion or {}).items():
-            brought = units @ [one.of_species(self._single(CONVERSION + name)) for one in recipes]
-            converted = columns.get(f"species.conversion.{name}", np.full(len(units), percent))
-            found[CONVERSION + name] = (1.0 - converted / 100.0) * brought
-        if table.carbon_conversion is not None:
-            carbon = units @ [one.carbon for one in recipes]
-            converted = columns.get("species.carbon_conversion", np.full(len(units), table.carbon_conversion))
-            found[UNCONVERTED] = (1.0 - converted / 100.0) * carbon
-        for name, one in self.case.constraint.items():
-            if one.sum is not None:
-                value = _in_basis(one.sum, basis, name)
-                found[name] = np.asarray(columns.get(f"constraint.{name}.sum", np.full(len(units), value)))
-                continue
-            parts = self.constraints[name]
-            brought = units @ [sum(c * feed.of_species(s) for s, c in parts.items()) for feed in recipes]
-            share = columns.get(f"constraint.{name}.percent_of_feeds", np.full(len(units), one.percent_of_feeds))
-            found[name] = share / 100.0 * brought
+        found = self.sums(columns, len(units), basis)
+        for name, share in self.shares(columns, len(units)).items():
+            if name == UNCONVERTED:
+                brought = units @ [one.reacting.carbon for one in recipes]
+            else:
+                parts = self.constraints[name]
+                brought = units @ [sum(c * feed.of_species(s) for s, c in parts.items()) for feed in recipes]
+            found[name] = share * brought
         return found
 
-    def approach(self, columns: Mapping[str, Floats], states: int) -> dict[str, Floats]:
-        """Approach temperature of each named reaction, (states,) each, [K]."""
-        return {
-            name: np.asarray(columns.get(f"approach.{name}.temperature", np.full(states, one.temperature)))
-            for name, one in self.case.approach.items()
-        }
-
-    def _single(self, constraint: str) -> str:
-        """Name the one species of a constraint."""
-        return next(iter(self.constraints[constraint]))
+    def _column(self, columns: Mapping[str, Floats], key: str, value: float, states: int) -> Floats:
+        """Value of a key in every state, varied or not."""
+        return np.asarray(columns.get(self.at + key, np.full(states, value)))
 
 
-def read_rules(case: Case, find: Find, own: Sequence[Species]) -> Rules:
-    """Read the rules of a case.
+def read_rules(tables: Ruled, find: Find, own: Sequence[Species], at: str = "") -> Rules:
+    """Read the rules of a case or a stage.
 
     Parameters
     ----------
-    case : Case
+    tables : Ruled
+        The case or stage.
     find : callable
         Gives the species of a name, or raises SpeciesError.
     own : sequence of Species
         Species of the user's own files.
+    at : str
+        What its dotted names begin with.
 
     Returns
     -------
@@ -120,31 +140,26 @@ def read_rules(case: Case, find: Find, own: Sequence[Species]) -> Rules:
     Raises
     ------
     RuleError
-        A species or a reaction is not known, or a rule does not go with what is held; with the key.
+        A species or a reaction is not known; with the key.
     """
     constraints: dict[str, dict[str, float]] = {}
     needed: list[Species] = []
-    for name in case.species.conversion or {}:
+    for name in tables.species.conversion or {}:
         constraints[CONVERSION + name] = {_name(name, find, "species", "conversion", name): 1.0}
-    if case.species.carbon_conversion is not None:
+    if tables.species.carbon_conversion is not None:
         graphite = find(GRAPHITE)
         constraints[UNCONVERTED] = {graphite.name: 1.0}
         needed.append(graphite)
-    for name, one in case.constraint.items():
+    for name, one in tables.constraint.items():
         key = ("constraint", name, "amounts")
         constraints[name] = {_name(label, find, *key, label): value for label, value in one.amounts.items() if value}
     approaches: dict[str, dict[str, float]] = {}
-    for name, step in case.approach.items():
+    for name, step in tables.approach.items():
         try:
             approaches[name] = reaction(step.reaction, extra=own).coefficients
         except InputError as error:
             raise RuleError(str(error), "approach", name, "reaction") from None
-    if approaches and case.held.thermal == "entropy":
-        raise RuleError(
-            "an approach temperature does not go with held entropy; hold another condition", "approach",
-            next(iter(approaches)),
-        )  # fmt: skip
-    return Rules(case, constraints, approaches, tuple(needed))
+    return Rules(tables, at, constraints, approaches, tuple(needed))
 
 
 def _name(label: str, find: Find, *key: str) -> str:

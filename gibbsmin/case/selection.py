@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Collection, Iterable, Sequence
+from typing import Protocol
 
 import numpy as np
 from numpy.typing import NDArray
@@ -10,7 +11,7 @@ from numpy.typing import NDArray
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import Find, Recipe
 from gibbsmin.case.rules import Rules
-from gibbsmin.case.schema import FROM_FEEDS, SpeciesTable
+from gibbsmin.case.species_schema import FROM_FEEDS, SpeciesTable
 from gibbsmin.elements import ATOMIC_WEIGHT, CHARGE
 from gibbsmin.errors import InputError, SpeciesError, nearest
 from gibbsmin.states.system import System
@@ -30,14 +31,30 @@ def finder(own: Sequence[Species]) -> Find:
     return find
 
 
-def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[Species], rules: Rules) -> System:
+class Brought(Protocol):
+    """A feed or stream, as far as the choice of species goes."""
+
+    @property
+    def species(self) -> Iterable[Species]:
+        """What it may hold."""
+
+    @property
+    def atoms(self) -> Iterable[str]:
+        """Elements that it holds beside species."""
+
+    @property
+    def inert(self) -> Collection[str]:
+        """Names of those of its species that take no part."""
+
+
+def choose_system(table: SpeciesTable, feeds: Sequence[Brought], own: Sequence[Species], rules: Rules) -> System:
     """Make the system that a case asks for.
 
     Parameters
     ----------
     table : SpeciesTable
         The ``[species]`` table.
-    recipes : sequence of Recipe
+    feeds : sequence of Brought
         The feeds, for their elements.
     own : sequence of Species
         Species of the user's own files.
@@ -57,7 +74,13 @@ def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[
     allow = _found(table.allow or [], "allow", find)
     exclude = _found(table.exclude, "exclude", find)
     inert = _found(table.inert, "inert", find)
-    inert += [record for recipe in recipes for record in recipe.species if record.name in recipe.inert]
+    inert += [record for feed in feeds for record in feed.species if record.name in feed.inert]
+    if table.settling is not None:
+        settling = _found(table.settling, "settling", find)
+        inert += [record for feed in feeds for record in feed.species if record not in settling]
+        listed = {record.name: record for record in (*settling, *inert, *rules.needed)}
+        names = list(dict.fromkeys(record.name for record in inert))
+        return _system(list(listed.values()), names, rules)
     inert_names = list(dict.fromkeys(record.name for record in inert))
     added = {record.name: record for record in (*inert, *rules.needed)}
     rows = {"constraints": rules.constraints, "approaches": rules.approaches}
@@ -65,7 +88,7 @@ def choose_system(table: SpeciesTable, recipes: Sequence[Recipe], own: Sequence[
         if allow:
             listed = {record.name: record for record in allow} | added
             return System.from_species(list(listed.values()), inert_names, **rows)
-        elements = _elements(table, recipes, inert)
+        elements = _elements(table, feeds, inert)
         names = [record.name for record in exclude if record not in rules.needed]
         ours = [*(record for record in own if _wanted(record, table, elements)), *added.values()]
         return System.from_elements(
@@ -143,7 +166,15 @@ def _wanted(record: Species, table: SpeciesTable, elements: Sequence[str]) -> bo
     return kind and set(record.elements) <= set(elements)
 
 
-def _elements(table: SpeciesTable, recipes: Sequence[Recipe], inert: Sequence[Species]) -> list[str]:
+def _system(records: Sequence[Species], inert: Sequence[str], rules: Rules) -> System:
+    """Make a system of just these species."""
+    try:
+        return System.from_species(records, inert, rules.constraints, rules.approaches)
+    except InputError as error:
+        raise RuleError(str(error), "species") from None
+
+
+def _elements(table: SpeciesTable, feeds: Sequence[Brought], inert: Sequence[Species]) -> list[str]:
     """List the elements that take part."""
     if table.elements != FROM_FEEDS:
         symbols = table.elements.replace(",", " ").split()
@@ -153,10 +184,10 @@ def _elements(table: SpeciesTable, recipes: Sequence[Recipe], inert: Sequence[Sp
                 raise RuleError(f"there is no element {symbol!r}{near}", "species", "elements")
         return list(dict.fromkeys(symbols))
     found: dict[str, None] = {}
-    for recipe in recipes:
-        for record in recipe.species:
+    for feed in feeds:
+        for record in feed.species:
             found.update(dict.fromkeys(record.elements) if record not in inert else {})
-        found.update(dict.fromkeys(recipe.atoms))
+        found.update(dict.fromkeys(feed.atoms))
     if not found:
         raise RuleError("the feeds hold nothing but inert species, so nothing can react", "species", "inert")
     return list(found)

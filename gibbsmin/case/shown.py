@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-from gibbsmin.case.schema import Case
+from gibbsmin.case.schema import CaseFrame
 from gibbsmin.units import unit_of
 
 
-def shown_units(case: Case, basis: str) -> dict[str, str]:
+def shown_units(case: CaseFrame, basis: str) -> dict[str, str]:
     """Find the units to show results in: those that were typed.
 
     Parameters
     ----------
-    case : Case
+    case : CaseFrame
         The case.
     basis : str
         ``"mol"`` or ``"mol/s"``.
@@ -23,7 +23,7 @@ def shown_units(case: Case, basis: str) -> dict[str, str]:
     """
     units = {"temperature": "K", "pressure": "Pa", "amount": basis}
     for key in ("temperature", "pressure"):
-        typed_values = [getattr(case.held, key), *(getattr(feed, key) for feed in case.feeds.values())]
+        typed_values = [*case.typed(key), *(getattr(feed, key) for feed in case.feeds.values())]
         units[key] = next(
             (unit for value in typed_values if value is not None and (unit := unit_of(value))), units[key]
         )

@@ -11,19 +11,18 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.case.axes import AxisValues, axis_values
 from gibbsmin.case.conditions import Conditions, number, read_conditions
 from gibbsmin.case.described import describe
 from gibbsmin.case.feed_states import FeedStates, feed_facts
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.flue_gas import closed_feeds, frozen, setting
-from gibbsmin.case.recipe import Recipe, read_recipe
 from gibbsmin.case.rules import Rules, read_rules
 from gibbsmin.case.schema import Case
 from gibbsmin.case.selection import choose_system, element_row, finder
 from gibbsmin.case.shown import shown_units
-from gibbsmin.case.sizes import feed_units, read_basis
+from gibbsmin.case.sizes import feed_units
 from gibbsmin.case.source import dotted
+from gibbsmin.case.study_frame import StudyFrame, read_axes, read_feed_basis, read_feeds
 from gibbsmin.errors import CaseError
 from gibbsmin.practice.flue_gas import flue_gas
 from gibbsmin.practice.key_figure import KeyFigure
@@ -33,16 +32,15 @@ from gibbsmin.results.key_figures import SETS, settled
 from gibbsmin.results.result import FeedAmounts, Result
 from gibbsmin.states.system import System, constraint_row
 from gibbsmin.studies.expansion import expansion
-from gibbsmin.studies.labelled import Axis
-from gibbsmin.studies.sweep import Progress, grid, solve_in_chunks
+from gibbsmin.studies.sweep import Progress, solve_in_chunks
 from gibbsmin.thermo.record import Species
 
 Floats = NDArray[np.float64]
 
 
-@dataclass(frozen=True)
-class Study:
-    """A case that was checked and can be run.
+@dataclass(frozen=True, kw_only=True)
+class Study(StudyFrame):
+    """A case of one mixture that was checked and can be run.
 
     Attributes
     ----------
@@ -50,26 +48,13 @@ class Study:
         What the file says.
     system : System
         What may form.
-    recipes : tuple of Recipe
-        What each feed is made of.
-    axes : tuple of AxisValues
-        The varied inputs.
-    basis : str
-        ``"mol"``, or ``"mol/s"`` where the feeds are flows.
     rules : Rules
         Conversions, constraints and approach temperatures.
-    path, sha256 : str
-        The file and its checksum; empty where there is none.
     """
 
     case: Case
     system: System
-    recipes: tuple[Recipe, ...]
-    axes: tuple[AxisValues, ...]
-    basis: str
     rules: Rules
-    path: str = ""
-    sha256: str = ""
 
     @classmethod
     def of(cls, case: Case, own: Sequence[Species] = (), path: str = "", sha256: str = "") -> Study:
@@ -94,44 +79,18 @@ class Study:
             A name is not known, an element has no place, or a feed cannot be sized; with the key.
         """
         find = finder(own)
-        recipes = []
-        for name, feed in case.feeds.items():
-            if feed.composition == "flue gas":
-                continue
-            try:
-                recipes.append(read_recipe(name, feed, find))
-            except RuleError as error:
-                raise RuleError(error.message, "feeds", name, *error.key) from None
-        axes = tuple(axis_values(axis, case) for axis in case.sweep)
+        recipes, axes, basis = read_feeds(case, find), read_axes(case), read_feed_basis(case)
         rules = read_rules(case, find, own)
         system = choose_system(case.species, recipes, own, rules)
+        study = cls(
+            case=case, system=system, rules=rules, recipes=recipes, axes=axes, basis=basis, path=path, sha256=sha256
+        )
         try:
-            study = cls(case, system, tuple(recipes), axes, read_basis(case.feeds), rules, path, sha256)
             study.element_rows, study.units  # noqa: B018 - made here so that what is wrong shows before anything runs
         except RuleError as error:
             raise RuleError(error.message, "feeds", *error.key) from None
         study.conditions, study.element_amounts  # noqa: B018 - likewise
         return study
-
-    @cached_property
-    def columns(self) -> dict[str, Floats]:
-        """Value of each varied input in every state, in SI."""
-        return dict(zip((axis.vary for axis in self.axes), grid([axis.values for axis in self.axes]), strict=True))
-
-    @property
-    def states(self) -> int:
-        """Number of states."""
-        return int(np.prod([len(axis.values) for axis in self.axes], dtype=int))
-
-    @cached_property
-    def feed_states(self) -> FeedStates:
-        """The feeds in every state."""
-        return FeedStates(self.recipes, self.axes, self.columns, self.states)
-
-    @property
-    def units(self) -> Floats:
-        """Units of each feed in every state, (states, F), [mol, kg, or either per second]."""
-        return self.feed_states.units
 
     @cached_property
     def conditions(self) -> Conditions:
@@ -233,7 +192,6 @@ class Study:
             batch = expansion(
                 self.system, elements, held["entropy"], inlet, held["pressure"], conditions.efficiency, progress
             )
-        typed = grid([axis.typed_values for axis in self.axes])
         result = Result(
             title=self.case.title,
             case=self.case.model_dump(by_alias=True, exclude_none=True),
@@ -241,9 +199,9 @@ class Study:
             case_sha256=self.sha256,
             system=self.system,
             basis=self.basis,
-            inputs={axis.vary: values for axis, values in zip(self.axes, typed, strict=True)},
+            inputs=self.typed_inputs,
             input_units={axis.vary: axis.typed_unit for axis in self.axes},
-            axes=tuple(Axis(axis.vary, np.array(axis.typed_values), axis.typed_unit) for axis in self.axes),
+            axes=self.typed_axes,
             batch=batch,
             display_units=shown_units(self.case, self.basis),
             feeds=self._feed_amounts(feeds.units[0]) if self.states == 1 else self.feeds,

@@ -17,12 +17,15 @@ def check(
 ) -> None:
     """Read and explain each case without solving: species, phases, feeds in mol and kg, size of the sweep."""
     from gibbsmin.case.read import read_case
+    from gibbsmin.case.train_study import TrainStudy
     from gibbsmin.report.explained import explained
+    from gibbsmin.report.train_explained import train_explained
 
     wrong = False
     for number, case in enumerate(cases):
         try:
-            lines = explained(read_case(case).describe())
+            study = read_case(case)
+            lines = (train_explained if isinstance(study, TrainStudy) else explained)(study.describe())
         except GibbsminError as error:
             say(f"gibbsmin: {error}")
             wrong = True

@@ -13,6 +13,7 @@ from gibbsmin.errors import GibbsminError, InputError
 
 if TYPE_CHECKING:
     from gibbsmin.case.study import Study
+    from gibbsmin.case.train_study import TrainStudy
 
 _MANY = 10_000  # states from which writing takes so long that it is announced
 
@@ -66,7 +67,7 @@ def _folders(cases: list[Path], out: Path | None) -> list[Path]:
     return folders
 
 
-def _read(cases: list[Path]) -> list[Study]:
+def _read(cases: list[Path]) -> list[Study | TrainStudy]:
     """Read all cases before any is solved, and say all that is wrong."""
     from gibbsmin.case.read import read_case
 
@@ -82,12 +83,15 @@ def _read(cases: list[Path]) -> list[Study]:
     return studies
 
 
-def _solve(study: Study, folder: Path, show: bool) -> tuple[dict[str, Any], bool]:
+def _solve(study: Study | TrainStudy, folder: Path, show: bool) -> tuple[dict[str, Any], bool]:
     """Solve one case, write its folder, show it; the document, and whether all states are certified."""
     from gibbsmin.compiled import cache_is_cold
     from gibbsmin.report.summary import summary
+    from gibbsmin.report.train_summary import train_summary
     from gibbsmin.results.folder import write_folder
     from gibbsmin.results.judge import judge
+    from gibbsmin.results.judge_train import judge_train
+    from gibbsmin.results.train_result import TrainResult
 
     if cache_is_cold():
         say("Compiling the solver for this machine, once; 10 to 15 s ...")
@@ -96,13 +100,17 @@ def _solve(study: Study, folder: Path, show: bool) -> tuple[dict[str, Any], bool
         result = study.run(progress=progress)
     finally:
         progress.close()
-    judged = judge(result)
+    judged = judge_train(result) if isinstance(result, TrainResult) else judge(result)
     if len(judged) > _MANY:
         say(f"Writing {len(judged)} states to {folder} ...")
     data = write_folder(result, judged, folder)
+    if isinstance(result, TrainResult):
+        lines, certified = train_summary(result, judged, folder), result.certified
+    else:
+        lines, certified = summary(result, judged, folder), result.batch.certified
     if show:
-        show_lines(summary(result, judged, folder))
-    good = [bool(flag) for flag in result.batch.certified]
+        show_lines(lines)
+    good = [bool(flag) for flag in certified]
     if not all(good):
         say(f"gibbsmin: {good.count(False)} of {len(good)} states could not be certified; the rest is written")
     return data, all(good)

@@ -10,15 +10,15 @@ from gibbsmin.practice.cautions import Caution, sentences
 from gibbsmin.results.provenance import provenance
 
 if TYPE_CHECKING:
-    from gibbsmin.results.result import Result
+    from gibbsmin.results.folder import Written
 
 
-def document(result: Result, judged: Sequence[Sequence[Caution]]) -> dict[str, Any]:
+def document(result: Written, judged: Sequence[Sequence[Caution]]) -> dict[str, Any]:
     """Put a result, its provenance and its cautions together.
 
     Parameters
     ----------
-    result : Result
+    result : Result or TrainResult
     judged : sequence of sequences of Caution
         The cautions of each state, from ``judge``.
 

@@ -6,21 +6,20 @@ import json
 import os
 import shutil
 import tempfile
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from pathlib import Path
-from typing import TYPE_CHECKING, Any, Final
+from typing import TYPE_CHECKING, Any, Final, Protocol
 
 from gibbsmin.errors import InputError
 from gibbsmin.practice.cautions import Caution
 from gibbsmin.results.document import document
-from gibbsmin.results.spreadsheet import spreadsheet
 
 if TYPE_CHECKING:
-    from gibbsmin.results.result import Result
+    import xarray
 
 SCHEMA: Final = 1
 _INDENTED: Final = 200  # states up to which result.json is indented
-FILES: Final = ("result.json", "table.csv", "result.nc")
+FILES: Final = ("result.json", "table.csv", "streams.csv", "result.nc")
 """What a result folder may hold; a folder with anything else is not replaced."""
 
 
@@ -51,12 +50,33 @@ def check_place(folder: Path) -> None:
         raise InputError(f"cannot write results to {folder}: {parent} cannot be written to; choose another with --out")
 
 
-def write_folder(result: Result, judged: Sequence[Sequence[Caution]], folder: Path) -> dict[str, Any]:
+class Written(Protocol):
+    """A result, as far as its folder goes."""
+
+    @property
+    def inputs(self) -> Mapping[str, Any]:
+        """Varied inputs."""
+
+    @property
+    def case_sha256(self) -> str:
+        """Checksum of the case file."""
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return what result.json holds, but for cautions and provenance."""
+
+    def tables(self) -> dict[str, str]:
+        """Write the spreadsheets, by the name of their file."""
+
+    def dataset(self) -> xarray.Dataset:
+        """Return the states with named axes and units."""
+
+
+def write_folder(result: Written, judged: Sequence[Sequence[Caution]], folder: Path) -> dict[str, Any]:
     """Write a result folder.
 
     Parameters
     ----------
-    result : Result
+    result : Result or TrainResult
     judged : sequence of sequences of Caution
         The cautions of each state.
     folder : Path
@@ -84,7 +104,8 @@ def write_folder(result: Result, judged: Sequence[Sequence[Caution]], folder: Pa
         fresh = work / "new"
         fresh.mkdir()
         (fresh / "result.json").write_text(as_json(data), encoding="utf-8")
-        (fresh / "table.csv").write_text(spreadsheet(result), encoding="utf-8", newline="")
+        for name, text in result.tables().items():
+            (fresh / name).write_text(text, encoding="utf-8", newline="")
         if result.inputs:
             result.dataset().to_netcdf(fresh / "result.nc", engine="h5netcdf")
         _exchange(fresh, target, work / "old")

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Mapping, Sequence
 from dataclasses import asdict, dataclass, field
 from functools import cached_property
@@ -14,7 +13,9 @@ from numpy.typing import NDArray
 from gibbsmin.practice.audit import Audit
 from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.results.account import Account
+from gibbsmin.results.plain import plain
 from gibbsmin.results.properties import PROPERTIES, properties
+from gibbsmin.results.spreadsheet import spreadsheet
 from gibbsmin.states.batch import Batch
 from gibbsmin.states.state import State
 from gibbsmin.states.system import GAS, System
@@ -143,14 +144,14 @@ class Result:
             given off. None where a feed has no temperature or is known by its elements only, or where the state is
             not certified.
         """
-        return None if self.heats is None else _plain(self.heats[index])
+        return None if self.heats is None else plain(self.heats[index])
 
     def work(self, index: int) -> float | None:
         """Shaft work that must be supplied to reach state ``index``, [J or W]; negative where it is gained.
 
         Zero but for an expansion or compression; None as for `heat`.
         """
-        return None if self.works is None else _plain(self.works[index])
+        return None if self.works is None else plain(self.works[index])
 
     def audit(self, index: int) -> Audit | None:
         """Second-law account of state ``index``; None where it is not certified, or a feed is not known."""
@@ -204,12 +205,12 @@ class Result:
             "input_units": self.input_units,
             **({"remark": self.account.remark} if self.account.remark else {}),
             "provenance": {"case_sha256": self.case_sha256, "data_version": load().version},
-            **({"key_figures": self._legend()} if self.key_figures else {}),
+            **({"key_figures": self.legend()} if self.key_figures else {}),
             **({"left_out": {"below_mole_fraction": NAMED_FRACTION, "species": left_out}} if left_out else {}),
             "states": [self._state(i, arrays, named, reasons[i]) for i in range(len(batch))],
         }
 
-    def _legend(self) -> dict[str, dict[str, dict[str, str]]]:
+    def legend(self) -> dict[str, dict[str, dict[str, str]]]:
         """Tell what the numbers of the trade are, by set and name."""
         return {
             group: {one.name: {"label": one.label, "unit": one.unit, "note": one.note} for one in figures}
@@ -219,21 +220,21 @@ class Result:
     def _state(self, i: int, arrays: dict[str, Any], named: NDArray[np.intp], reason: str) -> dict[str, Any]:
         names, amounts = self.system.species, arrays["amounts"][i]
         gas, certified = self.system.gas, bool(arrays["certified"][i])
-        phases = {GAS: _plain(amounts[gas].sum())} if gas.any() else {}
-        phases |= {names[k]: _plain(amounts[k]) for k in np.flatnonzero(~gas) if amounts[k] > 0.0}
+        phases = {GAS: plain(amounts[gas].sum())} if gas.any() else {}
+        phases |= {names[k]: plain(amounts[k]) for k in np.flatnonzero(~gas) if amounts[k] > 0.0}
         return {
             "inputs": {name: float(values[i]) for name, values in self.inputs.items()},
-            **{name: _plain(arrays[name][i]) for name in _TOTALS},
+            **{name: plain(arrays[name][i]) for name in _TOTALS},
             "held": {name: float(values[i]) for name, values in self.held.items()},
             "feed_enthalpy": _at(self.account.feed_enthalpy, i),
             "feed_internal_energy": _at(self.account.feed_internal_energy, i),
             "heat": self.heat(i),
             "work": self.work(i),
-            **{name: _plain(values[i]) for name, values in self.properties.items()},
+            **{name: plain(values[i]) for name, values in self.properties.items()},
             **(
                 {
                     "key_figures": {
-                        group: {one.name: _plain(one.value[i]) for one in figures}
+                        group: {one.name: plain(one.value[i]) for one in figures}
                         for group, figures in self.key_figures.items()
                     }
                 }
@@ -242,15 +243,19 @@ class Result:
             ),
             "audit": None if (account := self.audit(i)) is None else account.to_dict(),
             "phases": phases,
-            "amounts": {names[k]: _plain(amounts[k]) for k in named},
-            "mole_fractions": {names[k]: _plain(arrays["mole_fractions"][i, k]) for k in named},
+            "amounts": {names[k]: plain(amounts[k]) for k in named},
+            "mole_fractions": {names[k]: plain(arrays["mole_fractions"][i, k]) for k in named},
             "certificate": {
-                **{name: _plain(arrays[name][i]) for name in _CERTIFICATE},
+                **{name: plain(arrays[name][i]) for name in _CERTIFICATE},
                 "ok": certified,
                 "reason": reason,
             },
             "cautions": list(self.state(i).warnings) if certified else [],
         }
+
+    def tables(self) -> dict[str, str]:
+        """Write the spreadsheets, by the name of their file."""
+        return {"table.csv": spreadsheet(self)}
 
     def dataset(self) -> xarray.Dataset:
         """Return the states with named axes and units.
@@ -283,9 +288,4 @@ class Result:
 
 
 def _at(values: Floats | None, i: int) -> float | None:
-    return None if values is None else _plain(values[i])
-
-
-def _plain(value: Any) -> float | None:
-    """Turn a number of an array into one of JSON; what is not finite into None."""
-    return float(value) if math.isfinite(value) else None
+    return None if values is None else plain(values[i])

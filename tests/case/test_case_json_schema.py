@@ -6,7 +6,8 @@ from pathlib import Path
 
 import pytest
 
-from gibbsmin.case.schema import Case, case_schema
+from gibbsmin.case.json_schema import case_schema
+from gibbsmin.case.schema import Case
 
 CASES = sorted((Path(__file__).parents[2] / "cases").glob("*.toml"))
 KINDS = {

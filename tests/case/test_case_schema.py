@@ -107,7 +107,7 @@ BAD = [
     ('threshold = "1 ppm"', 'threshold = "1 bar"', 27, "show.threshold", "expected a plain number"),
     ('threshold = "1 ppm"', "threshold = 1", 27, "show.threshold", "less than 1"),
     ('threshold = "1 ppm"', 'sort = "mass"', 27, "show.sort", "'amount' or 'name'"),
-    ("[show]", "[target]", 26, "target", "known here are title, species, feeds, held, approach, constraint"),
+    ("[show]", "[target]", 26, "target", "known here are title, species, feeds, surroundings"),
     ("[show]", "[[stage]]", 26, "stage", "no such table or key in this version"),
     ('title = "Tube outlet of an invented reformer"', "", None, "title", "is missing"),
     ('title = "Tube outlet of an invented reformer"', 'title = " "', 1, "title", "not empty"),
@@ -144,7 +144,7 @@ def test_no_more_problems_than_a_screen_holds(write):
 
 def sweep_of(write, text):
     case = read(write(('vary = "held.temperature"\nfrom = "800 degC"\nto = "900 degC"\npoints = 3', text)))
-    return axis_values(case.sweep[0], case)
+    return axis_values(case.sweep[0], case.inputs(), case.feeds)
 
 
 def test_linear_values_in_si_and_as_typed(write):

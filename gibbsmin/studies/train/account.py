@@ -95,10 +95,11 @@ def _of_step(step: StepResult, surroundings: float) -> StepAccount:
 
 
 def _energy_open(inlets: Iterable[Stream], outlets: Iterable[Stream], heat: Floats, work: Floats) -> Floats:
-    """What equation (1) leaves open, relative to its largest term, (states,)."""
+    """Work out what equation (1) leaves open, relative to its largest term, (states,)."""
     terms = [*(one.enthalpy for one in inlets), *(-one.enthalpy for one in outlets), heat, work]
     largest = np.max(np.abs(terms), axis=0)
-    return np.divide(np.abs(np.sum(terms, axis=0)), largest, out=np.zeros_like(largest), where=largest > 0.0)
+    open_part = np.abs(np.sum(terms, axis=0))
+    return np.asarray(np.divide(open_part, largest, out=np.zeros_like(largest), where=largest > 0.0))
 
 
 def _element_open(inlets: list[Stream], outlets: list[Stream]) -> Floats:

@@ -33,15 +33,23 @@ class Conditions:
         Temperature [K], heat put in [J or W], or isentropic efficiency [-].
     pressure : array (states,) or None
         Of the outlet, [Pa]; None for that of the inlet.
+    drop : array (states,) or None
+        How far the pressure of the outlet is below that of the inlet, [Pa]; None for not at all.
     """
 
     thermal: str
     value: Floats
     pressure: Floats | None = None
+    drop: Floats | None = None
 
-    def part(self, states: States) -> Conditions:
-        """Return some of the states."""
-        return Conditions(self.thermal, self.value[states], None if self.pressure is None else self.pressure[states])
+    def outlet_pressure(self, inlet: Stream, states: States) -> Floats:
+        """Pressure of the outlet, (states,), [Pa]; InputError where nothing is left of it."""
+        if self.pressure is not None:
+            return self.pressure[states]
+        P = inlet.pressure if self.drop is None else inlet.pressure - self.drop[states]
+        if np.any(P <= 0.0):
+            raise InputError("a pressure drop takes more than the pressure of the inlet")
+        return P
 
 
 @dataclass(frozen=True)
@@ -88,21 +96,21 @@ class Unreacted:
             raise InputError(
                 "a stream that is to change without reacting holds a fuel by analysis, or is of unknown temperature"
             )
-        held = self.conditions.part(states)
-        P = inlet.pressure if held.pressure is None else held.pressure
+        thermal, value = self.conditions.thermal, self.conditions.value[states]
+        P = self.conditions.outlet_pressure(inlet, states)
         zero = np.zeros(len(states))
-        if held.thermal == "temperature":
-            outlet = Stream.of(inlet.substances, inlet.amounts, held.value, P)
+        if thermal == "temperature":
+            outlet = Stream.of(inlet.substances, inlet.amounts, value, P)
             return Changed(outlet, outlet.enthalpy - inlet.enthalpy, zero)
-        if held.thermal == "heat":
-            H = inlet.enthalpy + held.value
+        if thermal == "heat":
+            H = inlet.enthalpy + value
             T = temperature_of_enthalpy(inlet.substances, inlet.amounts, H, inlet.temperature)
             S = inlet.substances.entropy(inlet.amounts, T, P)
-            return Changed(Stream(inlet.substances, inlet.amounts, T, P, H, S), held.value, zero)
+            return Changed(Stream(inlet.substances, inlet.amounts, T, P, H, S), value, zero)
         guess = inlet.temperature * (P / inlet.pressure) ** 0.25
         ideal = temperature_of_entropy(inlet.substances, inlet.amounts, inlet.entropy, P, guess)
         work = inlet.substances.enthalpy(inlet.amounts, ideal) - inlet.enthalpy
-        work = np.where(work < 0.0, work * held.value, work / held.value)
+        work = np.where(work < 0.0, work * value, work / value)
         T = temperature_of_enthalpy(inlet.substances, inlet.amounts, inlet.enthalpy + work, ideal)
         outlet = Stream.of(inlet.substances, inlet.amounts, T, P)
         return Changed(outlet, zero, outlet.enthalpy - inlet.enthalpy)
@@ -117,9 +125,8 @@ class Settling:
     system : System
         What may form, and the constraints and reactions with an approach temperature.
     conditions : Conditions
-    unconverted : mapping of str to tuple of (str, array (states,))
-        For a constraint by name: what of the inlet it counts (a species, or ``"C"`` for the carbon of fuels) and the
-        part that it holds, [-].
+    held_shares : mapping of str to (mapping of str to float, array (states,))
+        For a constraint by name: what of the inlet it counts, by species or `CARBON`, and the part that it holds, [-].
     held_sums : mapping of str to array (states,)
         For a constraint by name: the amount that it holds, [mol or mol/s].
     approach : mapping of str to array (states,)
@@ -134,20 +141,20 @@ class Settling:
 
     def __call__(self, inlet: Stream, states: States) -> Changed:
         """Settle the inlet of these states; where it is not certified the outlet is nan."""
-        held = self.conditions.part(states)
+        thermal, value = self.conditions.thermal, self.conditions.value[states]
+        P = self.conditions.outlet_pressure(inlet, states)
         b = self.elements(inlet, states)
-        P = inlet.pressure if held.pressure is None else held.pressure
         zero = np.zeros(len(states))
         system = self.system
         approach = {name: values[states] for name, values in self.approach.items()}
-        if held.thermal == "temperature":
-            batch = solve_in_chunks(system, b, {"temperature": held.value, "pressure": P}, approach=approach)
+        if thermal == "temperature":
+            batch = solve_in_chunks(system, b, {"temperature": value, "pressure": P}, approach=approach)
             return Changed(outlet_of(batch, inlet.substances), batch.enthalpy - inlet.enthalpy, zero, batch)
-        if held.thermal == "heat":
-            H = inlet.enthalpy + held.value
+        if thermal == "heat":
+            H = inlet.enthalpy + value
             batch = solve_in_chunks(system, b, {"enthalpy": H, "pressure": P}, approach=approach)
-            return Changed(outlet_of(batch, inlet.substances), held.value, zero, batch)
-        batch = expansion(system, b, inlet.entropy, inlet.enthalpy, P, held.value)
+            return Changed(outlet_of(batch, inlet.substances), value, zero, batch)
+        batch = expansion(system, b, inlet.entropy, inlet.enthalpy, P, value)
         return Changed(outlet_of(batch, inlet.substances), zero, batch.enthalpy - inlet.enthalpy, batch)
 
     def elements(self, inlet: Stream, states: States) -> Floats:

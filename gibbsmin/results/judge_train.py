@@ -1,0 +1,40 @@
+"""Cautions of every state of a train: those of its stages, each with the name of the stage."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from gibbsmin.practice.cautions import Caution
+from gibbsmin.results.judge import judge, peaks
+from gibbsmin.results.train_result import TrainResult
+
+
+def judge_train(result: TrainResult) -> list[list[Caution]]:
+    """Return the cautions of each state.
+
+    Parameters
+    ----------
+    result : TrainResult
+
+    Returns
+    -------
+    list of list of Caution
+        Of each kind the gravest of all stages.
+    """
+    found: list[dict[str, Caution]] = [{} for _ in range(len(result))]
+    for name, stage in result.stages.items():
+        for state, cautions in enumerate(judge(stage)):
+            for one in cautions:
+                known = found[state].get(one.kind)
+                if known is None or one.weight > known.weight:
+                    found[state][one.kind] = replace(one, text=f"Stage {name}: {one.text}")
+    return [list(one.values()) for one in found]
+
+
+def train_peaks(result: TrainResult) -> dict[str, float]:
+    """Return the highest mole fraction of each gas in any certified state of any stage, [-]."""
+    highest: dict[str, float] = {}
+    for stage in result.stages.values():
+        for name, x in peaks(stage).items():
+            highest[name] = max(highest.get(name, 0.0), x)
+    return highest

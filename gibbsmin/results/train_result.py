@@ -1,0 +1,278 @@
+"""What a train came to: its streams, the settled state of each stage, the accounts."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from functools import cached_property
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.practice.settled import FeedFacts
+from gibbsmin.results.account import Account
+from gibbsmin.results.key_figures import SETS, settled
+from gibbsmin.results.plain import plain
+from gibbsmin.results.result import FeedAmounts, Result
+from gibbsmin.results.train_spreadsheet import train_spreadsheets
+from gibbsmin.studies.labelled import Axis
+from gibbsmin.studies.train.account import WHOLE, StepAccount, accounts
+from gibbsmin.studies.train.stream import Stream
+from gibbsmin.studies.train.train import Solved, StepResult
+
+if TYPE_CHECKING:
+    import xarray
+
+Floats = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class TrainResult:
+    """The states of a train.
+
+    Attributes
+    ----------
+    title : str
+        Title of the case.
+    case : dict
+        The case as read, with defaults.
+    case_path, case_sha256 : str
+        The file and its checksum; empty where there is none.
+    basis : str
+        ``"mol"``, or ``"mol/s"`` where the feeds are flows; energies are then W.
+    inputs : dict of str to array (states,)
+        Varied inputs, in the units that were typed.
+    input_units : dict of str to str
+        Those units; ``"1"`` for a ratio.
+    axes : tuple of Axis
+        The varied inputs, each with its own values only.
+    display_units : dict of str to str
+        Units that were typed, for ``temperature``, ``pressure`` and ``amount``.
+    solved : Solved
+        Streams and steps.
+    key_sets : dict of str to tuple of str
+        Sets of key figures that are asked of each stage.
+    surroundings_temperature : float
+        [K].
+    heating_values : dict of str to (float, float) or None
+        Higher and lower, of a unit of each feed, [J].
+    units : array (states, F)
+        Units of each feed.
+    """
+
+    title: str
+    case: dict[str, Any]
+    case_path: str
+    case_sha256: str
+    basis: str
+    inputs: dict[str, Floats]
+    input_units: dict[str, str]
+    axes: tuple[Axis, ...]
+    display_units: dict[str, str]
+    solved: Solved
+    key_sets: Mapping[str, Sequence[str]]
+    surroundings_temperature: float
+    heating_values: Mapping[str, tuple[float, float] | None]
+    units: Floats
+
+    def __len__(self) -> int:
+        return len(self.solved.reasons)
+
+    @property
+    def streams(self) -> dict[str, Stream]:
+        """All streams by name: feeds, then what each step gives."""
+        return self.solved.streams
+
+    @property
+    def certified(self) -> NDArray[np.bool_]:
+        """Whether every stage of a state is certified, its recycles are steady and its elements close, (states,)."""
+        return np.array([not reason for reason in self.solved.reasons])
+
+    @cached_property
+    def accounts(self) -> dict[str, StepAccount]:
+        """Balances of each step and of the whole train."""
+        return accounts(self.solved, self.surroundings_temperature)
+
+    @cached_property
+    def stages(self) -> dict[str, Result]:
+        """The stages that settle, each as a result of its own, by name."""
+        return {
+            name: self._stage(name, step) for name, step in self.solved.steps.items() if step.changed.batch is not None
+        }
+
+    def _stage(self, name: str, step: StepResult) -> Result:
+        """Make a result of a stage that settles, whose feeds are its inlets."""
+        batch, inlet = step.changed.batch, step.inlet
+        assert batch is not None, "it settles"
+        entropy = np.sum([one.entropy for one in step.inlets.values()], axis=0)
+        facts = {stream: self._facts(stream, one) for stream, one in step.inlets.items()}
+        is_flow = self.basis == "mol/s"
+        here = settled(batch, facts, step.changed.heat, is_flow)
+        shaft = bool(np.any(step.changed.work))
+        return Result(
+            title=f"{self.title}: {name}",
+            case={},
+            case_path=self.case_path,
+            case_sha256=self.case_sha256,
+            system=batch.system,
+            basis=self.basis,
+            inputs=self.inputs,
+            input_units=self.input_units,
+            axes=self.axes,
+            batch=batch,
+            display_units=self.display_units,
+            feeds={stream: _amounts(stream, one) for stream, one in step.inlets.items()},
+            held={"temperature": batch.temperature, "pressure": batch.pressure},
+            account=Account(
+                feed_enthalpy=inlet.enthalpy,
+                feed_entropy=entropy,
+                shaft=shaft,
+                surroundings_temperature=self.surroundings_temperature,
+            ),
+            key_figures={group: SETS[group](here) for group in self.key_sets.get(name, ())},
+        )
+
+    def _facts(self, name: str, stream: Stream) -> FeedFacts:
+        """Put down what the trade's numbers need of an inlet."""
+        substances = stream.substances
+        amounts = {record.substance: stream.amounts[:, k] for k, record in enumerate(substances.records)}
+        symbols = dict.fromkeys((*substances.elements, *stream.atoms))
+        heat = self.heating_values.get(name)
+        feeds = list(self.solved.feeds)
+        size = self.units[:, feeds.index(name)] if name in feeds else None
+        higher, lower = (None, None) if heat is None or size is None else (heat[0] * size, heat[1] * size)
+        return FeedFacts(
+            {key: n for key, n in amounts.items() if n.any()},
+            {symbol: stream.element(symbol) for symbol in symbols},
+            stream.mass,
+            higher,
+            lower,
+            bool(stream.atoms),
+            stream.temperature,
+        )
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return the result as result.json has it.
+
+        Returns
+        -------
+        dict
+            Safe for JSON. Each state has ``streams``, ``stages`` (as the states of a case of one mixture) and
+            ``steps`` (heat, work, what is lost), and ``train`` (the whole, with the residual of the recycles).
+        """
+        stages = {name: result.to_dict()["states"] for name, result in self.stages.items()}
+        legend = {name: result.legend() for name, result in self.stages.items() if result.key_figures}
+        return {
+            "schema": 1,
+            "title": self.title,
+            "basis": self.basis,
+            "case": self.case,
+            "input_units": self.input_units,
+            "order": list(self.solved.steps),
+            "products": list(self.solved.products),
+            **({"key_figures": legend} if legend else {}),
+            "states": [self._state(i, stages) for i in range(len(self))],
+        }
+
+    def _state(self, i: int, stages: Mapping[str, Sequence[Mapping[str, Any]]]) -> dict[str, Any]:
+        loop = self.solved.steady
+        return {
+            "inputs": {name: float(values[i]) for name, values in self.inputs.items()},
+            "streams": {name: _stream(stream, i) for name, stream in self.streams.items()},
+            "stages": {name: states[i] for name, states in stages.items()},
+            "steps": {name: _account(one, i) for name, one in self.accounts.items() if name != WHOLE},
+            "train": {
+                **_account(self.accounts[WHOLE], i),
+                "recycle_residual": 0.0 if loop is None else plain(loop.residual[i]),
+            },
+            "certificate": {"ok": bool(self.certified[i]), "reason": self.solved.reasons[i]},
+        }
+
+    def tables(self) -> dict[str, str]:
+        """Write the spreadsheets, by the name of their file."""
+        return train_spreadsheets(self)
+
+    def dataset(self) -> xarray.Dataset:
+        """Return the streams with named axes and units.
+
+        Returns
+        -------
+        xarray.Dataset
+            Dimensions are the varied inputs, ``stream`` and ``species``; and ``step`` for heat, work and lost work.
+        """
+        import xarray
+
+        names = tuple(axis.name for axis in self.axes)
+        shape = tuple(len(axis.values) for axis in self.axes)
+        unit, per_K = ("W", "W/K") if self.basis == "mol/s" else ("J", "J/K")
+        streams, steps = self.streams, self.accounts
+
+        def spread(values: Any) -> Any:
+            array = np.asarray(values)  # (things, states, ...)
+            return np.moveaxis(array, 0, 1).reshape((*shape, array.shape[0], *array.shape[2:]))
+
+        every = list(streams.values())
+        variables: dict[str, Any] = {
+            "amount": (
+                (*names, "stream", "species"), spread([one.amounts for one in every]),
+                {"units": self.basis, "long_name": "amount of each species in each stream"},
+            ),
+        }  # fmt: skip
+        for key, kind, text in (
+            ("temperature", "K", "temperature"), ("pressure", "Pa", "absolute pressure"),
+            ("enthalpy", unit, "enthalpy; the elements at 298.15 K are zero"), ("entropy", per_K, "entropy"),
+        ):  # fmt: skip
+            values = spread([getattr(one, key) for one in every])
+            variables[key] = ((*names, "stream"), values, {"units": kind, "long_name": text})
+        for key, kind, text in (
+            ("heat", unit, "heat to be supplied"), ("work", unit, "shaft work to be supplied"),
+            ("entropy_generated", per_K, "entropy generated"), ("lost_work", unit, "lost work"),
+        ):  # fmt: skip
+            values = spread([getattr(one, key) for one in steps.values()])
+            variables[f"step_{key}"] = ((*names, "step"), values, {"units": kind, "long_name": text})
+        variables["certified"] = (names, self.certified.reshape(shape), {"long_name": "whether the certificate holds"})
+        reasons = np.array(self.solved.reasons, dtype=str).reshape(shape)
+        variables["reason"] = (names, reasons, {"long_name": "why it does not"})
+        coordinates: dict[str, Any] = {axis.name: (axis.name, axis.values, {"units": axis.unit}) for axis in self.axes}
+        substances = every[0].substances
+        coordinates |= {"stream": list(streams), "step": list(steps), "species": list(substances.index)}
+        return xarray.Dataset(
+            variables, coordinates, {"basis": self.basis, "title": self.title, "case_sha256": self.case_sha256}
+        )
+
+
+def _stream(stream: Stream, i: int) -> dict[str, Any]:
+    """One stream in one state, for JSON."""
+    amounts = stream.amounts[i]
+    names = [record.name for record in stream.substances.records]
+    return {
+        "temperature": plain(stream.temperature[i]),
+        "pressure": plain(stream.pressure[i]),
+        "enthalpy": plain(stream.enthalpy[i]),
+        "entropy": plain(stream.entropy[i]),
+        "mass": plain(stream.mass[i]),
+        "gas": plain(stream.gas[i]),
+        "amounts": {name: plain(n) for name, n in zip(names, amounts, strict=True) if n != 0.0},
+        **({"atoms": {symbol: plain(n[i]) for symbol, n in stream.atoms.items()}} if stream.atoms else {}),
+    }
+
+
+def _account(account: StepAccount, i: int) -> dict[str, float | None]:
+    """One account in one state, for JSON."""
+    return {name: plain(values[i]) for name, values in vars(account).items()}
+
+
+def _amounts(name: str, stream: Stream) -> FeedAmounts:
+    """Put down an inlet in its first state."""
+    symbols = dict.fromkeys((*stream.substances.elements, *stream.atoms))
+    records = stream.substances.records
+    return FeedAmounts(
+        name,
+        {record.name: float(n) for record, n in zip(records, stream.amounts[0], strict=True) if n > 0.0},
+        {symbol: float(n[0]) for symbol, n in stream.atoms.items()},
+        {symbol: float(stream.element(symbol)[0]) for symbol in symbols},
+        float(stream.mass[0]),
+        float(stream.temperature[0]),
+        float(stream.pressure[0]),
+    )
