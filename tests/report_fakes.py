@@ -9,6 +9,7 @@ import numpy as np
 
 from gibbsmin.practice.audit import Audit, audit
 from gibbsmin.results.account import Account
+from gibbsmin.results.spreadsheet import spreadsheet
 from gibbsmin.thermo.database import load
 
 SPECIES = ["H2", "H2O", "CO", "CO2", "CH4", "N2", "C2H4", "C(s):graphite", "H2O(l)"]
@@ -108,6 +109,10 @@ class FakeResult:
     def axes(self) -> tuple[FakeAxis, ...]:
         """The one varied input, if any."""
         return tuple(FakeAxis(values) for values in self.inputs.values())
+
+    def tables(self) -> dict[str, str]:
+        """Write the one spreadsheet."""
+        return {"table.csv": spreadsheet(self)}  # type: ignore[arg-type]
 
     def state(self, index: int) -> FakeState:
         """State of the batch."""

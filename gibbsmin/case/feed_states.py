@@ -215,8 +215,8 @@ class FeedStates:
         return 1.0 if P is None else P
 
 
-def feed_facts(feeds: FeedStates) -> dict[str, FeedFacts]:
-    """Put down what the trade's numbers need of the fresh feeds, by name."""
+def feed_facts(feeds: FeedStates, returned: bool) -> dict[str, FeedFacts]:
+    """Put down what the trade's numbers need of the feeds, by name; the gas that goes back only where asked for."""
     found = {}
     for k, one in enumerate(feeds.recipes):
         units, T = feeds.units[:, k], feeds.temperature(one)
@@ -229,6 +229,16 @@ def feed_facts(feeds: FeedStates) -> dict[str, FeedFacts]:
             None if value is None else value[1] * units,
             one.fuel is not None,
             None if T is None else np.broadcast_to(np.asarray(T, float), units.shape),
+        )
+    back = feeds.returned
+    if returned and back is not None:
+        symbols = dict.fromkeys(symbol for record in back.records for symbol in record.elements)
+        held = {s: np.array([record.elements.get(s, 0.0) for record in back.records]) for s in symbols}
+        found[back.name] = FeedFacts(
+            {record.substance: back.amounts[:, k] for k, record in enumerate(back.records)},
+            {symbol: back.amounts @ counts for symbol, counts in held.items()},
+            back.amounts @ np.array([record.molar_mass for record in back.records]),
+            temperature=back.temperature,
         )
     return found
 

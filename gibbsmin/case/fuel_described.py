@@ -7,6 +7,7 @@ from typing import Any, get_args
 from gibbsmin.case.fuel_recipe import Fuel
 from gibbsmin.errors import FeedError
 from gibbsmin.practice.air import DRY_AIR
+from gibbsmin.practice.ash import ALKALIS, SPECIES_OF_OXIDE
 from gibbsmin.practice.fuel_analysis import AIR_DRIED, AS_RECEIVED, ASH, Basis, dry_basis
 from gibbsmin.practice.fuel_heat import to_lower
 from gibbsmin.practice.heating import NORMAL_MOLAR_VOLUME
@@ -30,13 +31,15 @@ def describe_fuel(fuel: Fuel) -> dict[str, Any]:
         value in J/kg), ``moisture_dry`` (percent of dry fuel), ``oxygen_need`` (mol/kg as received) and ``air_need``
         (dry air of ISO 2533: Nm3/kg and kg/kg as received), None where not defined, ``stated``, ``correlation``,
         ``correlation_error``, ``estimate`` (J/kg as received, higher), ``formation_enthalpy`` (J/kg as received, of
-        what burns), ``base_to_acid``, ``alkali_index`` (kg/J of higher heating value), None where the ash is not known,
-        ``notes``.
+        what burns), ``base_to_acid``, ``alkali_index`` (kg/J of higher heating value; K2O and Na2O that the analysis
+        names beside the ash count, too), None where the ash is not known, ``notes``.
     """
     analysis, ash = fuel.analysis, fuel.ash
     bases = [name for name in get_args(Basis) if name != AIR_DRIED or analysis.air_dried_moisture is not None]
     oxygen, air = _needs(fuel)
-    minerals = analysis.on(AS_RECEIVED).get(ASH, 0.0) / 100.0
+    received, higher = analysis.on(AS_RECEIVED), fuel.heat.higher
+    minerals = received.get(ASH, 0.0) / 100.0
+    named = sum(received.get(SPECIES_OF_OXIDE[oxide], 0.0) for oxide in ALKALIS) / 100.0
     return {
         "bases": {name: _on(fuel, name) for name in bases},
         "moisture_dry": dry_basis(analysis.moisture),
@@ -48,7 +51,7 @@ def describe_fuel(fuel: Fuel) -> dict[str, Any]:
         "estimate": fuel.heat.estimate,
         "formation_enthalpy": fuel.formation,
         "base_to_acid": None if ash is None else ash.base_to_acid,
-        "alkali_index": None if ash is None else ash.alkali_index(minerals, fuel.heat.higher),
+        "alkali_index": None if ash is None else ash.alkali_index(minerals, higher) + named / higher,
         "notes": list(fuel.notes),
     }
 

@@ -39,6 +39,13 @@ class Show(Table):
     sort: Literal["amount", "name"] = Field(
         default="amount", description="Order of the species in tables.", examples=["name"]
     )
+    columns: list[Text] = Field(
+        default=[],
+        description=(
+            "Key figures that stand as columns in the table of a sweep, as SET.NAME; the names are those of table.csv."
+        ),
+        examples=[["reforming.ch4_dry", "flue gas.nox_dry"]],
+    )
 
 
 class CaseFrame(Table):

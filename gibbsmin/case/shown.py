@@ -27,7 +27,7 @@ def shown_units(case: CaseFrame, basis: str) -> dict[str, str]:
         units[key] = next(
             (unit for value in typed_values if value is not None and (unit := unit_of(value))), units[key]
         )
-    sizes = [feed.flow if feed.flow is not None else feed.amount for feed in case.feeds.values()]
+    sizes = [size for feed in case.feeds.values() for size in (feed.flow, feed.amount, *(feed.amounts or {}).values())]
     typed = [unit_of(size) for size in sizes if size is not None]
     molar = [unit for unit in typed if "mol" in unit]
     if molar:

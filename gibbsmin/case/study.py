@@ -23,7 +23,7 @@ from gibbsmin.case.shown import shown_units
 from gibbsmin.case.sizes import feed_units
 from gibbsmin.case.source import dotted
 from gibbsmin.case.study_frame import StudyFrame, read_axes, read_feed_basis, read_feeds
-from gibbsmin.errors import CaseError
+from gibbsmin.errors import CaseError, nearest
 from gibbsmin.practice.flue_gas import flue_gas
 from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.results.folder import check_place, write_folder
@@ -212,16 +212,21 @@ class Study(StudyFrame):
 
     def _key_figures(self, result: Result, feeds: FeedStates, elements: Floats) -> dict[str, list[KeyFigure]]:
         """Work out the numbers of the trade that the case asks for, by set."""
-        facts, is_flow = feed_facts(feeds), self.basis == "mol/s"
+        is_flow = self.basis == "mol/s"
         found: dict[str, list[KeyFigure]] = {}
-        if not (self.case.key_figures or self.case.flue_gas):
-            return found
-        here = settled(result.batch, facts, result.heats, is_flow)
         if self.case.flue_gas is not None:
-            gas = settled(frozen(self, result.batch, elements), facts, result.heats, is_flow)
+            fresh = feed_facts(feeds, returned=False)
+            here = settled(result.batch, fresh, result.heats, is_flow)
+            gas = settled(frozen(self, result.batch, elements), fresh, result.heats, is_flow)
             found["flue gas"] = flue_gas(here, setting(self.case, feeds), gas)
-        for name in self.case.key_figures:
-            found[name] = SETS[name](here)
+        if self.case.key_figures:
+            here = settled(result.batch, feed_facts(feeds, returned=True), result.heats, is_flow)
+            found |= {name: SETS[name](here) for name in self.case.key_figures}
+        known = [f"{group}.{one.name}" for group, figures in found.items() for one in figures]
+        for place, name in enumerate(self.case.show.columns):
+            if name not in known:
+                asked = f"{nearest(name, known) or ';'} the case has {', '.join(found) or 'no sets of key figures'}"
+                raise RuleError(f"there is no key figure {name!r}{asked}", "show", "columns", place)
         return found
 
     def describe(self) -> dict[str, Any]:

@@ -47,7 +47,9 @@ TAKEN_UP: Final = ("SO3", "CO2")
 _LEAST, _MOST = 95.0, 105.0
 _BASES = ("Fe2O3", "CaO", "MgO", "Na2O", "K2O")
 _ACIDS = ("SiO2", "Al2O3", "TiO2")
-_ALKALIS = ("Na2O", "K2O")
+
+ALKALIS: Final = ("Na2O", "K2O")
+"""Oxides that the alkali index counts."""
 
 
 @dataclass(frozen=True)
@@ -96,7 +98,7 @@ class Ash:
         float
             [kg/J].
         """
-        return ash * self._sum(_ALKALIS) / heat
+        return ash * self._sum(ALKALIS) / heat
 
     def _sum(self, oxides: tuple[str, ...]) -> float:
         return sum(self.oxides.get(oxide, 0.0) for oxide in oxides)

@@ -63,7 +63,12 @@ def toxic(gas: Mapping[str, float]) -> Caution | None:
 
 def _level(x: float | None) -> str:
     """Exposure limit in ppm by volume."""
-    return f"{1e6 * (x or 0.0):.6g} ppmv" if (x or 0.0) >= 1e-7 else f"{1e9 * (x or 0.0):.3g} ppbv"
+    return f"{_limit(1e6 * (x or 0.0))} ppmv" if (x or 0.0) >= 1e-7 else f"{1e9 * (x or 0.0):.3g} ppbv"
+
+
+def _limit(ppm: float) -> str:
+    """Limit in ppm: whole where it is, else two figures, as one that was turned over from mg/m3."""
+    return f"{ppm:.6g}" if abs(ppm - round(ppm, 1)) < 1e-9 * ppm else f"{ppm:.2g}"
 
 
 def flammable(gas: Mapping[str, float], temperature: float) -> Caution | None:

@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING, Final, NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
+from gibbsmin.report.key_figure_table import shown_unit, shown_value
 from gibbsmin.report.numbers import MISSING, figures, plain
 from gibbsmin.report.words import WIDTH, shortened
 from gibbsmin.results.fractions import gas_fractions
@@ -55,12 +56,13 @@ def unit_word(unit: str) -> str:
 
 
 def fitting(first: Sequence[Column], rest: Sequence[Column]) -> list[Column]:
-    """All of ``first``, and as many of ``rest`` as 80 columns have room for."""
+    """All of ``first``, and of ``rest`` what 80 columns have room for, up to the first that has none."""
     kept, used = list(first), sum(column.width for column in first)
     for column in rest:
-        if used + column.width <= WIDTH:
-            kept.append(column)
-            used += column.width
+        if used + column.width > WIDTH:
+            break
+        kept.append(column)
+        used += column.width
     return kept
 
 
@@ -106,6 +108,17 @@ def energy_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
     largest = max(map(abs, known))
     scale, prefix = next(((s, p) for s, p in ((1e6, "M"), (1e3, "k")) if largest >= s), (1.0, ""))
     return [Column(head, prefix + watt, [MISSING if h is None else figures(h / scale, 3) for h in heats])]
+
+
+def chosen_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:
+    """Key figures that the case names for its table."""
+    wanted = result.case.get("show", {}).get("columns") or []
+    known = {f"{group}.{one.name}": one for group, figures in result.key_figures.items() for one in figures}
+    return [
+        Column(shortened(one.label, 16), shown_unit(one), [shown_value(one, float(one.value[i])) for i in shown])
+        for name in wanted
+        if (one := known.get(name)) is not None
+    ]
 
 
 def gas_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:

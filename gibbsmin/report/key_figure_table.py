@@ -117,12 +117,12 @@ def _block(name: str, rows: Sequence[tuple[KeyFigure, list[str]]], heads: Sequen
         return []
     single = len(heads) == 1
     notes = list(dict.fromkeys(one.note for one, _ in rows if one.note)) if single else []
-    width, label = (14, _LABEL) if single else (10, 34)
+    width, label = (14, _LABEL) if single else (10, 33)
     head = "".join(f"{text:>{width}}" for text in heads)
     lines = ["", f"{name:<{label}}{head}".rstrip()]
     for one, cells in rows:
         mark = f"[{notes.index(one.note) + 1}]" if one.note in notes else ""
         cell = "".join(f"{text:>{width}}" for text in cells)
         unit = shown_unit(one)
-        lines.append(f"  {shortened(one.label, label - 3):<{label - 2}}{cell} {unit:<6} {mark}".rstrip())
+        lines.append(f"  {shortened(one.label, label - 2):<{label - 2}}{cell} {unit:<6} {mark}".rstrip())
     return lines + footnotes(notes)

@@ -71,12 +71,13 @@ def prefixed(value: float, unit: str, count: int = 4) -> str:
 
 
 def plain(value: float) -> str:
-    """Write a typed value with at most two decimals and no idle zeros.
+    """Write a typed value with at most two decimals, below ten with four figures, and no idle zeros.
 
     Examples
     --------
-    >>> plain(870.0), plain(426.54), plain(1143.15)
-    ('870', '426.54', '1143.15')
+    >>> plain(870.0), plain(426.54), plain(1143.15), plain(0.275), plain(-0.0)
+    ('870', '426.54', '1143.15', '0.275', '0')
     """
-    text = f"{value:.2f}".rstrip("0").rstrip(".")
+    text = f"{value:.2f}" if not 0.0 < value < 10.0 else f"{float(f'{value:.4g}'):.10f}"
+    text = text.rstrip("0").rstrip(".")
     return "0" if text == "-0" else text

@@ -8,11 +8,13 @@ from typing import TYPE_CHECKING
 
 from gibbsmin.practice.cautions import CLOSING, Caution, gather
 from gibbsmin.report.key_figure_table import state_key_figures, sweep_key_figures
+from gibbsmin.report.rule_words import rule_lines
 from gibbsmin.report.sweep_table import sweep_table
 from gibbsmin.report.table import THRESHOLD, state_table
 from gibbsmin.report.view import view
 from gibbsmin.report.words import labelled
 from gibbsmin.results.judge import peaks
+from gibbsmin.results.left_out import left_out
 
 if TYPE_CHECKING:
     from gibbsmin.results.result import Result
@@ -35,11 +37,14 @@ def summary(result: Result, judged: Sequence[Sequence[Caution]], folder: Path) -
         None longer than 80 columns, but for the name of the folder.
     """
     if len(result.batch) > 1:
-        lines = [*sweep_table(result), *sweep_key_figures(result.key_figures)]
+        lines = sweep_table(result)
+        lines[-1:] = [*rule_lines(result.case), *lines[-1:], *sweep_key_figures(result.key_figures)]
     else:
-        threshold = float(result.case.get("show", {}).get("threshold") or THRESHOLD)
-        lines = state_table(result.title, view(result, 0), result.basis, result.display_units, threshold)
+        show = result.case.get("show", {})
+        threshold, by_name = float(show.get("threshold") or THRESHOLD), show.get("sort") == "name"
+        lines = state_table(result.title, view(result, 0), result.basis, result.display_units, threshold, by_name)
         if result.batch.certified[0]:
+            lines[-1:] = [*rule_lines(result.case, left_out(result, 0)), *lines[-1:]]
             lines += state_key_figures(result.key_figures, 0)
     if result.key_figures:
         lines.append("")

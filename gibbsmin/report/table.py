@@ -22,7 +22,12 @@ _CELL: Final = 16
 
 
 def state_table(
-    title: str, view: View, basis: str, units: Mapping[str, str], threshold: float = THRESHOLD
+    title: str,
+    view: View,
+    basis: str,
+    units: Mapping[str, str],
+    threshold: float = THRESHOLD,
+    by_name: bool = False,
 ) -> list[str]:
     """Lines that show one state.
 
@@ -38,6 +43,8 @@ def state_table(
         Units to show in, by quantity (``temperature``, ``pressure``, ``amount``), as they were typed.
     threshold : float
         Mole fraction below which species are summed up in one line, [-].
+    by_name : bool
+        Whether species are in the order of their names, not of their amounts.
 
     Returns
     -------
@@ -50,8 +57,8 @@ def state_table(
         return [*lines, *labelled("NOT CERTIFIED", view.reason)]
     for phase in view.phases:
         if phase.name == "gas":
-            lines += _gas(phase, unit, threshold)
-    lines += _condensed(view.phases, unit)
+            lines += _gas(phase, unit, threshold, by_name)
+    lines += _condensed(view.phases, unit, by_name)
     lines.append("")
     if isfinite(view.density):
         lines += labelled(
@@ -158,14 +165,15 @@ def _percent(x: float) -> str:
     return text if text.endswith("ppm") else text + "    "
 
 
-def _gas(phase: Phase, unit: str, threshold: float) -> list[str]:
+def _gas(phase: Phase, unit: str, threshold: float, by_name: bool) -> list[str]:
     """Show the gas: amount, mole percent wet and, where there is water, dry."""
     fractions = {name: x for name, (_, x) in phase.species.items()}
     wet = fractions.get("H2O", 0.0) >= threshold
     without_water = dry(fractions) if wet else {}
     heads = [unit, "mole % wet    ", "mole % dry    "] if wet else [unit, "mole %    "]
     lines = [f"{'gas':<{_NAME + 2}}" + "".join(f"{head:>{_CELL}}" for head in heads).rstrip()]
-    shown = sorted((name for name, x in fractions.items() if x >= threshold), key=lambda name: -fractions[name])
+    large = [name for name, x in fractions.items() if x >= threshold]
+    shown = sorted(large) if by_name else sorted(large, key=lambda name: -fractions[name])
     for name in shown:
         cells = [figures(from_si(phase.species[name][0], unit)), _percent(fractions[name])]
         if wet:
@@ -177,10 +185,11 @@ def _gas(phase: Phase, unit: str, threshold: float) -> list[str]:
     return [*lines, _row("total", [figures(from_si(phase.amount, unit))]).rstrip()]
 
 
-def _condensed(phases: Iterable[Phase], unit: str) -> list[str]:
+def _condensed(phases: Iterable[Phase], unit: str, by_name: bool) -> list[str]:
     """Solids and liquids, with their share of all moles."""
     all_phases = list(phases)
     rows = [phase for phase in all_phases if phase.name != "gas"]
+    rows = sorted(rows, key=lambda phase: phase.name) if by_name else rows
     if not rows:
         return ["no solid, no liquid"]
     lines = [f"{'solids and liquids':<{_NAME + 2}}{unit:>{_CELL}}"]

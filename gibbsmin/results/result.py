@@ -13,6 +13,7 @@ from numpy.typing import NDArray
 from gibbsmin.practice.audit import Audit
 from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.results.account import Account
+from gibbsmin.results.left_out import left_out
 from gibbsmin.results.plain import plain
 from gibbsmin.results.properties import PROPERTIES, properties
 from gibbsmin.results.spreadsheet import spreadsheet
@@ -239,6 +240,11 @@ class Result:
                     }
                 }
                 if self.key_figures
+                else {}
+            ),
+            **(
+                {"left_out": {name: plain(value) for name, value in left_out(self, i).items()}}
+                if certified and self.case.get("species", {}).get("exclude") and len(self.batch) <= FULL_STATES
                 else {}
             ),
             "audit": None if (account := self.audit(i)) is None else account.to_dict(),

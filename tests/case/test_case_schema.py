@@ -15,7 +15,7 @@ def read(path):
     try:
         return Case.model_validate(source.data)
     except ValidationError as error:
-        raise complaint(error, source) from None
+        raise complaint(error, source, Case) from None
 
 
 def test_the_good_case_and_its_defaults(write):

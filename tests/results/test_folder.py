@@ -97,10 +97,10 @@ def test_failure_half_way_leaves_the_earlier_result(tmp_path: Path, monkeypatch:
     write(FakeResult(), tmp_path / "out")
     before = (tmp_path / "out" / "result.json").read_text()
 
-    def full_disk(_: Any) -> str:
+    def full_disk(_: Any) -> dict[str, str]:
         raise OSError(28, "No space left on device")
 
-    monkeypatch.setattr("gibbsmin.results.folder.spreadsheet", full_disk)
+    monkeypatch.setattr(FakeResult, "tables", full_disk)
     with pytest.raises(InputError, match="No space left"):
         write(FakeResult(3), tmp_path / "out")
     assert (tmp_path / "out" / "result.json").read_text() == before
