@@ -50,7 +50,7 @@ from gibbsmin.thermo.table import Table, standard_heat_capacity, standard_state
 def potentials(table: Table, gas: Any, w: Work) -> None:
     """Make g, e, s and Cp of every species at the present T; g is inf where the range rules forbid a species."""
     temperature = w.value[T]
-    standard_state(temperature, table, w.std[HEAT], w.std[DISORDER])
+    standard_state(temperature, table, w.pieces, w.std[HEAT], w.std[DISORDER])
     held_volume = w.count[VOLUME] == 1
     shift = w.value[FIRST] + (np.log(temperature) if held_volume else 0.0)
     for j in range(gas.size):
@@ -58,7 +58,7 @@ def potentials(table: Table, gas: Any, w: Work) -> None:
         own = w.std[HEAT, j] - w.std[DISORDER, j] + w.std[OFFSET, j]
         w.std[GIBBS, j] = own + (shift if gas[j] else 0.0) if usable else np.inf
     if w.count[MODE] != TEMPERATURE:
-        standard_heat_capacity(temperature, table, w.std[CAPACITY])
+        standard_heat_capacity(temperature, table, w.pieces, w.std[CAPACITY])
         if held_volume:
             for j in range(gas.size):
                 if gas[j]:

@@ -7,6 +7,7 @@ from typing import Final
 import numpy as np
 
 from gibbsmin.compiled import inlined, summing
+from gibbsmin.solver.exponential import exponentials
 from gibbsmin.solver.layout import (
     AMOUNT,
     DEMAND,
@@ -30,8 +31,6 @@ from gibbsmin.solver.layout import (
 
 VANISHING: Final = 1.0e-280  # turnover near the smallest number there is: balanced in logarithms only
 OVERDRAFT: Final = 0.01  # share of its turnover by which a condensed species may be overdrawn on the way
-FLOOR: Final = -700.0  # u below which a species is taken as absent: its amount would not be a normal number
-CEILING: Final = 300.0  # largest u that is taken at its word, so that nothing overflows
 
 
 @summing
@@ -46,11 +45,11 @@ def activities(w: Work) -> None:
         if y != 0.0:
             for j in range(candidates):
                 u[j] += w.nu[i, j] * y
+    exponentials(gas, u, n, w.raw, w.bits)
     total = 0.0
     for j in range(gas):
-        x = np.exp(min(u[j], CEILING)) if u[j] > FLOOR else 0.0
-        total += x
-        n[j] = amount * x
+        total += n[j]
+        n[j] *= amount
     w.value[X] = total
     for i in range(m):
         supply, demand = max(-w.at[C, i], 0.0), max(w.at[C, i], 0.0)

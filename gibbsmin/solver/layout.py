@@ -6,6 +6,8 @@ from typing import Any, Final, NamedTuple
 
 import numpy as np
 
+from gibbsmin.thermo.table import Pieces, new_pieces
+
 # what[KIND, i]: what coordinate i of the basis is
 FREE: Final = 0  # its activity is unknown
 PRESENT: Final = 1  # a condensed species that is present: its activity is one, its amount is unknown
@@ -25,6 +27,7 @@ MODE: Final = 7  # what is held beside pressure or volume, see below
 VOLUME: Final = 8  # 1 where the volume is held, 0 where the pressure is
 MIXED: Final = 10  # 1 where the state is a mixture of those on the two sides of a jump of energy, see `one_state`
 SIDES: Final = 11  # which sides of the bracket are known: 1 the cold, 2 the warm one
+HISTORY: Final = 12  # states before whose unknowns are kept: none, one, or two on the same phases
 EXTRA: Final = 9  # condensed candidate that is present beside the basis, at a temperature where two coexist; or -1
 
 # count[MODE]
@@ -56,6 +59,11 @@ DEMAND: Final = 3  # c plus the sum of |nu| n where nu < 0, mol
 LEFT: Final = 4  # what a basis leaves of b, mol
 RIGHT: Final = 5  # right-hand side of eq. (6) and (8), then the step; three more than places
 STEP: Final = 6  # scale of its rows
+LAST: Final = 7  # y, ln(N / sum of b) and ln T of the last state, and of the one before, see `continuation`
+BEFORE: Final = 8
+POINT: Final = 9  # conditions of this state, of the last, and of the one before
+LAST_POINT: Final = 10
+BEFORE_POINT: Final = 11
 
 # what[...]: rows of integers that belong to a place of the basis
 KIND: Final = 0
@@ -89,7 +97,7 @@ class Work(NamedTuple):
 
     A: Any  # (m, S) atoms of each element in each species
     b: Any  # (m,) element amounts of the state, scaled to a sum of about one
-    count: Any  # (12,) int, see above
+    count: Any  # (13,) int, see above
     value: Any  # (14,) see above
     offered: Any  # (S,) bool, the species that the last state offered as candidates
     chosen: Any  # (S,) bool, those that remained
@@ -98,19 +106,23 @@ class Work(NamedTuple):
     std: Any  # (7, S) see above
     of: Any  # (6, S) see above
     nu: Any  # (m, S) coordinates of each candidate, eq. (4)
-    at: Any  # (7, m + 3) see above
+    at: Any  # (12, m + 3) see above
     what: Any  # (3, m) int, see above
     inverse: Any  # (m, m) B^-1
     matrix: Any  # (m + 3, m + 3) eqs. (6) and (8)
+    raw: Any  # (S,) room for `exponential`
+    bits: Any  # (S,) the same memory as integers
+    pieces: Pieces  # the polynomials of the range in which T is
 
 
 def new_work(A: Any) -> Work:
     """Allocate the arrays for the element matrix ``A`` (m, S)."""
     m, S = A.shape
+    raw = np.zeros(S)
     return Work(
         A,
         np.zeros(m),
-        np.zeros(12, np.int64),
+        np.zeros(13, np.int64),
         np.zeros(14),
         np.zeros(S, np.bool_),
         np.zeros(S, np.bool_),
@@ -119,8 +131,11 @@ def new_work(A: Any) -> Work:
         np.zeros((7, S)),
         np.zeros((6, S)),
         np.zeros((m, S)),
-        np.zeros((7, m + 3)),
+        np.zeros((12, m + 3)),
         np.zeros((3, m), np.int64),
         np.zeros((m, m)),
         np.zeros((m + 3, m + 3)),
+        raw,
+        raw.view(np.int64),
+        new_pieces(S),
     )

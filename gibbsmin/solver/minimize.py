@@ -7,7 +7,22 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.compiled import compiled
-from gibbsmin.solver.layout import COLD, FIRST, MODE, OFFSET, REUSES, SECOND, STEPS, TEMPERATURE, VOLUME, WARM, T, Work
+from gibbsmin.solver.continuation import remember
+from gibbsmin.solver.layout import (
+    COLD,
+    FIRST,
+    HISTORY,
+    MODE,
+    OFFSET,
+    REUSES,
+    SECOND,
+    STEPS,
+    TEMPERATURE,
+    VOLUME,
+    WARM,
+    T,
+    Work,
+)
 from gibbsmin.solver.one_state import one_state
 from gibbsmin.solver.outcome import Outcome, close_balances, collect, finish
 from gibbsmin.solver.status import NO_FEED, SOLVED
@@ -56,7 +71,7 @@ def minimize_many(
         Filled in place.
     """
     m, S = A.shape
-    w.count[REUSES] = -1
+    w.count[REUSES], w.count[HISTORY] = -1, 0
     w.value[COLD], w.value[WARM] = np.inf, 0.0
     for j in range(S):
         w.value[COLD], w.value[WARM] = min(w.value[COLD], table.low[j]), max(w.value[WARM], table.top[j])
@@ -81,7 +96,10 @@ def minimize_many(
         w.count[MODE] = mode
         out.status[state] = one_state(A, gas, w.b, table, w)
         out.steps[state] = w.count[STEPS]
+        if out.status[state] != SOLVED:
+            w.count[HISTORY] = 0
         if out.status[state] == SOLVED:
+            remember(w.b, w)
             collect(scale, A, w, out.n[state], out.lam[state])
             close_balances(b[state], w, out.n[state])
             finish(A, gas, b[state], first[state], second[state], table, w, state, out)

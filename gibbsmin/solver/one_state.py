@@ -14,6 +14,7 @@ import numpy as np
 
 from gibbsmin.compiled import inlined
 from gibbsmin.solver.candidates import same_candidates, select_candidates
+from gibbsmin.solver.continuation import continue_last
 from gibbsmin.solver.energy import energy_excess, follow, potentials
 from gibbsmin.solver.layout import (
     BASIS,
@@ -24,6 +25,7 @@ from gibbsmin.solver.layout import (
     EXTRA,
     GIBBS,
     HIGH,
+    HISTORY,
     KIND,
     LOW,
     MIXED,
@@ -68,10 +70,13 @@ def one_state(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
     w.value[LOW], w.value[HIGH], w.value[WIDTH] = w.value[COLD], w.value[WARM], BRACKETS[0]
     w.count[MIXED], w.count[SIDES], attempt = 0, 0, 0
     joint = mode != TEMPERATURE
-    ready = joint and begin_joint(A, gas, b, table, w)
+    continued = ready = continue_last(b, gas, table, w)
+    begun = continued
     for _ in range(1000):
         room = True
-        if not joint:
+        if not begun and joint:
+            ready = begin_joint(A, gas, b, table, w)
+        elif not begun:
             w.count[CHANGES], w.count[EXTRA] = 0, NONE
             if attempt == 0:  # the basis of the state before; where T is to be found, the candidates are those of any T
                 potentials(table, gas, w)
@@ -84,8 +89,17 @@ def one_state(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
             if ready:
                 start_phases(w)
         settled = ready and settle(b, gas, table, w)
+        begun = False
+        if not continued:
+            w.count[HISTORY] = 0
         if joint and settled and all_usable(table, w):
             return SOLVED
+        if continued:
+            continued = False
+            if settled and not joint:
+                return SOLVED
+            w.count[REUSES], w.count[HISTORY] = -1, 0
+            continue
         if not joint and not settled and room and attempt < len(STARTS):
             attempt += 1
             continue
@@ -96,6 +110,7 @@ def one_state(A: Any, gas: Any, b: Any, table: Table, w: Work) -> int:
             return status
         joint = not joint and w.value[WIDTH] < 0.0
         w.value[WIDTH] = abs(w.value[WIDTH])
+        begun = joint  # the joint iteration goes on from the state at hand
         if not joint:
             attempt, w.count[MODE], w.value[T] = 0, TEMPERATURE, np.sqrt(w.value[LOW] * w.value[HIGH])
     return UNSETTLED

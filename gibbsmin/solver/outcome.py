@@ -6,7 +6,7 @@ from typing import Any, NamedTuple
 
 import numpy as np
 
-from gibbsmin.compiled import inlined
+from gibbsmin.compiled import inlined, summing
 from gibbsmin.solver.basis import NOISE
 from gibbsmin.solver.certificate import element_residual, optimality
 from gibbsmin.solver.gas import present_amount
@@ -37,7 +37,6 @@ from gibbsmin.solver.layout import (
     G,
     K,
     T,
-    U,
     Work,
     Y,
 )
@@ -134,6 +133,24 @@ def close_balances(b: Any, w: Work, n: Any) -> None:
             n[j] = max(n[j] + total, 0.0)
 
 
+@summing
+def gas_amount(gas: Any, n: Any) -> float:
+    """Amount of gas."""
+    total = 0.0
+    for j in range(n.size):
+        total += n[j] if gas[j] else 0.0
+    return total
+
+
+@summing
+def weighted(n: Any, values: Any) -> float:
+    """Sum of ``values`` (S,) weighted with the amounts ``n`` (S,)."""
+    total = 0.0
+    for j in range(n.size):
+        total += n[j] * values[j]
+    return total
+
+
 @inlined
 def finish(
     A: Any, gas: Any, b: Any, first: float, second: float, table: Table, w: Work, state: int, out: Outcome
@@ -143,25 +160,20 @@ def finish(
     H/R = T sum n_j h_j; S/R = sum n_j (s_j - ln x_j - ln P/P°) over the gas, sum n_c s_c beside it.
     """
     n, temperature = out.n[state], w.value[T]
-    amount = 0.0
-    for j in range(n.size):
-        amount += n[j] if gas[j] else 0.0
+    amount = gas_amount(gas, n)
     pressure = amount * temperature / first if w.count[VOLUME] == 1 else first
     out.temperature[state], out.pressure[state] = temperature, pressure
-    free = w.count[MODE] != TEMPERATURE
     if w.count[VOLUME] == 1:  # there the iteration has U and Cv
-        standard_state(temperature, table, w.std[HEAT], w.std[DISORDER])
-        standard_heat_capacity(temperature, table, w.std[CAPACITY])
+        standard_state(temperature, table, w.pieces, w.std[HEAT], w.std[DISORDER])
+        standard_heat_capacity(temperature, table, w.pieces, w.std[CAPACITY])
     lnP = np.log(pressure) if pressure > 0.0 else NOTHING
-    enthalpy = entropy = capacity = 0.0
     for j in range(n.size):
         usable = table.low[j] <= temperature <= table.top[j] and w.chosen[j]
         own = w.std[HEAT, j] - w.std[DISORDER, j] + w.std[OFFSET, j]
         w.std[GIBBS, j] = own + (lnP if gas[j] else 0.0) if usable else np.inf
-        if n[j] > 0.0:
-            enthalpy += n[j] * w.std[HEAT, j] * temperature
-            entropy += n[j] * (w.std[DISORDER, j] - (lnP + np.log(n[j] / amount) if gas[j] else 0.0))
-            capacity += n[j] * w.std[CAPACITY, j] if free else 0.0
+    out.gap[state], out.affinity[state], mixing = optimality(A, gas, b, w.std[GIBBS], n, out.lam[state], w)
+    enthalpy, entropy = temperature * weighted(n, w.std[HEAT]), weighted(n, w.std[DISORDER]) - mixing - amount * lnP
+    capacity = weighted(n, w.std[CAPACITY]) if w.count[MODE] != TEMPERATURE else 0.0
     if w.count[MIXED] == 1:  # H and S jump at this T: they follow from what is held and from G = b.lam
         energy = 0.0
         for i in range(b.size):
@@ -181,7 +193,6 @@ def finish(
     elif w.count[MODE] == ENTROPY:
         out.held[state] = abs(entropy - second) / capacity
     out.residual[state] = element_residual(A, b, n)
-    out.gap[state], out.affinity[state] = optimality(A, gas, b, w.std[GIBBS], n, out.lam[state], w.of[U])
     proved = out.residual[state] <= RESIDUAL_LIMIT and out.gap[state] <= GAP_LIMIT
     if not (proved and out.affinity[state] <= AFFINITY_LIMIT and out.held[state] <= HELD_LIMIT):
         out.status[state] = IN_GAP if w.count[MIXED] == 1 else UNPROVED

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from typing import Any
+from typing import Any, Final
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -22,6 +22,9 @@ from gibbsmin.units import Measurable, quantity
 
 COLDEST, HOTTEST = 50.0, 20000.0
 """Temperatures beyond which the data say nothing at all, [K]."""
+
+NOTHING: Final = 1e-200
+"""Amount of an element, relative to that of the most abundant, that is none: less than one atom in any plant."""
 
 APPROACH_ROUNDS, APPROACH_CLOSE = 40, 1e-11
 """How often approach temperatures are counted anew from a temperature that comes out, and when that is enough [-]."""
@@ -149,6 +152,7 @@ def equilibria(
     one, two = (np.array(np.broadcast_to(value, (count,)), float, order="C") for value in (one, two))
     b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float, order="C")
     _constrain(b, system, constrained or {})
+    b[np.abs(b) < NOTHING * np.abs(b).max(axis=1, keepdims=True, initial=0.0)] = 0.0
     one = one * STANDARD_PRESSURE / R if pair.volume else one / STANDARD_PRESSURE
     if pair.second != "temperature":
         two = two / R

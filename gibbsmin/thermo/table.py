@@ -47,24 +47,52 @@ def make_table(species: Sequence[Species]) -> Table:
     )
 
 
+class Pieces(NamedTuple):
+    """The piece of every species for one range of temperature, side by side, so that loops over species are vectors."""
+
+    coefficients: Any  # (9, S) times ``scale``, with ``shift`` in the last
+    reach: Any  # (2,) the range, K: above the first, up to the second
+
+
+def new_pieces(S: int) -> Pieces:
+    """Allocate the pieces of ``S`` species, for no range yet."""
+    return Pieces(np.zeros((COEFFICIENTS, S)), np.zeros(2))
+
+
 @inlined
-def standard_state(T: float, table: Table, h: Any, s: Any) -> None:
+def gather(T: float, table: Table, here: Pieces) -> None:
+    """Gather the pieces for ``T`` [K], unless they are there."""
+    if here.reach[0] < T <= here.reach[1]:
+        return
+    here.reach[0], here.reach[1] = -np.inf, np.inf
+    for j in range(table.scale.size):
+        piece = table.start[j]
+        while table.high[piece] < T:
+            piece += 1
+        for k in range(COEFFICIENTS):
+            here.coefficients[k, j] = table.scale[j] * table.coefficients[piece, k]
+        here.coefficients[COEFFICIENTS - 1, j] += table.scale[j] * table.shift[j]
+        here.reach[1] = min(here.reach[1], table.high[piece])
+        if piece > table.start[j]:
+            here.reach[0] = max(here.reach[0], table.high[piece - 1])
+
+
+@inlined
+def standard_state(T: float, table: Table, here: Pieces, h: Any, s: Any) -> None:
     """Fill ``h`` (S,) with H°/RT and ``s`` (S,) with S°/R of all species at ``T`` [K] and 1 bar."""
-    lnT = np.log(T)
+    gather(T, table, here)
+    lnT, c = np.log(T), here.coefficients
     for j in range(h.size):
-        piece = table.start[j]
-        while table.high[piece] < T:
-            piece += 1
-        a = table.coefficients[piece]
-        h[j] = table.scale[j] * _enthalpy_RT(a, T, lnT)
-        s[j] = table.scale[j] * (_entropy_R(a, T, lnT) + table.shift[j])
+        a = (c[0, j], c[1, j], c[2, j], c[3, j], c[4, j], c[5, j], c[6, j], c[7, j], c[8, j])
+        h[j] = _enthalpy_RT(a, T, lnT)
+        s[j] = _entropy_R(a, T, lnT)
 
 
 @inlined
-def standard_heat_capacity(T: float, table: Table, cp: Any) -> None:
+def standard_heat_capacity(T: float, table: Table, here: Pieces, cp: Any) -> None:
     """Fill ``cp`` (S,) with Cp°/R of all species at ``T`` [K]."""
+    gather(T, table, here)
+    c = here.coefficients
     for j in range(cp.size):
-        piece = table.start[j]
-        while table.high[piece] < T:
-            piece += 1
-        cp[j] = table.scale[j] * _heat_capacity_R(table.coefficients[piece], T)
+        a = (c[0, j], c[1, j], c[2, j], c[3, j], c[4, j], c[5, j], c[6, j], c[7, j], c[8, j])
+        cp[j] = _heat_capacity_R(a, T)
