@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import TYPE_CHECKING, Any, Final
 
 from gibbsmin.case.feed_ratios import feed_ratios
@@ -44,7 +45,6 @@ def describe(study: Study) -> dict[str, Any]:
     system, case = study.system, study.case
     gas = list(map(bool, system.gas))
     names = list(system.species)
-    sizes = {one.name: one.size for one in study.recipes}
     total: dict[str, float] = {}
     for feed in study.feeds.values():
         for element, n in feed.element_amounts.items():
@@ -62,10 +62,7 @@ def describe(study: Study) -> dict[str, Any]:
         },
         "phases": list(system.phases),
         "feeds": [feed.to_dict() for feed in study.feeds.values()],
-        "heating_values": {one.name: found for one in study.recipes if (found := _heating_values(one))},
-        "fuels": {one.name: describe_fuel(one.fuel) for one in study.recipes if one.fuel is not None},
-        "ratios": feed_ratios(study.recipes, feed_units(study.recipes, sizes)[0]),
-        "moisture": {one.name: water for one in study.recipes if (water := _moisture(one))},
+        **describe_recipes(study.recipes),
         "held": case.held.model_dump(exclude_none=True),
         "remark": study.conditions.account.remark,
         "sweep": [
@@ -80,6 +77,27 @@ def describe(study: Study) -> dict[str, Any]:
         ],
         "states": study.states,
         "units": shown_units(case, study.basis),
+    }
+
+
+def describe_recipes(recipes: Sequence[Recipe]) -> dict[str, Any]:
+    """Say what the trade wants to know of feeds: ``heating_values``, ``fuels``, ``ratios``, ``moisture``.
+
+    Parameters
+    ----------
+    recipes : sequence of Recipe
+
+    Returns
+    -------
+    dict
+        As `describe` has them.
+    """
+    sizes = {one.name: one.size for one in recipes}
+    return {
+        "heating_values": {one.name: found for one in recipes if (found := _heating_values(one))},
+        "fuels": {one.name: describe_fuel(one.fuel) for one in recipes if one.fuel is not None},
+        "ratios": feed_ratios(recipes, feed_units(recipes, sizes)[0]),
+        "moisture": {one.name: water for one in recipes if (water := _moisture(one))},
     }
 
 

@@ -44,15 +44,11 @@ PASSES = 50
 
 @dataclass(frozen=True)
 class Possible:
-    """What a stream may hold: ``species``, and elements (``atoms``) beside them."""
+    """What a stream may hold: ``species``, elements (``atoms``) beside them, names of species that stay ``inert``."""
 
     species: tuple[Species, ...] = ()
     atoms: tuple[str, ...] = ()
-
-    @property
-    def inert(self) -> list[str]:
-        """Names of the frozen species among them."""
-        return [record.name for record in self.species if record.name != record.substance]
+    inert: frozenset[str] = frozenset()
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -314,30 +310,32 @@ def _systems(
     case: TrainCase, recipes: Sequence[Recipe], rules: Mapping[str, Rules], own: Sequence[Species]
 ) -> tuple[dict[str, System], list[Species]]:
     """Choose what may form in every stage, from what its inlets may hold; and list all species of the train."""
-    holds = {one.name: Possible(tuple(one.species), tuple(one.atoms)) for one in recipes}
+    holds = {one.name: Possible(tuple(one.species), tuple(one.atoms), one.inert) for one in recipes}
     by_name = {stage.name: (k, stage) for k, stage in enumerate(case.stage)}
     order = ordered(nodes(case), case.feeds)
     systems: dict[str, System] = {}
+    done: dict[str, Possible] = {}
     for _ in range(PASSES):
-        before = dict(holds)
+        before = dict(done)
         for name in order:
             k, stage = by_name[name]
             inlets = [holds[stream] for stream in (*stage.inlets, *stage.recycled) if stream in holds]
             species = tuple(dict.fromkeys(record for one in inlets for record in one.species))
             atoms = tuple(dict.fromkeys(symbol for one in inlets for symbol in one.atoms))
-            out = Possible(species, atoms)
+            out = Possible(species, atoms, frozenset().union(*(one.inert for one in inlets)))
+            if out == done.get(name):
+                continue
+            done[name] = out
             if stage.held is not None and not stage.frozen:
                 try:
                     systems[name] = _system(_merged(case.species, stage.species), out, own, rules[name])
                 except RuleError as error:
                     raise RuleError(error.message, "stage", k, *error.key) from None
-                out = Possible(tuple(systems[name].records))
+                out = Possible(tuple(systems[name].records), inert=out.inert)
             elif atoms:
                 raise RuleError("a fuel by analysis can go only into a step that settles", "stage", k, "inlets")
             holds |= dict.fromkeys([name, *(f"{name}.{side}" for side in stage.take)], out)
-        if {key: set(one.species) for key, one in holds.items()} == {
-            key: set(one.species) for key, one in before.items()
-        }:
+        if done == before:
             break
     everything = dict.fromkeys(record for one in holds.values() for record in one.species)
     return systems, list(everything)
@@ -359,13 +357,19 @@ def _system(table: SpeciesTable, brought: Possible, own: Sequence[Species], rule
 
 
 def _merged(common: SpeciesTable, own: SpeciesTable) -> SpeciesTable:
-    """Put the rules of a stage on top of those of the case: lists add up, what the stage says itself counts."""
+    """Put the rules of a stage on top of those of the case: lists add up, what the stage says itself counts.
+
+    A stage that lists what settles or may form, or says of which elements, has its own choice instead of that of the
+    case.
+    """
     said = {key: getattr(own, key) for key in own.model_fields_set}
     for key in ("exclude", "inert"):
         said[key] = list(dict.fromkeys([*getattr(common, key), *getattr(own, key)]))
     if own.settling is not None or own.allow is not None:
         said |= {"exclude": own.exclude, "settling": own.settling, "allow": own.allow}
         return SpeciesTable().model_copy(update=said)
+    if "elements" in said:
+        said |= {"settling": None, "allow": None}
     return common.model_copy(update={**said, "files": []})
 
 

@@ -158,9 +158,9 @@ def _analysis(leaving: Settled) -> list[KeyFigure]:
     """Give what an analyser shows."""
     at = f"composition of equilibrium at {spread(leaving.temperature)}"
     return [
-        KeyFigure("oxygen_dry", "flue gas: O2 dry", leaving.dry("O2"), "1", "%", f"By volume, {at}."),
-        KeyFigure("carbon_dioxide_dry", "flue gas: CO2 dry", leaving.dry("CO2"), "1", "%", f"By volume, {at}."),
-        KeyFigure("water_wet", "flue gas: H2O wet", leaving.wet("H2O"), "1", "%", f"By volume, {at}."),
+        KeyFigure("oxygen_dry", "O2 dry", leaving.dry("O2"), "1", "%", f"By volume, {at}."),
+        KeyFigure("carbon_dioxide_dry", "CO2 dry", leaving.dry("CO2"), "1", "%", f"By volume, {at}."),
+        KeyFigure("water_wet", "H2O wet", leaving.wet("H2O"), "1", "%", f"By volume, {at}."),
     ]
 
 
@@ -230,14 +230,14 @@ def _mixed_oxidant(settled: Settled, frozen: Settled, fire: Firing, back: Floats
     oxygen = fire.free_oxygen + back * frozen.amount("O2")
     value = ratio(oxygen, fire.oxidant(dry=False) + returned)
     note = "Oxidants and returned flue gas together, as the burner has them."
-    return KeyFigure("oxidant_oxygen_mixed", "O2 in oxidant with recycle, wet", value, "1", "%", note)
+    return KeyFigure("oxidant_oxygen_mixed", "O2 at burner wet", value, "1", "%", note)
 
 
 def _unfrozen(settled: Settled) -> list[KeyFigure]:
     """Give what the fire itself holds of gases that slow down on the way to the stack."""
     note = f"Equilibrium at {spread(settled.temperature)}: what the fire tends to, not what the stack has."
     return [
-        KeyFigure(f"{name.lower()}_settled", f"{name} where it settles, wet", settled.wet(name), "1", "ppmv", note)
+        KeyFigure(f"{name.lower()}_settled", f"{name} settled, wet", settled.wet(name), "1", "ppmv", note)
         for name in ("NO", "CO")
         if name in settled.amounts
     ]
@@ -246,7 +246,7 @@ def _unfrozen(settled: Settled) -> list[KeyFigure]:
 def _volumes(fire: Firing, leaving: Settled) -> list[KeyFigure]:
     """Air and flue gas per fuel."""
     if fire.normal_volume is not None:
-        per, whole, unit, shown = "Nm3 of fuel", fire.normal_volume, "1", "Nm3/Nm3"
+        per, whole, unit, shown = "Nm3 of fuel", fire.normal_volume, "1", "m3/m3"
     else:
         per, whole, unit, shown = "kg of fuel", fire.mass, "m3/kg", "Nm3/kg"
     rows = (

@@ -104,14 +104,15 @@ def _efficiency(settled: Settled, burning: Sequence[FeedFacts]) -> list[KeyFigur
         known_heat = [each for each in fed if each is not None]
         if len(known_heat) == len(fed):
             value = ratio(gas, np.asarray(sum(known_heat, settled.zero)))
-            name, label = f"cold_gas_efficiency_{word}", f"cold-gas efficiency, {word[0].upper()}HV"
-            figures.append(KeyFigure(name, label, value, shown="%", note=f"By {word} heating values, {basis}"))
+            name, label = f"cold_gas_efficiency_{word}", f"CGE, {word[0].upper()}HV"
+            note = f"Cold-gas efficiency by {word} heating values, {basis}"
+            figures.append(KeyFigure(name, label, value, shown="%", note=note))
     note = "At 25 degC for each Nm3 (0 degC, 101325 Pa) of dry gas, sulfur species included."
     lower, higher = (ratio(heat, NORMAL_MOLAR_VOLUME * settled.dry_gas) for heat in (raw[1], raw[0]))
     return [
         *figures,
-        KeyFigure("raw_gas_lower", "LHV of raw gas, dry", lower, "J/m3", "MJ/Nm3", note),
-        KeyFigure("raw_gas_higher", "HHV of raw gas, dry", higher, "J/m3", "MJ/Nm3", note),
+        KeyFigure("raw_gas_lower", "LHV raw gas, dry", lower, "J/m3", "MJ/Nm3", note),
+        KeyFigure("raw_gas_higher", "HHV raw gas, dry", higher, "J/m3", "MJ/Nm3", note),
     ]
 
 

@@ -24,6 +24,9 @@ Floats = NDArray[np.float64]
 
 _PERCENT = {"H2S": "%", "SO2": "%", "COS": "ppmv", "CS2": "ppmv", "H2": "%", "CO": "%"}
 
+_BLOWN = 1e-3
+"""O2 or NH3 fed, over the sulfur fed, below which it is a trace of a step before and no feed, [mol/mol]."""
+
 _SHOWN_SHARE = 1e-4
 """Share of the vapour from which a molecule of sulfur is named."""
 
@@ -49,11 +52,12 @@ def _ratios(settled: Settled) -> list[KeyFigure]:
     sulfide = settled.amount("H2S") + settled.amount("COS") + 2.0 * settled.amount("CS2")
     dioxide = settled.amount("SO2")
     wanting = 0.5 * (sulfide - 2.0 * dioxide)
+    blown = _fed(settled, "O2")
     return [
         KeyFigure(
             "o2_to_h2s_fed",
             "O2/H2S fed",
-            np.where(settled.fed("O2") > 0.0, ratio(settled.fed("O2"), settled.fed("H2S")), np.nan),
+            np.where(blown > 0.0, ratio(blown, settled.fed("H2S")), np.nan),
             note="Moles; ½ burns a third of the H2S, less is wanted as H2S survives, more where CH4 or NH3 burns.",
         ),
         KeyFigure("h2s_to_so2", "H2S/SO2", ratio(settled.amount("H2S"), dioxide), note="Aim of a stage: 2."),
@@ -66,11 +70,17 @@ def _ratios(settled: Settled) -> list[KeyFigure]:
         KeyFigure(
             "air_demand",
             "air demand",
-            ratio(wanting, settled.fed("O2")),
+            ratio(wanting, blown),
             shown="%",
             note="Air that brings H2S + COS + 2 CS2 to twice SO2, over the air fed; below zero there is too much.",
         ),
     ]
+
+
+def _fed(settled: Settled, name: str) -> Floats:
+    """Amount of a gas fed, (states,), [mol or mol/s]; zero where it is a trace of the step before."""
+    amount = settled.fed(name)
+    return np.where(amount > _BLOWN * settled.fed_element("S"), amount, 0.0)
 
 
 def _conversion(settled: Settled) -> list[KeyFigure]:
@@ -96,7 +106,7 @@ def _conversion(settled: Settled) -> list[KeyFigure]:
         KeyFigure(
             "ammonia_left",
             "NH3 left of that fed",
-            ratio(settled.amount("NH3"), settled.fed("NH3")),
+            ratio(settled.amount("NH3"), _fed(settled, "NH3")),
             shown="%",
             note="At equilibrium; real furnaces need above about 1250 degC and time (common practice, no source).",
         ),
@@ -155,7 +165,7 @@ def _dropping_out(settled: Settled) -> list[KeyFigure]:
         KeyFigure(
             "sulfur_dew_margin",
             "above the sulfur dew point",
-            settled.temperature - dew,
+            np.where(condensed > 0.0, 0.0, settled.temperature - dew),
             "K",
             note="At least 5 to 10 K for a catalyst bed (common practice, no source).",
         ),

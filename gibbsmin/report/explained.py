@@ -31,9 +31,29 @@ def explained(told: Mapping[str, Any]) -> list[str]:
     list of str
         None longer than 80 columns.
     """
+    lines = [*heading(told["title"]), *feeds_explained(told), *_species(told["species"])]
+    lines += labelled("held", held_words(told["held"]))
+    if told["remark"]:
+        lines += labelled("feeds", told["remark"])
+    return lines + states_explained(told)
+
+
+def feeds_explained(told: Mapping[str, Any]) -> list[str]:
+    """Put the feeds in lines, each and all together.
+
+    Parameters
+    ----------
+    told : mapping
+        What a study returns by ``describe``.
+
+    Returns
+    -------
+    list of str
+        With a blank line at the end.
+    """
     mass = "kg/s" if told["basis"] == "mol/s" else "kg"
     units = told["units"]
-    lines = heading(told["title"])
+    lines = []
     for feed in told["feeds"]:
         lines += _feed(feed, told["basis"], mass, units)
         lines += fuel_sheet(told["fuels"][feed["name"]]) if feed["name"] in told["fuels"] else []
@@ -45,10 +65,12 @@ def explained(told: Mapping[str, Any]) -> list[str]:
     lines.append("")
     if ratios := _ratios("all feeds", told["ratios"].get("all feeds", {})):
         lines += [*ratios, ""]
-    lines += _species(told["species"])
-    lines += labelled("held", held_words(told["held"]))
-    if told["remark"]:
-        lines += labelled("feeds", told["remark"])
+    return lines
+
+
+def states_explained(told: Mapping[str, Any]) -> list[str]:
+    """Say what is varied, and how many states there are to solve; ``told`` as for `feeds_explained`."""
+    lines = []
     for axis in told["sweep"]:
         span = f"{plain(axis['first'])} to {plain(axis['last'])} {axis['unit']}".removesuffix(" 1")
         lines += labelled("varied", f"{axis['vary']}, {axis['points']} values from {span}")

@@ -5,9 +5,15 @@ from __future__ import annotations
 from collections.abc import Sequence
 from pathlib import Path
 
+import numpy as np
+
 from gibbsmin.practice.cautions import CLOSING, Caution, gather
+from gibbsmin.practice.key_figure import KeyFigure
 from gibbsmin.report.key_figure_table import state_key_figures, sweep_key_figures
 from gibbsmin.report.table import heading
+from gibbsmin.report.train_steps import conversion_table, step_table, train_certificate
+from gibbsmin.report.train_streams import stream_tables
+from gibbsmin.report.train_sweep import base_state, conversion_figures, state_words, train_sweep
 from gibbsmin.report.words import labelled
 from gibbsmin.results.judge_train import train_peaks
 from gibbsmin.results.train_result import TrainResult
@@ -30,13 +36,37 @@ def train_summary(result: TrainResult, judged: Sequence[Sequence[Caution]], fold
         None longer than 80 columns, but for the name of the folder.
     """
     lines = heading(result.title)
-    for name, stage in result.stages.items():
-        sets = {f"{name}: {group}": figures for group, figures in stage.key_figures.items()}
-        lines += sweep_key_figures(sets) if len(result) > 1 else state_key_figures(sets, 0)
-    found = gather(judged, train_peaks(result))
+    if len(result) > 1:
+        lines += [*train_sweep(result), *sweep_key_figures({**conversion_figures(result), **_key_figures(result)})]
+        base = base_state(result)
+        if result.certified[base]:
+            lines += ["", *labelled("streams of", state_words(result, base)), *_state(result, base)]
+    elif result.certified[0]:
+        lines += [*_state(result, 0), *state_key_figures(_key_figures(result), 0)]
+    else:
+        lines += labelled("NOT CERTIFIED", result.solved.reasons[0])
+        if any(np.isfinite(result.sheet.streams[name].mass[0]) for name in result.solved.steps):
+            lines += stream_tables(result, 0)
     lines.append("")
+    if len(result) > 1 or result.certified[0]:
+        lines += labelled("certificate", train_certificate(result))
+    found = gather(judged, train_peaks(result))
     for caution in found:
         lines += labelled("caution", caution.text)
     if found:
         lines += labelled("note", CLOSING)
     return [*lines, f"{'written':<15}{folder}/"]
+
+
+def _state(result: TrainResult, index: int) -> list[str]:
+    """Streams, steps and conversions of one state."""
+    return [*stream_tables(result, index), *step_table(result, index), *conversion_table(result, index)]
+
+
+def _key_figures(result: TrainResult) -> dict[str, Sequence[KeyFigure]]:
+    """Key figures of all stages, by stage and set."""
+    return {
+        f"{name}: {group}": figures
+        for name, stage in result.stages.items()
+        for group, figures in stage.key_figures.items()
+    }

@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 
 SCHEMA: Final = 1
 _INDENTED: Final = 200  # states up to which result.json is indented
-FILES: Final = ("result.json", "table.csv", "streams.csv", "result.nc")
+FILES: Final = ("result.json", "table.csv", "streams.csv", "steps.csv", "result.nc")
 """What a result folder may hold; a folder with anything else is not replaced."""
 
 

@@ -226,7 +226,7 @@ class Result:
         return {
             "inputs": {name: float(values[i]) for name, values in self.inputs.items()},
             **{name: plain(arrays[name][i]) for name in _TOTALS},
-            "held": {name: float(values[i]) for name, values in self.held.items()},
+            "held": {name: plain(values[i]) for name, values in self.held.items()},
             "feed_enthalpy": _at(self.account.feed_enthalpy, i),
             "feed_internal_energy": _at(self.account.feed_internal_energy, i),
             "heat": self.heat(i),

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import TYPE_CHECKING, Any
 
@@ -15,7 +15,11 @@ from gibbsmin.results.account import Account
 from gibbsmin.results.key_figures import SETS, settled
 from gibbsmin.results.plain import plain
 from gibbsmin.results.result import FeedAmounts, Result
+from gibbsmin.results.stream_sheet import Entry, StreamSheet, stream_sheet
+from gibbsmin.results.train_conversion import Conversion, conversions
 from gibbsmin.results.train_spreadsheet import train_spreadsheets
+from gibbsmin.solver.status import UNSETTLED
+from gibbsmin.states.batch import Batch
 from gibbsmin.studies.labelled import Axis
 from gibbsmin.studies.train.account import WHOLE, StepAccount, accounts
 from gibbsmin.studies.train.stream import Stream
@@ -90,9 +94,30 @@ class TrainResult:
         return np.array([not reason for reason in self.solved.reasons])
 
     @cached_property
+    def sheet(self) -> StreamSheet:
+        """The streams as people read them, as far as they are vouched for."""
+        return stream_sheet(self.solved)
+
+    @property
+    def recycled(self) -> list[str]:
+        """Names of the streams that come back from a later step."""
+        return [name for stage in self.case.get("stage", []) for name in stage.get("recycled", [])]
+
+    @cached_property
+    def conversions(self) -> dict[str, Conversion]:
+        """How much of what is fed reacts, by substance."""
+        return conversions(self.solved, self.recycled)
+
+    @cached_property
     def accounts(self) -> dict[str, StepAccount]:
-        """Balances of each step and of the whole train."""
-        return accounts(self.solved, self.surroundings_temperature)
+        """Balances of each step and of the whole train; nan where not all of it is known."""
+        found = accounts(self.solved, self.surroundings_temperature)
+        good = {name: np.isfinite(self.sheet.streams[name].mass) for name in self.solved.steps}
+        good[WHOLE] = self.certified
+        return {
+            name: StepAccount(**{key: np.where(good[name], values, np.nan) for key, values in vars(one).items()})
+            for name, one in found.items()
+        }
 
     @cached_property
     def stages(self) -> dict[str, Result]:
@@ -103,8 +128,7 @@ class TrainResult:
 
     def _stage(self, name: str, step: StepResult) -> Result:
         """Make a result of a stage that settles, whose feeds are its inlets."""
-        batch, inlet = step.changed.batch, step.inlet
-        assert batch is not None, "it settles"
+        batch, inlet = self._vouched(step.changed.batch), step.inlet
         entropy = np.sum([one.entropy for one in step.inlets.values()], axis=0)
         facts = {stream: self._facts(stream, one) for stream, one in step.inlets.items()}
         is_flow = self.basis == "mol/s"
@@ -130,13 +154,26 @@ class TrainResult:
                 shaft=shaft,
                 surroundings_temperature=self.surroundings_temperature,
             ),
-            key_figures={group: SETS[group](here) for group in self.key_sets.get(name, ())},
+            key_figures={
+                group: [replace(one, value=np.where(batch.certified, one.value, np.nan)) for one in SETS[group](here)]
+                for group in self.key_sets.get(name, ())
+            },
         )
+
+    def _vouched(self, batch: Batch | None) -> Batch:
+        """Return settled states, without those in which recycles are not steady: their inlets are none of the train."""
+        assert batch is not None, "it settles"
+        if self.solved.steady is None:
+            return batch
+        status = np.where(self.certified | ~batch.certified, batch.outcome.status, UNSETTLED)
+        return replace(batch, outcome=batch.outcome._replace(status=status))
 
     def _facts(self, name: str, stream: Stream) -> FeedFacts:
         """Put down what the trade's numbers need of an inlet."""
         substances = stream.substances
-        amounts = {record.substance: stream.amounts[:, k] for k, record in enumerate(substances.records)}
+        amounts: dict[str, Floats] = {}
+        for k, record in enumerate(substances.records):
+            amounts[record.substance] = amounts.get(record.substance, 0.0) + stream.amounts[:, k]
         symbols = dict.fromkeys((*substances.elements, *stream.atoms))
         heat = self.heating_values.get(name)
         feeds = list(self.solved.feeds)
@@ -159,7 +196,8 @@ class TrainResult:
         -------
         dict
             Safe for JSON. Each state has ``streams``, ``stages`` (as the states of a case of one mixture) and
-            ``steps`` (heat, work, what is lost), and ``train`` (the whole, with the residual of the recycles).
+            ``steps`` (heat, work, what is lost), and ``train`` (the whole, with the conversions and the residual of
+            the recycles). A stream holds each substance with its frozen part.
         """
         stages = {name: result.to_dict()["states"] for name, result in self.stages.items()}
         legend = {name: result.legend() for name, result in self.stages.items() if result.key_figures}
@@ -176,15 +214,17 @@ class TrainResult:
         }
 
     def _state(self, i: int, stages: Mapping[str, Sequence[Mapping[str, Any]]]) -> dict[str, Any]:
-        loop = self.solved.steady
+        loop, sheet = self.solved.steady, self.sheet
         return {
             "inputs": {name: float(values[i]) for name, values in self.inputs.items()},
-            "streams": {name: _stream(stream, i) for name, stream in self.streams.items()},
+            "streams": {name: _stream(sheet, one, i) for name, one in sheet.streams.items()},
             "stages": {name: states[i] for name, states in stages.items()},
             "steps": {name: _account(one, i) for name, one in self.accounts.items() if name != WHOLE},
             "train": {
                 **_account(self.accounts[WHOLE], i),
                 "recycle_residual": 0.0 if loop is None else plain(loop.residual[i]),
+                "recycle_rounds": 0 if loop is None else loop.rounds,
+                "conversion": {name: _conversion(one, i) for name, one in self.conversions.items()},
             },
             "certificate": {"ok": bool(self.certified[i]), "reason": self.solved.reasons[i]},
         }
@@ -206,13 +246,13 @@ class TrainResult:
         names = tuple(axis.name for axis in self.axes)
         shape = tuple(len(axis.values) for axis in self.axes)
         unit, per_K = ("W", "W/K") if self.basis == "mol/s" else ("J", "J/K")
-        streams, steps = self.streams, self.accounts
+        sheet, steps = self.sheet, self.accounts
 
         def spread(values: Any) -> Any:
             array = np.asarray(values)  # (things, states, ...)
             return np.moveaxis(array, 0, 1).reshape((*shape, array.shape[0], *array.shape[2:]))
 
-        every = list(streams.values())
+        every = list(sheet.streams.values())
         variables: dict[str, Any] = {
             "amount": (
                 (*names, "stream", "species"), spread([one.amounts for one in every]),
@@ -235,27 +275,41 @@ class TrainResult:
         reasons = np.array(self.solved.reasons, dtype=str).reshape(shape)
         variables["reason"] = (names, reasons, {"long_name": "why it does not"})
         coordinates: dict[str, Any] = {axis.name: (axis.name, axis.values, {"units": axis.unit}) for axis in self.axes}
-        substances = every[0].substances
-        coordinates |= {"stream": list(streams), "step": list(steps), "species": list(substances.index)}
+        coordinates |= {"stream": list(sheet.streams), "step": list(steps), "species": list(sheet.names)}
         return xarray.Dataset(
             variables, coordinates, {"basis": self.basis, "title": self.title, "case_sha256": self.case_sha256}
         )
 
 
-def _stream(stream: Stream, i: int) -> dict[str, Any]:
+def _stream(sheet: StreamSheet, stream: Entry, i: int) -> dict[str, Any]:
     """One stream in one state, for JSON."""
-    amounts = stream.amounts[i]
-    names = [record.name for record in stream.substances.records]
+
+    def by_name(values: Floats) -> dict[str, float | None]:
+        return {name: plain(x) for name, x in zip(sheet.names, values[i], strict=True) if x > 0.0}
+
     return {
+        "from": stream.source or None,
+        "to": stream.target or None,
         "temperature": plain(stream.temperature[i]),
         "pressure": plain(stream.pressure[i]),
         "enthalpy": plain(stream.enthalpy[i]),
         "entropy": plain(stream.entropy[i]),
         "mass": plain(stream.mass[i]),
-        "gas": plain(stream.gas[i]),
-        "amounts": {name: plain(n) for name, n in zip(names, amounts, strict=True) if n != 0.0},
+        "amount": plain(stream.total[i]),
+        "gas": plain(stream.gas_total[i]),
+        "amounts": by_name(stream.amounts),
+        "mole_fractions_wet": by_name(stream.wet),
+        "mole_fractions_dry": by_name(stream.dry),
         **({"atoms": {symbol: plain(n[i]) for symbol, n in stream.atoms.items()}} if stream.atoms else {}),
     }
+
+
+def _conversion(conversion: Conversion, i: int) -> dict[str, Any]:
+    """Conversion of a substance in one state, for JSON."""
+    found: dict[str, Any] = {"overall": plain(conversion.overall[i])}
+    if conversion.per_pass is not None:
+        found["per_pass"] = plain(conversion.per_pass[i])
+    return {**found, "steps": {name: plain(values[i]) for name, values in conversion.steps.items()}}
 
 
 def _account(account: StepAccount, i: int) -> dict[str, float | None]:
@@ -266,10 +320,13 @@ def _account(account: StepAccount, i: int) -> dict[str, float | None]:
 def _amounts(name: str, stream: Stream) -> FeedAmounts:
     """Put down an inlet in its first state."""
     symbols = dict.fromkeys((*stream.substances.elements, *stream.atoms))
-    records = stream.substances.records
+    amounts: dict[str, float] = {}
+    for record, n in zip(stream.substances.records, stream.amounts[0], strict=True):
+        if n > 0.0:
+            amounts[record.substance] = amounts.get(record.substance, 0.0) + float(n)
     return FeedAmounts(
         name,
-        {record.name: float(n) for record, n in zip(records, stream.amounts[0], strict=True) if n > 0.0},
+        amounts,
         {symbol: float(n[0]) for symbol, n in stream.atoms.items()},
         {symbol: float(stream.element(symbol)[0]) for symbol in symbols},
         float(stream.mass[0]),

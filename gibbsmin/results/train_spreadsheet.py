@@ -1,26 +1,33 @@
-"""A train as spreadsheets: the steps of each state in one row, and a stream table with a column a stream."""
+"""A train as spreadsheets: a row a state, a row a step, and a stream table with a column a stream.
+
+CSV by RFC 4180, comma, point as decimal sign, full precision; cells are empty where nothing is known or vouched for.
+"""
 
 from __future__ import annotations
 
 import csv
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from io import StringIO
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
+from numpy.typing import NDArray
 
-from gibbsmin.practice.heating import NORMAL_MOLAR_VOLUME
-from gibbsmin.studies.train.stream import Stream
+from gibbsmin.results.stream_sheet import StreamSheet
+from gibbsmin.results.stream_table import listed, stream_table
+from gibbsmin.studies.train.account import WHOLE
 
 if TYPE_CHECKING:
     from gibbsmin.results.train_result import TrainResult
 
-TRACE: Final = 1e-9
-"""Species that never reach this share of a stream are left to result.json, [-]."""
+Floats = NDArray[np.float64]
+
+ENDS: Final = ("all feeds", "all products", "products less feeds")
+"""Columns of the stream table behind the streams; no stream can have a name with a blank in it."""
 
 
 def train_spreadsheets(result: TrainResult) -> dict[str, str]:
-    """Write the CSV texts (RFC 4180, comma, point as decimal sign).
+    """Write the CSV texts.
 
     Parameters
     ----------
@@ -29,92 +36,118 @@ def train_spreadsheets(result: TrainResult) -> dict[str, str]:
     Returns
     -------
     dict of str to str
-        ``table.csv``: a row a state, with what each step holds, takes and gives. ``streams.csv``: for each state the
-        stream table as the trade reads it, a column a stream, SI and trade units side by side.
+        ``table.csv``: a row a state, with what each step holds, takes and gives. ``steps.csv``: for each state a row a
+        step and one for all, with what they take and give and how that closes. ``streams.csv``: for each state the
+        stream table, SI and trade units side by side.
     """
-    return {"table.csv": _steps(result), "streams.csv": _streams(result)}
+    return {"table.csv": _states(result), "steps.csv": _steps(result), "streams.csv": _streams(result)}
+
+
+def _states(result: TrainResult) -> str:
+    """Write a row a state."""
+    unit, per_K = ("W", "W/K") if result.basis == "mol/s" else ("J", "J/K")
+    sheet, accounts, good = result.sheet, result.accounts, result.certified
+    columns: list[tuple[str, Sequence[object]]] = []
+
+    def add(head: str, kind: str, values: Floats) -> None:
+        columns.append((f"{head} [{_unit(kind)}]", _cells(values)))
+
+    for name, values in result.inputs.items():
+        add(name, result.input_units.get(name, ""), values)
+    for name, account in accounts.items():
+        at = "train" if name == WHOLE else name
+        if name != WHOLE:
+            add(f"{at}.temperature", "K", sheet.streams[name].temperature)
+            add(f"{at}.pressure", "Pa", sheet.streams[name].pressure)
+        for key, kind in (("heat", unit), ("work", unit), ("entropy_generated", per_K), ("lost_work", unit)):
+            add(f"{at}.{key}", kind, getattr(account, key))
+    for name, one in result.conversions.items():
+        add(f"train.{name}.conversion", "1", one.overall)
+        if one.per_pass is not None:
+            add(f"train.{name}.conversion_per_pass", "1", one.per_pass)
+        for step, values in one.steps.items():
+            add(f"{step}.{name}.conversion", "1", values)
+    for name, stage in result.stages.items():
+        for group, figures in stage.key_figures.items():
+            for figure in figures:
+                add(f"{name}.{group}.{figure.name}", figure.unit, np.where(good, figure.value, np.nan))
+    for name in sheet.products:
+        stream = sheet.streams[name]
+        for k in listed([stream]):
+            add(f"{name}.{sheet.names[k]}", result.basis, stream.amounts[:, k])
+    if result.solved.steady is not None:
+        add("train.recycle_residual", "1", result.solved.steady.residual)
+    columns.append(("certified [-]", [int(flag) for flag in good]))
+    columns.append(("reason", list(result.solved.reasons)))
+    return _text([head for head, _ in columns], zip(*(cells for _, cells in columns), strict=True))
 
 
 def _steps(result: TrainResult) -> str:
-    """Write a row a state."""
-    unit, per_K = ("W", "W/K") if result.basis == "mol/s" else ("J", "J/K")
-    heads = [f"{name} [{_unit(result.input_units.get(name, ''))}]" for name in result.inputs]
-    columns: list[Sequence[float]] = [values.tolist() for values in result.inputs.values()]
-    for name, step in result.solved.steps.items():
-        out = step.changed.outlet
-        account = result.accounts[name]
-        for label, kind, values in (
-            ("temperature", "K", out.temperature), ("pressure", "Pa", out.pressure), ("heat", unit, account.heat),
-            ("work", unit, account.work), ("entropy_generated", per_K, account.entropy_generated),
-            ("lost_work", unit, account.lost_work),
-        ):  # fmt: skip
-            heads.append(f"{name}.{label} [{kind}]")
-            columns.append(values.tolist())
-    for name, stage in result.stages.items():
-        for group, figures in stage.key_figures.items():
-            for one in figures:
-                heads.append(f"{name}.{group}.{one.name} [{_unit(one.unit)}]")
-                columns.append(one.value.tolist())
-    for name in result.solved.products:
-        stream = result.streams[name]
-        for k in _listed([stream]):
-            heads.append(f"{name}.{stream.substances.records[k].name} [{result.basis}]")
-            columns.append(stream.amounts[:, k].tolist())
-    rows = [[_cell(column[i]) for column in columns] for i in range(len(result))]
-    ends = [[int(good), reason] for good, reason in zip(result.certified, result.solved.reasons, strict=True)]
-    return _text([*heads, "certified [-]", "reason"], [row + end for row, end in zip(rows, ends, strict=True)])
+    """Write for each state a row a step, and one for the whole train."""
+    flow = result.basis == "mol/s"
+    unit, per_K, many, mass = ("W", "W/K", "kW", "kg/h") if flow else ("J", "J/K", "kJ", "kg")
+    hour = 3600.0 if flow else 1.0
+    sheet, accounts = result.sheet, result.accounts
+    heads = [
+        "state", *_input_heads(result), "step", "takes", "gives", "temperature [K]", "temperature [degC]",
+        "pressure, absolute [Pa]", "pressure, absolute [bar]", f"mass in [{mass}]", f"mass out [{mass}]",
+        f"enthalpy in [{unit}]", f"enthalpy out [{unit}]", f"heat [{unit}]", f"heat [{many}]", f"work [{unit}]",
+        f"work [{many}]", f"entropy generated [{per_K}]", f"lost work [{unit}]", "lost work [% of all]",
+        "energy left open [-]", "elements left open [-]",
+    ]  # fmt: skip
+    rows: list[list[object]] = []
+    for i in range(len(result)):
+        all_lost = accounts[WHOLE].lost_work[i]
+        for name, account in accounts.items():
+            inlets, outlets = (
+                (sheet.feeds, sheet.products)
+                if name == WHOLE
+                else (list(result.solved.steps[name].inlets), list(result.solved.steps[name].outlets))
+            )
+            (m_in, h_in), (m_out, h_out) = _brought(sheet, inlets, i), _brought(sheet, outlets, i)
+            T, P = np.nan, np.nan
+            if name != WHOLE:
+                T, P = sheet.streams[name].temperature[i], sheet.streams[name].pressure[i]
+            heat, work, lost = account.heat[i], account.work[i], account.lost_work[i]
+            numbers = [
+                T, T - 273.15, P, P / 1e5, hour * m_in, hour * m_out, h_in, h_out, heat, heat / 1e3, work, work / 1e3,
+                account.entropy_generated[i], lost, 100.0 * lost / all_lost if all_lost > 0.0 else np.nan,
+                account.energy_open[i], account.element_open[i],
+            ]  # fmt: skip
+            rows.append(
+                [i + 1, *_inputs(result, i), name, " + ".join(inlets), " + ".join(outlets), *_cells(np.array(numbers))]
+            )
+    return _text(heads, rows)
+
+
+def _brought(sheet: StreamSheet, streams: Sequence[str], i: int) -> tuple[float, float]:
+    """Mass and enthalpy of some streams together, [kg, J, or either per second]."""
+    every = [sheet.streams[name] for name in streams]
+    return sum(float(one.mass[i]) for one in every), sum(float(one.enthalpy[i]) for one in every)
 
 
 def _streams(result: TrainResult) -> str:
     """Write the stream table of every state, one under the other."""
-    streams = result.streams
-    records = next(iter(streams.values())).substances.records
-    listed = _listed(list(streams.values()))
-    flow = result.basis == "mol/s"
-    unit, per_K = ("W", "W/K") if flow else ("J", "J/K")
-    per_hour, mole, mass = (3.6, "kmol/h", "kg/h") if flow else (1.0, "mol", "kg")
-    gas, hour = ("Nm3/h", 3600.0) if flow else ("Nm3", 1.0)
+    table = stream_table(result.solved, result.sheet, result.basis)
+    streams = result.sheet.streams
+    heads = ["state", *_input_heads(result), "what", "unit", *streams, *ENDS]
     rows: list[list[object]] = []
     for i in range(len(result)):
-        inputs = [_cell(float(values[i])) for values in result.inputs.values()]
-
-        def add(what: str, kind: str, values: Sequence[float], inputs: list[object] = inputs, state: int = i) -> None:
-            rows.append([state + 1, *inputs, what, kind, *map(_cell, values)])
-
-        every = list(streams.values())
-        add("temperature", "K", [one.temperature[i] for one in every])
-        add("temperature", "degC", [one.temperature[i] - 273.15 for one in every])
-        add("pressure, absolute", "Pa", [one.pressure[i] for one in every])
-        add("pressure, absolute", "bar", [one.pressure[i] / 1e5 for one in every])
-        add("amount", result.basis, [one.total[i] for one in every])
-        add("amount", mole, [one.total[i] * per_hour for one in every])
-        add("mass", mass, [one.mass[i] * hour for one in every])
-        add("gas, 0 degC and 101325 Pa", gas, [one.gas[i] * NORMAL_MOLAR_VOLUME * hour for one in every])
-        add("enthalpy", unit, [one.enthalpy[i] for one in every])
-        add("entropy", per_K, [one.entropy[i] for one in every])
-        for k in listed:
-            add(records[k].name, result.basis, [one.amounts[i, k] for one in every])
-        for k in listed:
-            add(f"{records[k].name}, of all", "mole %, wet", [_share(one.amounts[i, k], one.total[i]) for one in every])
-        water = [k for k in listed if records[k].substance in ("H2O", "H2O(l)")]
-        for k in [k for k in listed if k not in water]:
-            dry = [_share(one.amounts[i, k], one.total[i] - one.amounts[i, water].sum()) for one in every]
-            add(f"{records[k].name}, of all but water", "mole %, dry", dry)
-    return _text(["state", *result.inputs, "what", "unit", *streams], rows)
+        front = [i + 1, *_inputs(result, i)]
+        rows.append([*front, "from", "", *(one.source for one in streams.values()), "", "", ""])
+        rows.append([*front, "to", "", *(one.target for one in streams.values()), "", "", ""])
+        for row in table:
+            ends = [np.nan, np.nan, np.nan] if row.ends is None else [*row.ends[:, i], row.ends[1, i] - row.ends[0, i]]
+            rows.append([*front, row.what, row.unit, *_cells(np.array([*row.values[:, i], *ends]))])
+    return _text(heads, rows)
 
 
-def _listed(streams: Sequence[Stream]) -> list[int]:
-    """Places of the species that reach a share worth a line in one of the streams."""
-    found = np.zeros(len(streams[0].substances), bool)
-    for one in streams:
-        total = np.nan_to_num(one.total)[:, None]
-        share = np.divide(np.nan_to_num(one.amounts), total, out=np.zeros_like(one.amounts), where=total > 0.0)
-        found |= share.max(axis=0, initial=0.0) >= TRACE
-    return [int(k) for k in np.flatnonzero(found)]
+def _input_heads(result: TrainResult) -> list[str]:
+    return [f"{name} [{_unit(result.input_units.get(name, ''))}]" for name in result.inputs]
 
 
-def _share(part: float, whole: float) -> float:
-    return 100.0 * part / whole if whole > 0.0 else float("nan")
+def _inputs(result: TrainResult, i: int) -> list[object]:
+    return _cells(np.array([values[i] for values in result.inputs.values()]))
 
 
 def _unit(typed: str) -> str:
@@ -122,12 +155,12 @@ def _unit(typed: str) -> str:
     return "-" if typed in ("", "1") else typed
 
 
-def _cell(value: float) -> object:
-    """Shortest text of a number that reads back the same; empty where there is none."""
-    return repr(float(value)) if np.isfinite(value) else ""
+def _cells(values: Floats) -> list[object]:
+    """Shortest text of each number that reads back the same; empty where there is none."""
+    return [repr(value) if np.isfinite(value) else "" for value in values.tolist()]
 
 
-def _text(heads: Sequence[str], rows: Sequence[Sequence[object]]) -> str:
+def _text(heads: Sequence[str], rows: Iterable[Sequence[object]]) -> str:
     """Write a table."""
     text = StringIO()
     writer = csv.writer(text, lineterminator="\r\n")

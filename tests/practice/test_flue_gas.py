@@ -235,7 +235,7 @@ def test_labels_say_equilibrium_and_never_emission() -> None:
     assert all("1000 degC" in figure.note for figure in found if "at equilibrium" in figure.label)
     assert max(map(len, labels)) <= 34
     assert {figure.shown for figure in found} <= {
-        "", "%", "ppmv", "mg/Nm3", "mg/MJ", "kg/GJ", "Nm3/GJ", "Nm3/Nm3", "Nm3/kg", "degC",
+        "", "%", "ppmv", "mg/Nm3", "mg/MJ", "kg/GJ", "Nm3/GJ", "m3/m3", "Nm3/kg", "degC",
     }  # fmt: skip
 
 

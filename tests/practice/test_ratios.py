@@ -83,3 +83,22 @@ def test_oxygen_for_solid_fuels_by_hand(percent, need):
     weight = {"C": 12.011, "H": 1.008, "O": 15.999, "S": 32.06}
     atoms = {element: 10.0 * share / weight[element] for element, share in percent.items()}
     assert oxygen_need(atoms) == pytest.approx(need, abs=2e-3)
+
+
+@pytest.mark.parametrize(
+    "oxide",
+    [
+        {"Zn": 1, "O": 1},
+        {"Pb": 1, "O": 1},
+        {"Cu": 1, "O": 1},
+        {"Ni": 1, "O": 1},
+        {"Ba": 1, "O": 1},
+        {"Sr": 1, "O": 1},
+        {"Cr": 2, "O": 3},
+        {"V": 2, "O": 5},
+        {"Fe": 2, "O": 3},
+        {"P": 2, "O": 5},
+    ],
+)
+def test_oxides_of_an_ash_analysis_need_nothing(oxide):
+    assert oxygen_need(oxide) == 0.0

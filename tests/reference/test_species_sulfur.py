@@ -91,7 +91,8 @@ def test_enthalpy_of_the_ring() -> None:
 def test_liquid_against_its_table(T: float) -> None:
     # NIST-JANAF S-004, counted from the liquid's own 1.854 kJ/mol; the table has West's heat capacities of 1959.
     row = next(row for row in janaf("S-004") if row.T == T)
-    assert load().get("S(l)").gibbs_energy(T) == pytest.approx(1854.0 + row.H - T * row.S, abs=11.0)
+    # H is kept from falling by 9 J/mol where the table begins, at 500 K: that moves G at 1000 K as much.
+    assert load().get("S(l)").gibbs_energy(T) == pytest.approx(1854.0 + row.H - T * row.S, abs=20.0)
 
 
 @pytest.mark.parametrize(

@@ -174,3 +174,15 @@ def test_a_solid_and_its_liquid_change_places_once() -> None:
         gain = liquid.gibbs_energy(T) - solid.gibbs_energy(T)
         assert gain[0] > 0.0 > gain[-1]
         assert np.count_nonzero(np.diff(np.sign(gain))) == 1
+
+
+def test_enthalpy_never_falls_where_one_piece_ends_and_the_next_begins() -> None:
+    """Heat that a substance gives off on warming would leave several temperatures for one enthalpy."""
+    falling = []
+    for name in load().names:
+        record = load().get(name)
+        for piece in record.pieces[:-1]:
+            below, above = (float(record.enthalpy(piece.high + step)) for step in (-1e-7, 1e-7))
+            if above < below - 1.0:
+                falling.append((name, piece.high, above - below))
+    assert falling == []

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from typing import Protocol
+from typing import Final, Protocol
 
 import numpy as np
 from numpy.typing import NDArray
@@ -144,6 +144,9 @@ class Settling:
         thermal, value = self.conditions.thermal, self.conditions.value[states]
         P = self.conditions.outlet_pressure(inlet, states)
         b = self.elements(inlet, states)
+        lost = np.asarray(np.isnan(b).any(axis=1))  # a step before was not certified: a feed of nothing is not, either
+        b, P = np.where(lost[:, None], 0.0, b), np.where(lost, 1e5, P)
+        H_in, S_in = np.where(lost, 0.0, inlet.enthalpy), np.where(lost, 0.0, inlet.entropy)
         zero = np.zeros(len(states))
         system = self.system
         approach = {name: values[states] for name, values in self.approach.items()}
@@ -151,10 +154,10 @@ class Settling:
             batch = solve_in_chunks(system, b, {"temperature": value, "pressure": P}, approach=approach)
             return Changed(outlet_of(batch, inlet.substances), batch.enthalpy - inlet.enthalpy, zero, batch)
         if thermal == "heat":
-            H = inlet.enthalpy + value
+            H = H_in + value
             batch = solve_in_chunks(system, b, {"enthalpy": H, "pressure": P}, approach=approach)
             return Changed(outlet_of(batch, inlet.substances), value, zero, batch)
-        batch = expansion(system, b, inlet.entropy, inlet.enthalpy, P, value)
+        batch = expansion(system, b, S_in, H_in, P, value)
         return Changed(outlet_of(batch, inlet.substances), zero, batch.enthalpy - inlet.enthalpy, batch)
 
     def elements(self, inlet: Stream, states: States) -> Floats:
@@ -172,6 +175,9 @@ class Settling:
         return b
 
 
+DUST: Final = 1e-24
+"""Share of a stream below which a species does not go on: less than a molecule in a mole."""
+
 CARBON = "carbon of fuels"
 """Stands for the carbon of fuels by analysis among what a constraint counts."""
 
@@ -184,9 +190,12 @@ def _brought(inlet: Stream, what: str) -> Floats:
 
 
 def outlet_of(batch: Batch, substances: Substances) -> Stream:
-    """Stream of settled states."""
+    """Stream of settled states, without what no step further on could tell from nothing."""
     amounts = np.zeros((len(batch), len(substances)))
-    amounts[:, [substances.index[name] for name in batch.system.species]] = batch.amounts
+    dust = DUST * batch.amounts.sum(axis=1, keepdims=True)
+    amounts[:, [substances.index[name] for name in batch.system.species]] = np.where(
+        batch.amounts < dust, 0.0, batch.amounts
+    )
     return Stream(substances, amounts, batch.temperature, batch.pressure, batch.enthalpy, batch.entropy)
 
 

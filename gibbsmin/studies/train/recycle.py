@@ -126,7 +126,7 @@ def _newton(x: Floats, state: int, scale: Callable[[Floats], Floats], evaluate: 
 def _residual(x: Floats, given: Floats, floor: Floats) -> Floats:
     """Largest relative change of an unknown that matters, (active,)."""
     size = np.maximum(np.abs(given), floor)
-    change = np.divide(np.abs(given - x), size, out=np.zeros_like(x), where=size > 0.0)
+    change = np.divide(np.abs(given - x), size, out=np.zeros_like(x), where=~(size <= 0.0))  # nan stays nan
     return np.asarray(change.max(axis=1, initial=0.0))
 
 

@@ -50,18 +50,21 @@ class Substances:
         return {s: np.array([record.elements.get(s, 0.0) for record in self.records]) for s in symbols}
 
     def enthalpy(self, amounts: Floats, temperature: Floats) -> Floats:
-        """Enthalpy of amounts (states, S) at temperatures (states,), [J]."""
-        here = np.flatnonzero(amounts.any(axis=0))
+        """Enthalpy of amounts (states, S) at temperatures (states,), [J]; nan where they are not known."""
+        n, T, blank = _known(amounts, temperature)
+        here = np.flatnonzero(n.any(axis=0))
         if not here.size:
-            return np.zeros(len(amounts))
-        return np.asarray(feed_enthalpy([self.records[k] for k in here], amounts[:, here], temperature))
+            return blank
+        return np.asarray(feed_enthalpy([self.records[k] for k in here], n[:, here], T)) + blank
 
     def entropy(self, amounts: Floats, temperature: Floats, pressure: Floats) -> Floats:
-        """Entropy of amounts (states, S), the gases mixed, at temperatures and pressures (states,), [J/K]."""
-        here = np.flatnonzero(amounts.any(axis=0))
+        """Entropy of amounts (states, S), the gases mixed, at temperatures and pressures (states,), [J/K]; or nan."""
+        n, T, blank = _known(amounts, temperature)
+        here = np.flatnonzero(n.any(axis=0))
         if not here.size:
-            return np.zeros(len(amounts))
-        return np.asarray(feed_entropy([self.records[k] for k in here], amounts[:, here], temperature, pressure))
+            return blank
+        P = np.where(np.isnan(blank), 1e5, pressure)
+        return np.asarray(feed_entropy([self.records[k] for k in here], n[:, here], T, P)) + blank
 
     def heat_capacity(self, amounts: Floats, temperature: Floats) -> Floats:
         """Heat capacity of amounts (states, S) at temperatures (states,), composition frozen, [J/K]."""
@@ -70,6 +73,13 @@ class Substances:
         for k in here:
             total += amounts[:, k] * np.asarray(self.records[k].heat_capacity(temperature))
         return total
+
+
+def _known(amounts: Floats, temperature: Floats) -> tuple[Floats, Floats, Floats]:
+    """Replace what is not known by nothing at 298.15 K; with an array (states,) that is nan there and else zero."""
+    known = np.isfinite(amounts).all(axis=1) & np.isfinite(temperature)
+    blank = np.where(known, 0.0, np.nan)
+    return np.where(known[:, None], amounts, 0.0), np.where(known, temperature, 298.15), blank
 
 
 @dataclass(frozen=True)

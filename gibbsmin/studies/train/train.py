@@ -22,6 +22,12 @@ States = NDArray[np.intp]
 BALANCE: Final = 1e-8
 """Element that the whole train may leave open, relative to what the feeds bring of it, before it is called unsteady."""
 
+GATHERS: Final = 1e-3
+"""Open part from which a loop that hardly changes is unsteady nevertheless: it holds so much that a round adds little."""
+
+LEADING: Final = 0.1
+"""Part of the largest from which something is named as what gathers in a loop."""
+
 
 @dataclass(frozen=True)
 class Step:
@@ -122,7 +128,7 @@ def solve_train(steps: Sequence[Step], feeds: Mapping[str, Stream]) -> Solved:
     taken = {stream for step in line for stream in step.node.inlets}
     products = tuple(name for result in done.values() for name in result.outlets if name not in taken)
     solved = Solved(feeds, done, loop, products, ())
-    return replace(solved, reasons=_reasons(solved))
+    return replace(solved, reasons=_reasons(solved, back))
 
 
 def _round(
@@ -151,8 +157,13 @@ def _steady(
 ) -> Steady:
     """Find the recycled streams."""
     size = len(substances)
-    empty = np.zeros((count, len(torn), size + 2))
-    empty[:, :, size], empty[:, :, size + 1] = 298.15, 1e5
+    first = np.zeros((count, len(torn), size + 2))
+    first[:, :, size], first[:, :, size + 1] = 298.15, 1e5
+    brought = np.sum([feed.amounts for feed in feeds.values()], axis=0)
+    alone = {name for step in line if step.node.inlets == step.node.recycled for name in step.node.recycled}
+    for k, name in enumerate(torn):
+        if name in alone:  # a step that takes nothing else cannot begin with nothing
+            first[:, k, :size] = brought
 
     def evaluate(x: Floats, states: States) -> Floats:
         some = {name: feed.part(states) for name, feed in feeds.items()}
@@ -166,7 +177,7 @@ def _steady(
         floor[:, :, :size] = MATTERS * parts[:, :, :size].sum(axis=2, keepdims=True)
         return floor.reshape(len(x), -1)
 
-    return steady(empty.reshape(count, -1), scale, evaluate)
+    return steady(first.reshape(count, -1), scale, evaluate)
 
 
 def _packed(streams: Sequence[Stream]) -> Floats:
@@ -185,8 +196,8 @@ def _unpacked(x: Floats, names: Sequence[str], substances: Substances) -> dict[s
     }
 
 
-def _reasons(solved: Solved) -> tuple[str, ...]:
-    """Say of each state why it does not hold."""
+def _reasons(solved: Solved, back: Mapping[str, Stream]) -> tuple[str, ...]:
+    """Say of each state why it does not hold; ``back`` are the recycled streams that its last round began with."""
     count = len(next(iter(solved.feeds.values())))
     reasons = [""] * count
     for name, step in solved.steps.items():
@@ -201,18 +212,45 @@ def _reasons(solved: Solved) -> tuple[str, ...]:
     for state in range(count):
         if reasons[state]:
             continue
-        piles = [symbol for symbol, open_part in left.items() if abs(open_part[state]) > BALANCE]
-        if piles:
+        open_parts = {symbol: float(part[state]) for symbol, part in left.items()}
+        steady_here, residual = bool(solved.steady.settled[state]), solved.steady.residual[state]
+        worst = max(map(abs, open_parts.values()), default=0.0)
+        if steady_here and BALANCE < worst < GATHERS:
             reasons[state] = (
-                f"The recycle has no steady state: {', '.join(piles)} comes in and does not leave at the same rate. "
-                "Take a part of the loop out (a purge), or remove what piles up."
+                f"The recycle is steady to {residual:.1e} a round, but so little leaves the loop that its elements "
+                f"close to {worst:.1e} only (limit {BALANCE:g}). Take out more of the loop."
             )
-        elif not solved.steady.settled[state]:
+        elif worst > BALANCE:
+            gathers = _leading(_growth(solved, back, state))
             reasons[state] = (
-                f"The recycle did not become steady: it still changes by {solved.steady.residual[state]:.1e} a round "
+                f"The recycle has no steady state: it gathers {gathers or 'something'}, and less of "
+                f"{_leading(open_parts) or 'what comes in'} leaves than comes in. "
+                "Take a part of the loop out (a purge), or remove what gathers."
+            )
+        elif not steady_here:
+            reasons[state] = (
+                f"The recycle did not become steady: it still changes by {residual:.1e} a round "
                 f"(limit {CLOSE:g}). Take out more of the loop, or say more of its streams."
             )
     return tuple(reasons)
+
+
+def _growth(solved: Solved, back: Mapping[str, Stream], state: int) -> dict[str, float]:
+    """Work out by how much each species of the recycled streams grew in the last round, [mol or mol/s]."""
+    streams = solved.streams
+    found: dict[str, float] = {}
+    for name, before in back.items():
+        grown = streams[name].amounts[state] - before.amounts[state]
+        for record, more in zip(before.substances.records, grown, strict=True):
+            found[record.substance] = found.get(record.substance, 0.0) + float(more)
+    return found
+
+
+def _leading(parts: Mapping[str, float]) -> str:
+    """Name what is at least ``LEADING`` of the largest, the largest first."""
+    largest = max(parts.values(), default=0.0)
+    names = [name for name, part in parts.items() if part > 0.0 and part >= LEADING * largest]
+    return ", ".join(sorted(names, key=lambda name: -parts[name]))
 
 
 def element_balance(solved: Solved) -> dict[str, Floats]:

@@ -138,8 +138,11 @@ def meet(drafts: Drafts, entry: Entry) -> None:
 
 
 def meet_below(draft: Draft, T: float) -> None:
-    """Move H of the pieces from ``T`` [K] on so that G is continuous there."""
+    """Move H of the pieces from ``T`` [K] on so that G is continuous there, and S as well where H would fall."""
     draft.shift(H=draft.gibbs_energy(T) - draft.gibbs_energy(T, upper=True), from_T=T)
+    fall = draft.enthalpy(T) - draft.enthalpy(T, upper=True)
+    if fall > 0.0:
+        draft.shift(H=fall, S=fall / T, from_T=T)
 
 
 def cut(drafts: Drafts, entry: Entry) -> None:
