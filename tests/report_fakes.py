@@ -26,6 +26,7 @@ class FakeSystem:
     gas: Any = field(default_factory=lambda: GAS.copy())
     elements: list[str] = field(default_factory=lambda: ["C", "H", "O", "N"])
     records: tuple[Any, ...] = ()
+    constraints: dict[str, dict[str, float]] = field(default_factory=dict)
 
 
 @dataclass

@@ -24,12 +24,16 @@ Floats = NDArray[np.float64]
 
 _GASES: Final = {
     "Cl": ("HCl", "Cl2", "Cl", "COCl2"),
-    "Br": ("HBr", "Br2", "Br"),
+    "Br": ("HBr", "Br2", "Br", "BrCl"),
     "F": ("HF", "F2"),
     "I": ("HI", "I2", "I"),
 }
 
-_FREE: Final = {"Cl": {"Cl2": 2, "Cl": 1}, "Br": {"Br2": 2, "Br": 1}, "I": {"I2": 2, "I": 1}}
+_FREE: Final = {
+    "Cl": {"Cl2": 2, "Cl": 1, "BrCl": 1, "ICl": 1},
+    "Br": {"Br2": 2, "Br": 1, "BrCl": 1, "IBr": 1},
+    "I": {"I2": 2, "I": 1, "ICl": 1, "IBr": 1},
+}
 """Free halogen: molecules and atoms, which become molecules on cooling; the atoms in each."""
 
 
@@ -71,7 +75,7 @@ def _free(settled: Settled, symbol: str) -> KeyFigure:
         f"{symbol} free, not in acid or salt",
         ratio(atoms, settled.element(symbol, settled.gases)),
         shown="%",
-        note=f"{symbol}2 and {symbol} atoms, over all {symbol} of the gas; a fast quench keeps that of the hot end.",
+        note=f"{symbol} in molecules of halogens and as atoms, over all {symbol} of the gas; a fast quench keeps it.",
     )
 
 

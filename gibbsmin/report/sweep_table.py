@@ -51,7 +51,7 @@ def sweep_table(result: Result) -> list[str]:
     """
     count = len(result.batch)
     shown = chosen([len(axis.values) for axis in result.axes])
-    inputs = [*input_columns(result, shown), *settled_columns(result, shown), *chosen_columns(result, shown)]
+    inputs = fitting([*input_columns(result, shown), *settled_columns(result, shown)], chosen_columns(result, shown))
     energy = energy_columns(result, shown)
     gas, condensed = gas_columns(result, shown), condensed_columns(result, shown)
     lines = [*heading(result.title), *_held(result, bool(gas), bool(energy)), ""]

@@ -50,7 +50,8 @@ def judge(result: Result) -> list[list[Caution]]:
     amounts, potentials, certified = batch.amounts, batch.element_potentials, batch.certified
     gas_total = amounts[:, system.gas].sum(axis=1)  # (states,)
     graphite = _graphite(result)
-    solid = system.species.index(GRAPHITE) if GRAPHITE in system.species else None
+    held = any(GRAPHITE in parts for parts in system.constraints.values())  # what is left of the fuel, not soot
+    solid = system.species.index(GRAPHITE) if GRAPHITE in system.species and not held else None
     activity = None
     if graphite is not None:
         T = np.where(certified, batch.temperature, STANDARD_TEMPERATURE)  # any will do where there is no answer

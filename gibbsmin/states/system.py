@@ -195,8 +195,14 @@ class System:
 
     @cached_property
     def table(self) -> Table:
-        """Standard-state functions as arrays, in the order of the species."""
-        return make_table(self.records)
+        """Standard-state functions as arrays, in the order of the species; what is inert is there at any T."""
+        table = make_table(self.records)
+        if self.inert and len(self.inert) < len(self.species):
+            free = np.array([name not in self.inert for name in self.species])
+            low, top = table.low[free].min(), table.top[free].max()
+            table.low[~free] = np.minimum(table.low[~free], low)
+            table.top[~free] = np.maximum(table.top[~free], top)
+        return table
 
     @cached_property
     def phase_models(self) -> tuple[Phase, ...]:

@@ -70,7 +70,7 @@ def test_a_wrong_train_is_refused_before_anything_is_solved(here: Path) -> None:
         code, out, err = ask(command, "case.toml")
         assert (code, out) == (2, "")
         assert "there is no stream 'bad'" in err
-        assert "line 15" in err
+        assert "line 16" in err
     assert not Path("results").exists()
 
 

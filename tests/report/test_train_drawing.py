@@ -18,7 +18,7 @@ from gibbsmin.report.train_explained import brief, train_explained
 def stage(
     name: str, inlets: list[str], recycled: list[str] | None = None, sides: list[str] | None = None
 ) -> dict[str, Any]:
-    return {"name": name, "inlets": inlets, "recycled": recycled or [], "sides": dict.fromkeys(sides or [], {})}
+    return {"name": name, "inlets": inlets, "recycled": recycled or [], "sides": {key: {} for key in sides or []}}
 
 
 def told(stages: list[dict[str, Any]], feeds: list[str]) -> dict[str, Any]:
@@ -150,7 +150,7 @@ def test_check_tells_feeds_steps_and_states_on_80_columns(tmp_path: Path, text: 
     for feed in study.case.feeds:
         assert f"feed {feed}:" in flat
     assert "nothing was solved yet" in flat
-    assert flat.index("all feeds, by element") < flat.index("takes ")
+    assert flat.index("all feeds, by element") < flat.index(f"{study.order[0]}: takes ")
 
 
 def test_check_names_what_takes_part_and_what_leaves(tmp_path: Path) -> None:

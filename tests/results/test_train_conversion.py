@@ -48,9 +48,8 @@ def conversion(path: Path, text: str) -> dict[str, Any]:
 
 @pytest.mark.parametrize(("X", "purge"), [(0.3, 0.05), (0.6, 0.1), (0.9, 0.5)])
 def test_converter_with_recycle_and_purge(tmp_path: Path, X: float, purge: float) -> None:
-    """By hand: of n into the converter (1 - X) n leave it, of which p is purged, so that the overall conversion is
-    X/(X + p - X p); that of a pass is X, because the recycle joins all of the fresh feed before the converter.
-    """
+    # Of n into the converter (1 - X) n leave it, of which the part p is purged, so that X n of X n + p (1 - X) n fed
+    # react. That of a pass is X, because the recycle joins all of the fresh feed before the converter.
     found = conversion(tmp_path, LOOP.format(left=100.0 * (1.0 - X), purge=100.0 * purge))["CO"]
     assert found["overall"] == pytest.approx(X / (X + purge - X * purge), rel=1e-8)
     assert found["per_pass"] == pytest.approx(X, rel=1e-8)

@@ -137,8 +137,8 @@ def test_tables_agree_with_the_document(folder: Callable[[str], Folder]) -> None
         assert float(row["train.heat [W]"]) == state["train"]["heat"]
         assert float(row["train.N2.conversion_per_pass [-]"]) == state["train"]["conversion"]["N2"]["per_pass"]
         assert float(row["converter.temperature [K]"]) == state["streams"]["converter"]["temperature"]
-        name = "converter.ammonia.nitrogen_conversion [-]"
-        assert float(row[name]) == state["stages"]["converter"]["key_figures"]["ammonia"]["nitrogen_conversion"]
+        name = "converter.ammonia.h2_to_n2 [-]"
+        assert float(row[name]) == state["stages"]["converter"]["key_figures"]["ammonia"]["h2_to_n2"]
         purge = state["streams"]["condenser.purge"]
         assert float(found.row("Ar", "mol/s", i + 1)["condenser.purge"]) == purge["amounts"]["Ar"]
         assert float(row["condenser.purge.Ar [mol/s]"]) == purge["amounts"]["Ar"]

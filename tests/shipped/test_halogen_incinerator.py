@@ -87,12 +87,12 @@ def test_halogens(run: Run) -> None:
     for spray, T, state in each(run):
         gas, found = settled(spray, T), dict(state["key_figures"]["halogens"])
         total = sum(n for name, n in gas.items() if name != "H2O")
-        names = {"hcl": "HCl", "cl2": "Cl2", "cl_atom": "Cl", "hbr": "HBr", "br2": "Br2", "br_atom": "Br"}
+        names = {"hcl": "HCl", "cl2": "Cl2", "cl_atom": "Cl", "hbr": "HBr", "br2": "Br2", "br_atom": "Br", "brcl": "BrCl"}
         for key, name in names.items():
             # bromides: HBr -35.7 today (ATcT), -36.4 kJ/mol in 1993
             rel = 0.12 if "Br" in name else 0.03
             assert found.pop(f"{key}_dry") == pytest.approx(gas[name] / total, rel=rel), (name, T)
-        chlorine = 2.0 * gas["Cl2"] + gas["Cl"]
+        chlorine = 2.0 * gas["Cl2"] + gas["Cl"] + gas["BrCl"]
         assert found.pop("free_cl") == pytest.approx(chlorine / ATOMS["Cl"], rel=0.05, abs=1e-3)
         assert found.pop("cl2_to_hcl") == pytest.approx(gas["Cl2"] / gas["HCl"], rel=0.05)
         hydrogen = fed(spray)[1]["H"]

@@ -132,3 +132,13 @@ def test_what_is_wrong_is_named(call: object, error: type[Exception], words: lis
 def test_a_species_of_the_data_is_found_by_any_of_its_names() -> None:
     for alias in load().get("CH4").aliases:
         assert System.from_species([alias]).species == ["CH4"]
+
+
+def test_what_is_inert_is_there_at_any_temperature() -> None:
+    """Na2O(s) is no candidate at 1800 K, but what takes no part does not ask."""
+    system = System.from_elements("C H O N", inert=["Na2O(s)"])
+    top = next(record for record in system.records if record.name == "Na2O(s)").usable[1]
+    feed = {"CH4": 1.0, "O2": 2.5, "N2": 8.0, "Na2O(s)": 0.1}
+    state = equilibrium(system, feed, temperature=top + 300.0, pressure=1e5)
+    assert state.amounts["Na2O(s)"] == pytest.approx(0.1)
+    assert any("Na2O(s)" in warning for warning in state.warnings)

@@ -13,7 +13,6 @@ from typing import Final
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.errors import InputError
 from gibbsmin.states.solve import COLDEST, HOTTEST
 from gibbsmin.studies.train.stream import Stream, Substances
 
@@ -94,12 +93,8 @@ def temperature_of_enthalpy(substances: Substances, amounts: Floats, enthalpy: F
     Returns
     -------
     array (states,)
-        [K]; nan where ``first`` is, and ``first`` where there is nothing.
-
-    Raises
-    ------
-    InputError
-        The temperature would lie beyond all data.
+        [K]; nan where ``first`` is, and ``first`` where there is nothing. Where it would lie `beyond` all data, their
+        end: on the way to a steady state a stream may be too hot, which it is not there.
     """
     return _solved(
         lambda T: substances.enthalpy(amounts, T) - enthalpy, lambda T: substances.heat_capacity(amounts, T),
@@ -118,6 +113,11 @@ def temperature_of_entropy(
     )  # fmt: skip
 
 
+def beyond(temperature: Floats) -> NDArray[np.bool_]:
+    """Tell where a temperature lies at the end of all data."""
+    return np.asarray((temperature < 1.001 * COLDEST) | (temperature > 0.999 * HOTTEST))
+
+
 def _solved(
     excess: Callable[[Floats], Floats], slope: Callable[[Floats], Floats], amounts: Floats, first: Floats
 ) -> Floats:
@@ -129,11 +129,10 @@ def _solved(
         over, rise = excess(T), slope(T)
         high, low = np.where(over > 0.0, T, high), np.where(over > 0.0, low, T)
         step = T - over / np.where(rise > 0.0, rise, 1.0)
-        new = np.where((step > low) & (step < high), step, 0.5 * (low + high))
+        found = np.abs(step - T) <= CLOSE * T  # T itself is an end of the bracket
+        new = np.where(found | ((step > low) & (step < high)), step, 0.5 * (low + high))
         moved = np.abs(new - T) > CLOSE * T
         T = np.where(sought, new, T)
         if not np.any(sought & moved & (high - low > CLOSE * T)):
             break
-    if np.any(sought & ((T < 1.001 * COLDEST) | (T > 0.999 * HOTTEST))):
-        raise InputError("an unreacted stream would get a temperature beyond all data")
     return np.where(sought, T, first)

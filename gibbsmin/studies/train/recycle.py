@@ -23,6 +23,9 @@ Round = Callable[[Floats, States], Floats]
 CLOSE: Final = 1e-10
 """Change of an unknown in a round, relative to itself, at which it is steady."""
 
+FINE: Final = 1e-12
+"""The same, at which no further round is spent; else there is one more, because a loop adds up what it leaves open."""
+
 MATTERS: Final = 1e-12
 """Share of a stream below which a species is rounding."""
 
@@ -78,8 +81,9 @@ def steady(first: Floats, scale: Callable[[Floats], Floats], evaluate: Round) ->
         given = evaluate(x[active], active)
         miss = np.zeros_like(x)
         miss[active] = given - x[active]
+        near = residual[active] <= CLOSE
         residual[active] = _residual(x[active], given, scale(given))
-        settled[active] = residual[active] <= CLOSE
+        settled[active] = residual[active] <= np.where(near, CLOSE, FINE)
         lost = active[np.isnan(residual[active])]
         settled[lost] = True  # a step was not certified: nothing more to find here
         if settled.all():

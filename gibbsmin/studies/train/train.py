@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 
 from gibbsmin.studies.train.change import Change, Changed
 from gibbsmin.studies.train.graph import Node, ordered
-from gibbsmin.studies.train.mixing import mixed
+from gibbsmin.studies.train.mixing import beyond, mixed
 from gibbsmin.studies.train.recycle import CLOSE, MATTERS, Steady, steady
 from gibbsmin.studies.train.stream import Stream, Substances
 from gibbsmin.studies.train.takes import Take
@@ -24,6 +24,8 @@ BALANCE: Final = 1e-8
 
 GATHERS: Final = 1e-3
 """Open part from which a loop that hardly changes is unsteady nevertheless: it holds so much that a round adds little."""
+
+BEYOND: Final = "The stream would get a temperature beyond all data. Move less heat, or work less on it."
 
 LEADING: Final = 0.1
 """Part of the largest from which something is named as what gathers in a loop."""
@@ -164,6 +166,7 @@ def _steady(
     for k, name in enumerate(torn):
         if name in alone:  # a step that takes nothing else cannot begin with nothing
             first[:, k, :size] = brought
+            first[:, k, size + 1] = np.max([feed.pressure for feed in feeds.values()], axis=0)
 
     def evaluate(x: Floats, states: States) -> Floats:
         some = {name: feed.part(states) for name, feed in feeds.items()}
@@ -202,8 +205,11 @@ def _reasons(solved: Solved, back: Mapping[str, Stream]) -> tuple[str, ...]:
     reasons = [""] * count
     for name, step in solved.steps.items():
         if step.changed.batch is None:
-            continue
-        for state, reason in enumerate(step.changed.batch.reason):
+            here = beyond(step.changed.outlet.temperature) & (step.changed.outlet.total > 0.0)
+            found = [BEYOND if far else "" for far in here]
+        else:
+            found = list(step.changed.batch.reason)
+        for state, reason in enumerate(found):
             if reason and not reasons[state]:
                 reasons[state] = f"{name}: {reason}"
     if solved.steady is None:

@@ -100,6 +100,34 @@ def test_without_a_purge_it_works_if_everything_reacts_away() -> None:
     assert solved.streams["condenser.product"].named("NH3")[0] == pytest.approx(2.0, rel=1e-8)
 
 
+def test_a_loop_that_heats_up_without_end_is_told() -> None:
+    """Nine parts in ten go round a compressor that is not cooled: the work gathers."""
+    plant = Plant("Ar")
+    steps = [
+        plant.step("mixed", "feed", "valve.back"),
+        plant.step("compressor", "mixed", change=plant.unreacted("entropy", 0.8, 3e6)),
+        plant.step("valve", "compressor", change=plant.unreacted("heat", 0.0, 1e5), takes=[plant.take("back", share=0.9)]),
+    ]  # fmt: skip
+    (reason,) = solve_train(steps, {"feed": plant.stream({"Ar": 1.0})}).reasons
+    assert reason.startswith("compressor: ")
+    assert "beyond all data" in reason
+
+
+def test_a_loop_that_is_hot_on_the_way_only() -> None:
+    """The same with a cooler in it; and a step that takes nothing but what comes back."""
+    plant = Plant("Ar")
+    steps = [
+        plant.step("compressor", "", "mixed", change=plant.unreacted("entropy", 0.8, 3e6)),
+        plant.step("cooler", "compressor", change=plant.unreacted("temperature", 320.0)),
+        plant.step("valve", "cooler", change=plant.unreacted("heat", 0.0, 1e5), takes=[plant.take("back", share=0.9)]),
+        plant.step("mixed", "feed valve.back"),
+    ]
+    solved = solve_train(steps, {"feed": plant.stream({"Ar": 1.0}, 520.0)})
+    assert solved.reasons == ("",)
+    assert solved.streams["mixed"].total[0] == pytest.approx(10.0, rel=1e-8)
+    assert solved.streams["mixed"].temperature[0] == pytest.approx(340.0, rel=1e-8)
+
+
 def test_nothing_leaves_at_all() -> None:
     plant = Plant("N2 Ar")
     steps = [plant.step("mixed", "feed", "cooled"), plant.step("cooled", "mixed", change=plant.unreacted())]

@@ -9,7 +9,9 @@ from hypothesis import strategies as st
 from studies.train.plant import Plant
 
 from gibbsmin.errors import InputError
+from gibbsmin.studies.train.change import Conditions, Unreacted
 from gibbsmin.studies.train.mixing import mixed
+from gibbsmin.studies.train.train import solve_train
 
 HERE = np.array([0])
 R = 8.314462618
@@ -88,15 +90,16 @@ def test_an_empty_stream_does_not_set_the_pressure_or_the_temperature() -> None:
     assert together.temperature[0] == pytest.approx(700.0, rel=1e-10)
 
 
-def test_a_temperature_beyond_all_data_is_refused() -> None:
-    plant = Plant("Ar")
-    with pytest.raises(InputError, match="beyond all data"):
-        plant.unreacted("heat", -1e9)(plant.stream({"Ar": 1.0}), HERE)
+def test_a_temperature_beyond_all_data_is_told_of_that_state_alone() -> None:
+    plant = Plant("Ar", 2)
+    steps = [plant.step("cooler", "feed", change=plant.unreacted("heat", np.array([-1e9, 1e3])))]
+    solved = solve_train(steps, {"feed": plant.stream({"Ar": 1.0})})
+    assert solved.reasons[0].startswith("cooler: ")
+    assert "beyond all data" in solved.reasons[0]
+    assert solved.reasons[1] == ""
 
 
 def test_a_drop_that_takes_all_pressure_is_refused() -> None:
-    from gibbsmin.studies.train.change import Conditions, Unreacted
-
     plant = Plant("Ar")
     step = Unreacted(Conditions("heat", plant.every(0.0), drop=plant.every(2e5)))
     with pytest.raises(InputError, match="more than the pressure"):
