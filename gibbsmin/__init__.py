@@ -17,8 +17,8 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from gibbsmin import interop as interop
     from gibbsmin.case.read import read_case as read_case
-    from gibbsmin.practice.reactions import Reaction as Reaction
-    from gibbsmin.practice.reactions import reaction as reaction
+    from gibbsmin.practice.reactions.reactions import Reaction as Reaction
+    from gibbsmin.practice.reactions.reactions import reaction as reaction
     from gibbsmin.results.result import Result as Result
     from gibbsmin.states.batch import Batch as Batch
     from gibbsmin.states.solve import equilibria as equilibria
@@ -34,7 +34,7 @@ __version__ = "0.1.0"
 
 _HOMES = {
     "Batch": "gibbsmin.states.batch",
-    "Reaction": "gibbsmin.practice.reactions",
+    "Reaction": "gibbsmin.practice.reactions.reactions",
     "Result": "gibbsmin.results.result",
     "Species": "gibbsmin.thermo.record",
     "State": "gibbsmin.states.state",
@@ -42,7 +42,7 @@ _HOMES = {
     "equilibria": "gibbsmin.states.solve",
     "equilibrium": "gibbsmin.states.solve",
     "interop": "gibbsmin.interop",
-    "reaction": "gibbsmin.practice.reactions",
+    "reaction": "gibbsmin.practice.reactions.reactions",
     "read_case": "gibbsmin.case.read",
     "read_species": "gibbsmin.thermo.own",
     "species": "gibbsmin.thermo.database",

@@ -7,9 +7,9 @@ from typing import Annotated, Final, Literal
 from pydantic import Field, field_validator, model_validator
 
 from gibbsmin.case.fields import Density, HeatOfMass, RuleError, Share, Table
-from gibbsmin.practice.fuel_analysis import AIR_DRIED, AS_RECEIVED, ASH, DRY_ASH_FREE, Basis
-from gibbsmin.practice.fuel_correlations import CorrelationName
-from gibbsmin.practice.fuel_heat import HeldAt
+from gibbsmin.practice.feeds.fuel_analysis import AIR_DRIED, AS_RECEIVED, ASH, DRY_ASH_FREE, Basis
+from gibbsmin.practice.feeds.fuel_correlations import CorrelationName
+from gibbsmin.practice.feeds.fuel_heat import HeldAt
 
 Percent = Annotated[float, Field(ge=0.0, lt=100.0, allow_inf_nan=False)]
 PercentOfAll = Annotated[float, Field(ge=0.0, le=100.0, allow_inf_nan=False)]

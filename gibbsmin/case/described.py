@@ -12,8 +12,8 @@ from gibbsmin.case.shown import shown_units
 from gibbsmin.case.sizes import feed_units
 from gibbsmin.constants import ATMOSPHERE, STANDARD_TEMPERATURE
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.air import WATER_MOLAR_MASS, dew_point, humidity_ratio
-from gibbsmin.practice.heating import AT_15_CELSIUS, heating_value
+from gibbsmin.practice.feeds.air import WATER_MOLAR_MASS, dew_point, humidity_ratio
+from gibbsmin.practice.feeds.heating import AT_15_CELSIUS, heating_value
 
 if TYPE_CHECKING:
     from gibbsmin.case.study import Study

@@ -15,7 +15,7 @@ from numpy.typing import NDArray
 
 from gibbsmin.case.recipe import Recipe
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.ratios import supply_and_need
+from gibbsmin.practice.feeds.ratios import supply_and_need
 
 Floats = NDArray[np.float64]
 

@@ -15,8 +15,8 @@ from gibbsmin.case.recipe import Recipe
 from gibbsmin.case.sizes import feed_units
 from gibbsmin.constants import R
 from gibbsmin.practice.audit import feed_enthalpy, feed_entropy
-from gibbsmin.practice.mixing import mixed_entropy
-from gibbsmin.practice.settled import FeedFacts
+from gibbsmin.practice.feeds.mixing import mixed_entropy
+from gibbsmin.practice.figures.settled import FeedFacts
 from gibbsmin.thermo.record import Species
 
 Floats = NDArray[np.float64]

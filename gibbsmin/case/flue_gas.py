@@ -13,8 +13,8 @@ from gibbsmin.case.feed_states import FeedStates, ReturnedGas
 from gibbsmin.case.fields import RuleError, in_si
 from gibbsmin.case.schema import Case
 from gibbsmin.errors import InputError
-from gibbsmin.practice.emissions import reference_oxygen
-from gibbsmin.practice.flue_gas import FlueGasSetting
+from gibbsmin.practice.flue_gas.emissions import reference_oxygen
+from gibbsmin.practice.flue_gas.flue_gas import FlueGasSetting
 from gibbsmin.states.batch import Batch
 from gibbsmin.studies.flue_gas import air_for_oxygen, returned_gas
 from gibbsmin.studies.sweep import solve_in_chunks

@@ -6,12 +6,12 @@ from typing import Any, get_args
 
 from gibbsmin.case.fuel_recipe import Fuel
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.air import DRY_AIR
-from gibbsmin.practice.ash import ALKALIS, SPECIES_OF_OXIDE
-from gibbsmin.practice.fuel_analysis import AIR_DRIED, AS_RECEIVED, ASH, Basis, dry_basis
-from gibbsmin.practice.fuel_heat import to_lower
-from gibbsmin.practice.heating import NORMAL_MOLAR_VOLUME
-from gibbsmin.practice.ratios import oxygen_need
+from gibbsmin.practice.feeds.air import DRY_AIR
+from gibbsmin.practice.feeds.ash import ALKALIS, SPECIES_OF_OXIDE
+from gibbsmin.practice.feeds.fuel_analysis import AIR_DRIED, AS_RECEIVED, ASH, Basis, dry_basis
+from gibbsmin.practice.feeds.fuel_heat import to_lower
+from gibbsmin.practice.feeds.heating import NORMAL_MOLAR_VOLUME
+from gibbsmin.practice.feeds.ratios import oxygen_need
 from gibbsmin.thermo.database import load
 
 MOISTURE = "moisture"

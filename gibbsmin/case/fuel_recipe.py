@@ -12,12 +12,12 @@ from gibbsmin.case.analysis_schema import AnalysisTable
 from gibbsmin.case.fields import RuleError, in_si
 from gibbsmin.elements import ATOMIC_WEIGHT
 from gibbsmin.errors import FeedError, SpeciesError
-from gibbsmin.practice.ash import Ash, read_oxides
-from gibbsmin.practice.fuel_analysis import AS_RECEIVED, ASH, DRY_ASH_FREE, Analysis, Sample, wet_basis
-from gibbsmin.practice.fuel_correlations import DEFAULT
-from gibbsmin.practice.fuel_heat import FuelHeat, Stated, heat_of_fuel
-from gibbsmin.practice.fuel_matter import counted_as_element, entropy_estimate, formation_enthalpy, sensible_heat
-from gibbsmin.practice.heating import heating_value
+from gibbsmin.practice.feeds.ash import Ash, read_oxides
+from gibbsmin.practice.feeds.fuel_analysis import AS_RECEIVED, ASH, DRY_ASH_FREE, Analysis, Sample, wet_basis
+from gibbsmin.practice.feeds.fuel_correlations import DEFAULT
+from gibbsmin.practice.feeds.fuel_heat import FuelHeat, Stated, heat_of_fuel
+from gibbsmin.practice.feeds.fuel_matter import counted_as_element, entropy_estimate, formation_enthalpy, sensible_heat
+from gibbsmin.practice.feeds.heating import heating_value
 from gibbsmin.thermo.record import Species
 
 WATER: Final = "H2O(l)"

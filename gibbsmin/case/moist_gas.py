@@ -10,7 +10,7 @@ from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import RuleError, in_si
 from gibbsmin.constants import ATMOSPHERE
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.air import (
+from gibbsmin.practice.feeds.air import (
     dry_air,
     enriched,
     pressure_at_altitude,

@@ -18,8 +18,8 @@ from gibbsmin.case.fuel_recipe import Fuel, read_fuel
 from gibbsmin.case.moist_gas import air_as_fed, moistened, pressure_of
 from gibbsmin.elements import ATOMIC_WEIGHT
 from gibbsmin.errors import FeedError, SpeciesError
-from gibbsmin.practice.heating import heating_value
-from gibbsmin.practice.ratios import counted_carbon, oxygen_need
+from gibbsmin.practice.feeds.heating import heating_value
+from gibbsmin.practice.feeds.ratios import counted_carbon, oxygen_need
 from gibbsmin.thermo.record import Species
 from gibbsmin.units import one_of
 

@@ -17,7 +17,7 @@ from gibbsmin.case.fields import RuleError, in_si
 from gibbsmin.case.inputs import Ruled
 from gibbsmin.case.recipe import Find, Recipe
 from gibbsmin.errors import InputError, SpeciesError
-from gibbsmin.practice.reactions import reaction
+from gibbsmin.practice.reactions.reactions import reaction
 from gibbsmin.thermo.record import Species
 
 Floats = NDArray[np.float64]

@@ -12,7 +12,7 @@ from gibbsmin.case.feed_schema import OXYGEN_RATIOS, PLAIN_RATIOS, RATIOS, Feed
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import ANY_SIZE, Recipe, feed_size
 from gibbsmin.errors import FeedError, nearest
-from gibbsmin.practice.ratios import supply_and_need
+from gibbsmin.practice.feeds.ratios import supply_and_need
 from gibbsmin.units import one_of
 
 Floats = NDArray[np.float64]

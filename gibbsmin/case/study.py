@@ -24,8 +24,8 @@ from gibbsmin.case.sizes import feed_units
 from gibbsmin.case.source import dotted
 from gibbsmin.case.study_frame import StudyFrame, read_axes, read_feed_basis, read_feeds
 from gibbsmin.errors import CaseError, nearest
-from gibbsmin.practice.flue_gas import flue_gas
-from gibbsmin.practice.key_figure import KeyFigure
+from gibbsmin.practice.figures.key_figure import KeyFigure
+from gibbsmin.practice.flue_gas.flue_gas import flue_gas
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge import judge
 from gibbsmin.results.key_figures import SETS, settled

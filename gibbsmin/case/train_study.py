@@ -23,7 +23,7 @@ from gibbsmin.case.study_frame import StudyFrame, read_axes, read_feed_basis, re
 from gibbsmin.case.train_described import describe_train
 from gibbsmin.case.train_schema import TrainCase, nodes
 from gibbsmin.errors import CaseError, InputError
-from gibbsmin.practice.ratios import counted_carbon
+from gibbsmin.practice.feeds.ratios import counted_carbon
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge_train import judge_train
 from gibbsmin.results.train_result import TrainResult

@@ -10,7 +10,7 @@ from gibbsmin.cli.messages import guarded, show
 from gibbsmin.errors import InputError
 
 if TYPE_CHECKING:
-    from gibbsmin.practice.reactions import Reaction
+    from gibbsmin.practice.reactions.reactions import Reaction
 
 _POINTS: Final = 11
 _MOST: Final = 1000
@@ -37,7 +37,7 @@ def reaction(
 
     The equation must balance; where it does not, the coefficients that do are proposed. Bare numbers are kelvin.
     """
-    from gibbsmin.practice.reactions import reaction as read
+    from gibbsmin.practice.reactions.reactions import reaction as read
 
     found = read(" ".join(equation))
     temperatures = _temperatures(found, at or [], start, to, points)

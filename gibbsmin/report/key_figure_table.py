@@ -8,8 +8,8 @@ from typing import Final
 
 import numpy as np
 
-from gibbsmin.practice.heating import NORMAL_MOLAR_VOLUME
-from gibbsmin.practice.key_figure import KeyFigure
+from gibbsmin.practice.feeds.heating import NORMAL_MOLAR_VOLUME
+from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.report.numbers import MISSING, figures, prefixed
 from gibbsmin.report.words import WIDTH, shortened
 

@@ -8,7 +8,7 @@ from math import isfinite, log
 from typing import Any, Final
 
 from gibbsmin import __version__
-from gibbsmin.practice.reactions import Reaction
+from gibbsmin.practice.reactions.reactions import Reaction
 from gibbsmin.report.columns import Column, drawn
 from gibbsmin.report.numbers import figures, plain
 from gibbsmin.report.table import heading

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from gibbsmin.practice.cautions import CLOSING, Caution, gather
+from gibbsmin.practice.safety.cautions import CLOSING, Caution, gather
 from gibbsmin.report.key_figure_table import state_key_figures, sweep_key_figures
 from gibbsmin.report.rule_words import rule_lines
 from gibbsmin.report.sweep_table import sweep_table

@@ -8,7 +8,7 @@ from typing import Final
 
 import numpy as np
 
-from gibbsmin.practice.heating import NORMAL_MOLAR_VOLUME
+from gibbsmin.practice.feeds.heating import NORMAL_MOLAR_VOLUME
 from gibbsmin.report.numbers import MISSING, figures, level, share
 from gibbsmin.report.table import THRESHOLD
 from gibbsmin.report.train_heads import blocks, head_rows, row

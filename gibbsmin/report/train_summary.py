@@ -7,8 +7,8 @@ from pathlib import Path
 
 import numpy as np
 
-from gibbsmin.practice.cautions import CLOSING, Caution, gather
-from gibbsmin.practice.key_figure import KeyFigure
+from gibbsmin.practice.figures.key_figure import KeyFigure
+from gibbsmin.practice.safety.cautions import CLOSING, Caution, gather
 from gibbsmin.report.key_figure_table import state_key_figures, sweep_key_figures
 from gibbsmin.report.table import heading
 from gibbsmin.report.train_steps import conversion_table, step_table, train_certificate

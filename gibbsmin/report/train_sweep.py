@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.errors import UnitError
-from gibbsmin.practice.key_figure import KeyFigure
+from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.report.columns import Column, drawn, fitting, short, unit_word
 from gibbsmin.report.numbers import MISSING, figures, plain
 from gibbsmin.report.sweep_table import chosen

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from typing import TYPE_CHECKING, Any
 
 from gibbsmin import __version__
-from gibbsmin.practice.cautions import Caution, sentences
+from gibbsmin.practice.safety.cautions import Caution, sentences
 from gibbsmin.results.provenance import provenance
 
 if TYPE_CHECKING:

@@ -11,7 +11,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any, Final, Protocol
 
 from gibbsmin.errors import InputError
-from gibbsmin.practice.cautions import Caution
+from gibbsmin.practice.safety.cautions import Caution
 from gibbsmin.results.document import document
 
 if TYPE_CHECKING:

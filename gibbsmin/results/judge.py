@@ -8,12 +8,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.constants import STANDARD_TEMPERATURE
-from gibbsmin.practice.carbon import carbon_activity
-from gibbsmin.practice.caution import Caution, Fed
-from gibbsmin.practice.cautions import Circumstances, cautions
-from gibbsmin.practice.hazards import CHLORINE, FLAMMABLE, REACTIVE, SELF_IGNITING, TOXIC
-from gibbsmin.practice.key_figure import KeyFigure
-from gibbsmin.practice.vessels import vessel
+from gibbsmin.practice.figures.carbon import carbon_activity
+from gibbsmin.practice.figures.key_figure import KeyFigure
+from gibbsmin.practice.safety.caution import Caution, Fed
+from gibbsmin.practice.safety.cautions import Circumstances, cautions
+from gibbsmin.practice.safety.hazards import CHLORINE, FLAMMABLE, REACTIVE, SELF_IGNITING, TOXIC
+from gibbsmin.practice.safety.vessels import vessel
 from gibbsmin.results.fractions import gas_fractions
 from gibbsmin.thermo.database import load
 from gibbsmin.thermo.record import FROZEN, Species

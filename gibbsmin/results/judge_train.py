@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import replace
 from typing import Final
 
-from gibbsmin.practice.cautions import Caution
+from gibbsmin.practice.safety.cautions import Caution
 from gibbsmin.results.judge import judge, peaks
 from gibbsmin.results.train_result import TrainResult
 

@@ -8,21 +8,21 @@ from typing import Final
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.practice.atmosphere import atmosphere
-from gibbsmin.practice.catalyst import catalyst
-from gibbsmin.practice.deposition import deposition
-from gibbsmin.practice.gas_quality import fuel_gas
-from gibbsmin.practice.gasification import gasification
-from gibbsmin.practice.halogens import halogens
-from gibbsmin.practice.key_figure import KeyFigure
-from gibbsmin.practice.kiln import kiln
-from gibbsmin.practice.reduction import reduction
-from gibbsmin.practice.reforming import reforming, shift, synthesis_gas
-from gibbsmin.practice.salts import salts
-from gibbsmin.practice.settled import FeedFacts, Settled
-from gibbsmin.practice.sulfur import sulfur
-from gibbsmin.practice.sulfuric_acid import sulfuric_acid
-from gibbsmin.practice.syntheses import ammonia, methanation, methanol
+from gibbsmin.practice.figures.atmosphere import atmosphere
+from gibbsmin.practice.figures.catalyst import catalyst
+from gibbsmin.practice.figures.deposition import deposition
+from gibbsmin.practice.figures.gas_quality import fuel_gas
+from gibbsmin.practice.figures.gasification import gasification
+from gibbsmin.practice.figures.halogens import halogens
+from gibbsmin.practice.figures.key_figure import KeyFigure
+from gibbsmin.practice.figures.kiln import kiln
+from gibbsmin.practice.figures.reduction import reduction
+from gibbsmin.practice.figures.reforming import reforming, shift, synthesis_gas
+from gibbsmin.practice.figures.salts import salts
+from gibbsmin.practice.figures.settled import FeedFacts, Settled
+from gibbsmin.practice.figures.sulfur import sulfur
+from gibbsmin.practice.figures.sulfuric_acid import sulfuric_acid
+from gibbsmin.practice.figures.syntheses import ammonia, methanation, methanol
 from gibbsmin.states.batch import Batch
 from gibbsmin.thermo.record import Species
 

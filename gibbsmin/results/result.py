@@ -11,7 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.practice.audit import Audit
-from gibbsmin.practice.key_figure import KeyFigure
+from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.results.account import Account
 from gibbsmin.results.left_out import left_out
 from gibbsmin.results.plain import plain

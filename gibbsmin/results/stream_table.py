@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.constants import R
-from gibbsmin.practice.heating import NORMAL_MOLAR_VOLUME
+from gibbsmin.practice.feeds.heating import NORMAL_MOLAR_VOLUME
 from gibbsmin.results.stream_sheet import Entry, StreamSheet
 from gibbsmin.studies.train.train import Solved
 

@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.practice.settled import FeedFacts
+from gibbsmin.practice.figures.settled import FeedFacts
 from gibbsmin.results.account import Account
 from gibbsmin.results.key_figures import SETS, settled
 from gibbsmin.results.plain import plain

@@ -16,7 +16,7 @@ from gibbsmin.case.read import read_case
 from gibbsmin.case.recipe import read_recipe
 from gibbsmin.case.sizes import feed_units
 from gibbsmin.errors import CaseError
-from gibbsmin.practice.air import dry_air
+from gibbsmin.practice.feeds.air import dry_air
 from gibbsmin.thermo.database import load
 
 AIR_O2 = dry_air()["O2"]

@@ -15,7 +15,7 @@ from gibbsmin.case.fields import RuleError
 from gibbsmin.case.recipe import read_recipe
 from gibbsmin.case.sizes import feed_units, read_basis
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.ratios import counted_carbon, oxygen_need
+from gibbsmin.practice.feeds.ratios import counted_carbon, oxygen_need
 from gibbsmin.thermo.database import load
 
 AIR_O2 = 0.209476  # mole fraction of O2, ISO 2533:1975

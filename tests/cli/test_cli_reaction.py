@@ -8,7 +8,7 @@ import pytest
 from typer.testing import CliRunner
 
 from gibbsmin.cli.main import app
-from gibbsmin.practice.reactions import reaction
+from gibbsmin.practice.reactions.reactions import reaction
 from gibbsmin.report.reaction_table import default_temperatures, reaction_table
 
 UNITS = {"K", "degC", "kJ/mol", "J/mol/K", "-"}

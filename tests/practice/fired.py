@@ -7,8 +7,8 @@ from dataclasses import replace
 import numpy as np
 from settled_from import by_hand
 
-from gibbsmin.practice.heating import heating_value
-from gibbsmin.practice.settled import FeedFacts, Settled
+from gibbsmin.practice.feeds.heating import heating_value
+from gibbsmin.practice.figures.settled import FeedFacts, Settled
 from gibbsmin.thermo.database import load
 
 AIR_OXYGEN = 0.2095

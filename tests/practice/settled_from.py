@@ -8,8 +8,8 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from gibbsmin.elements import parse_formula, split_name
-from gibbsmin.practice.key_figure import KeyFigure
-from gibbsmin.practice.settled import FeedFacts, Settled
+from gibbsmin.practice.figures.key_figure import KeyFigure
+from gibbsmin.practice.figures.settled import FeedFacts, Settled
 from gibbsmin.states.solve import equilibria
 from gibbsmin.states.system import System
 from gibbsmin.thermo.database import load

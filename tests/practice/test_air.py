@@ -12,7 +12,7 @@ from hypothesis import strategies as st
 
 import gibbsmin as gm
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.air import (
+from gibbsmin.practice.feeds.air import (
     DRY_AIR,
     dew_point,
     dry_air,

@@ -10,8 +10,16 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from practice.settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.approach import AMMONIA, METHANOL, REFORMING, SHIFT, approach, equilibrium_temperature, words
-from gibbsmin.practice.reactions import reaction
+from gibbsmin.practice.figures.approach import (
+    AMMONIA,
+    METHANOL,
+    REFORMING,
+    SHIFT,
+    approach,
+    equilibrium_temperature,
+    words,
+)
+from gibbsmin.practice.reactions.reactions import reaction
 from gibbsmin.states.solve import equilibria
 from gibbsmin.states.system import System
 

@@ -4,8 +4,8 @@ import pytest
 
 from gibbsmin.elements import ATOMIC_WEIGHT
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.ash import SPECIES_OF_OXIDE, read_oxides
-from gibbsmin.practice.ratios import oxygen_need
+from gibbsmin.practice.feeds.ash import SPECIES_OF_OXIDE, read_oxides
+from gibbsmin.practice.feeds.ratios import oxygen_need
 from gibbsmin.thermo.database import load
 
 # kg of oxide a kg of element, as tables of conversion factors of mineral analysis print them (common practice).

@@ -8,7 +8,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 from settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.atmosphere import atmosphere, carbon_in_austenite
+from gibbsmin.practice.figures.atmosphere import atmosphere, carbon_in_austenite
 from gibbsmin.states.system import System
 
 

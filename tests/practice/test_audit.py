@@ -10,7 +10,7 @@ from hypothesis import strategies as st
 from gibbsmin.constants import R
 from gibbsmin.errors import InputError
 from gibbsmin.practice.audit import Audit, audit, feed_enthalpy, feed_entropy, least_loss_temperature
-from gibbsmin.practice.heating import heating_value
+from gibbsmin.practice.feeds.heating import heating_value
 from gibbsmin.states.solve import equilibria, equilibrium
 from gibbsmin.states.system import System
 from gibbsmin.thermo.database import load

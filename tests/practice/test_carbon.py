@@ -11,9 +11,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 from practice.settled_from import Amounts, by_hand, figures, settle
 
-from gibbsmin.practice.carbon import CARBON_REACTIONS, carbon, carbon_by_reactions
-from gibbsmin.practice.reactions import reaction
-from gibbsmin.practice.settled import Settled
+from gibbsmin.practice.figures.carbon import CARBON_REACTIONS, carbon, carbon_by_reactions
+from gibbsmin.practice.figures.settled import Settled
+from gibbsmin.practice.reactions.reactions import reaction
 from gibbsmin.states.system import System
 
 SYSTEM = System.from_elements("C H O N")

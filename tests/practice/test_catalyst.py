@@ -8,7 +8,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 from settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.catalyst import catalyst, sulfur_coverage
+from gibbsmin.practice.figures.catalyst import catalyst, sulfur_coverage
 from gibbsmin.states.system import System
 
 

@@ -6,9 +6,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from gibbsmin.practice.caution import DATA, GRAVE, HARMFUL, MOST, PLANT, Caution, Fed, foremost
-from gibbsmin.practice.cautions import CLOSING, Circumstances, cautions, gather, sentences
-from gibbsmin.practice.gas_cautions import (
+from gibbsmin.practice.safety.caution import DATA, GRAVE, HARMFUL, MOST, PLANT, Caution, Fed, foremost
+from gibbsmin.practice.safety.cautions import CLOSING, Circumstances, cautions, gather, sentences
+from gibbsmin.practice.safety.gas_cautions import (
     asphyxiant,
     carbonyl,
     flammable,
@@ -19,8 +19,8 @@ from gibbsmin.practice.gas_cautions import (
     reactive,
     toxic,
 )
-from gibbsmin.practice.hazards import FLAMMABLE, TOXIC
-from gibbsmin.practice.plant_cautions import acid, carbon, cracking, diluted, dioxins, metal_dusting, steel
+from gibbsmin.practice.safety.hazards import FLAMMABLE, TOXIC
+from gibbsmin.practice.safety.plant_cautions import acid, carbon, cracking, diluted, dioxins, metal_dusting, steel
 
 AIR = {"N2": 0.78084, "O2": 0.209476, "Ar": 0.00934, "CO2": 0.000314}
 

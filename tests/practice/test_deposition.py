@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.deposition import deposition
+from gibbsmin.practice.figures.deposition import deposition
 from gibbsmin.states.system import System
 
 SILICON = System.from_elements("Si Cl H")

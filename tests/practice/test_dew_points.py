@@ -8,8 +8,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from gibbsmin.errors import InputError
-from gibbsmin.practice.dew_points import SULFURIC, dew_points, kiang, okkes, verhoff_banchero, zarenezhad
-from gibbsmin.practice.saturation import dew_temperature, saturation_pressure
+from gibbsmin.practice.feeds.saturation import dew_temperature, saturation_pressure
+from gibbsmin.practice.flue_gas.dew_points import SULFURIC, dew_points, kiang, okkes, verhoff_banchero, zarenezhad
 
 ATM = 101325.0
 water = st.floats(0.02, 0.40)

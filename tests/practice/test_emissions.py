@@ -8,7 +8,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from gibbsmin.errors import InputError
-from gibbsmin.practice.emissions import (
+from gibbsmin.practice.flue_gas.emissions import (
     REFERENCE_OXYGEN,
     at_reference_oxygen,
     mass_concentration,

@@ -8,8 +8,8 @@ import numpy as np
 import pytest
 from practice.settled_from import by_hand
 
-from gibbsmin.practice.fed import fed_amount, fuels, hydrocarbon_carbon, moisture
-from gibbsmin.practice.settled import FeedFacts, Settled
+from gibbsmin.practice.figures.fed import fed_amount, fuels, hydrocarbon_carbon, moisture
+from gibbsmin.practice.figures.settled import FeedFacts, Settled
 
 
 def of(**feeds: dict[str, float]) -> Settled:

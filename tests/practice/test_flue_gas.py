@@ -12,9 +12,9 @@ from hypothesis import strategies as st
 from settled_from import by_hand, figures
 
 from gibbsmin.errors import InputError
-from gibbsmin.practice.flue_gas import FlueGasSetting, flue_gas
-from gibbsmin.practice.pollutants import spread
-from gibbsmin.practice.settled import Settled
+from gibbsmin.practice.figures.settled import Settled
+from gibbsmin.practice.flue_gas.flue_gas import FlueGasSetting, flue_gas
+from gibbsmin.practice.flue_gas.pollutants import spread
 
 NORMAL = 22.414e-3
 """Ideal gas at 0 °C and 101325 Pa [m3/mol] (CODATA)."""

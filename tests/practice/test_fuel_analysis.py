@@ -5,7 +5,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.fuel_analysis import Analysis, Sample, dry_basis, wet_basis
+from gibbsmin.practice.feeds.fuel_analysis import Analysis, Sample, dry_basis, wet_basis
 
 COAL = {"C": 75.0, "H": 5.0, "O": 8.0, "N": 1.5, "S": 1.0, "ash": 9.5}  # mass percent, dry; made up
 BASES = ("as received", "air-dried", "dry", "dry ash-free")

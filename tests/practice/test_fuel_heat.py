@@ -8,9 +8,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.fuel_analysis import Analysis
-from gibbsmin.practice.fuel_correlations import CORRELATIONS
-from gibbsmin.practice.fuel_heat import Stated, heat_of_fuel, to_higher, to_lower
+from gibbsmin.practice.feeds.fuel_analysis import Analysis
+from gibbsmin.practice.feeds.fuel_correlations import CORRELATIONS
+from gibbsmin.practice.feeds.fuel_heat import Stated, heat_of_fuel, to_higher, to_lower
 
 # Mass percent, dry; made up, in the range of bituminous coal and of wood.
 COAL = Analysis({"C": 75.0, "H": 5.0, "O": 8.0, "N": 1.5, "S": 1.0, "ash": 9.5})

@@ -4,13 +4,13 @@ import pytest
 
 from gibbsmin.elements import parse_formula
 from gibbsmin.errors import FeedError
-from gibbsmin.practice.fuel_matter import (
+from gibbsmin.practice.feeds.fuel_matter import (
     counted_as_element,
     entropy_estimate,
     formation_enthalpy,
     sensible_heat,
 )
-from gibbsmin.practice.heating import heating_value
+from gibbsmin.practice.feeds.heating import heating_value
 from gibbsmin.thermo.database import load
 
 # Formula, enthalpies of combustion and of formation, kJ/mol (CRC Handbook of Chemistry and Physics, from memory).

@@ -14,7 +14,7 @@ from practice.settled_from import by_hand, figures
 
 from gibbsmin.constants import ATMOSPHERE, R
 from gibbsmin.errors import InputError
-from gibbsmin.practice.gas_quality import FACTORS, METERING, fuel_gas, gas_quality
+from gibbsmin.practice.figures.gas_quality import FACTORS, METERING, fuel_gas, gas_quality
 
 # Superior heating values, kJ/mol, at 0, 15, 20 and 25 °C, ISO 6976:2016 table 3 (from memory).
 HEATS = {

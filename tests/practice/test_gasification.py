@@ -10,9 +10,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from practice.settled_from import Amounts, by_hand, feed_facts, figures, settle
 
-from gibbsmin.practice.gasification import gasification
-from gibbsmin.practice.heating import heating_value
-from gibbsmin.practice.settled import FeedFacts, Settled
+from gibbsmin.practice.feeds.heating import heating_value
+from gibbsmin.practice.figures.gasification import gasification
+from gibbsmin.practice.figures.settled import FeedFacts, Settled
 from gibbsmin.states.system import System
 from gibbsmin.thermo.database import load
 

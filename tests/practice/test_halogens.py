@@ -8,8 +8,8 @@ import numpy as np
 import pytest
 from settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.halogens import halogens
-from gibbsmin.practice.reactions import reaction
+from gibbsmin.practice.figures.halogens import halogens
+from gibbsmin.practice.reactions.reactions import reaction
 from gibbsmin.states.system import System
 
 

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 
 from gibbsmin.errors import FeedError, InputError
-from gibbsmin.practice.heating import AT_15_CELSIUS, HeatingValue, heating_value
+from gibbsmin.practice.feeds.heating import AT_15_CELSIUS, HeatingValue, heating_value
 from gibbsmin.thermo.database import load
 from gibbsmin.thermo.making.sources import atct
 

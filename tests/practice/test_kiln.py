@@ -9,7 +9,7 @@ from hypothesis import strategies as st
 from settled_from import by_hand, figures, settle
 
 from gibbsmin.elements import molar_mass, parse_formula
-from gibbsmin.practice.kiln import calcination_temperature, kiln
+from gibbsmin.practice.figures.kiln import calcination_temperature, kiln
 from gibbsmin.states.system import System
 
 OXIDE = {"CaO(s)": 65.5, "SiO2(s)": 21.5, "Al2O3(s):alpha": 5.2, "Fe2O3(s)": 2.8}

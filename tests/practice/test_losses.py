@@ -10,9 +10,9 @@ from hypothesis import strategies as st
 from settled_from import figures
 
 from gibbsmin.errors import InputError
-from gibbsmin.practice.flue_gas import FlueGasSetting, flue_gas
-from gibbsmin.practice.losses import condensed_share, siegert
-from gibbsmin.practice.settled import Settled
+from gibbsmin.practice.figures.settled import Settled
+from gibbsmin.practice.flue_gas.flue_gas import FlueGasSetting, flue_gas
+from gibbsmin.practice.flue_gas.losses import condensed_share, siegert
 
 LOWER = 802.6e3  # of CH4 at 25 °C [J/mol], and the higher one: ISO 6976 (1995): 890.63
 HIGHER = 890.6e3

@@ -6,7 +6,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from gibbsmin.practice.audit import feed_enthalpy, feed_entropy
-from gibbsmin.practice.mixing import mixed_entropy
+from gibbsmin.practice.feeds.mixing import mixed_entropy
 from gibbsmin.thermo.database import load
 
 R = 8.314462618

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from settled_from import settle
 
-from gibbsmin.practice.potentials import given_temperature, ln_activity, record_of, usable
+from gibbsmin.practice.figures.potentials import given_temperature, ln_activity, record_of, usable
 from gibbsmin.states.system import System
 from gibbsmin.thermo.database import load
 

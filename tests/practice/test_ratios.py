@@ -7,7 +7,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from gibbsmin.practice.ratios import oxygen_need, supply_and_need
+from gibbsmin.practice.feeds.ratios import oxygen_need, supply_and_need
 
 SHARE = st.floats(0.0, 1.0)
 

@@ -14,9 +14,9 @@ from hypothesis import strategies as st
 import gibbsmin as gm
 from gibbsmin.constants import R
 from gibbsmin.errors import InputError, SpeciesError
-from gibbsmin.practice.balance import null_space
-from gibbsmin.practice.crossover import zeros
-from gibbsmin.practice.reactions import Reaction, reaction
+from gibbsmin.practice.reactions.balance import null_space
+from gibbsmin.practice.reactions.crossover import zeros
+from gibbsmin.practice.reactions.reactions import Reaction, reaction
 from gibbsmin.thermo.making.sources import package_file
 from gibbsmin.thermo.record import Piece, Species
 

@@ -9,8 +9,8 @@ from hypothesis import strategies as st
 from settled_from import by_hand, figures, settle
 
 from gibbsmin.constants import R
-from gibbsmin.practice.reactions import reaction
-from gibbsmin.practice.reduction import oxygen_potential, reduction
+from gibbsmin.practice.figures.reduction import oxygen_potential, reduction
+from gibbsmin.practice.reactions.reactions import reaction
 from gibbsmin.states.system import System
 
 IRON = System.from_elements("C H O Fe", exclude=["C(s):graphite", "FeO(l)"])

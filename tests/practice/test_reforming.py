@@ -10,9 +10,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from practice.settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.reactions import reaction
-from gibbsmin.practice.reforming import reforming, shift
-from gibbsmin.practice.settled import FeedFacts
+from gibbsmin.practice.figures.reforming import reforming, shift
+from gibbsmin.practice.figures.settled import FeedFacts
+from gibbsmin.practice.reactions.reactions import reaction
 from gibbsmin.states.system import System
 
 C1 = System.from_species("CH4 H2 H2O CO CO2 N2")

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.salts import salts
+from gibbsmin.practice.figures.salts import salts
 from gibbsmin.states.system import System
 
 SYSTEM = System.from_elements("K Cl S O H C N", exclude=["C(s):graphite"])

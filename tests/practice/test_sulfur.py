@@ -8,8 +8,8 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.sulfur import sulfur
-from gibbsmin.practice.sulfur_vapour import VAPOUR, saturation, sulfur_dew_temperature
+from gibbsmin.practice.figures.sulfur import sulfur
+from gibbsmin.practice.figures.sulfur_vapour import VAPOUR, saturation, sulfur_dew_temperature
 from gibbsmin.states.system import System
 
 SYSTEM = System.from_elements("H O N S")

@@ -8,7 +8,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 from settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.sulfuric_acid import sulfuric_acid
+from gibbsmin.practice.figures.sulfuric_acid import sulfuric_acid
 from gibbsmin.states.system import System
 
 

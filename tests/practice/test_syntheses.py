@@ -8,8 +8,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 from practice.settled_from import by_hand, figures, settle
 
-from gibbsmin.practice.gas_quality import gas_quality
-from gibbsmin.practice.syntheses import ammonia, methanation, methanol
+from gibbsmin.practice.figures.gas_quality import gas_quality
+from gibbsmin.practice.figures.syntheses import ammonia, methanation, methanol
 from gibbsmin.states.system import System
 
 AMMONIA = System.from_species("H2 N2 NH3 Ar CH4", inert=("Ar", "CH4"))

@@ -7,8 +7,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from gibbsmin.practice.key_figure import KeyFigure
-from gibbsmin.practice.tally import key, known, mass_unit, ratio
+from gibbsmin.practice.figures.key_figure import KeyFigure
+from gibbsmin.practice.figures.tally import key, known, mass_unit, ratio
 from gibbsmin.thermo.database import load
 
 

@@ -9,17 +9,17 @@ import numpy as np
 import pytest
 from settled_from import Floats, settle
 
-from gibbsmin.practice.atmosphere import atmosphere
-from gibbsmin.practice.catalyst import catalyst
-from gibbsmin.practice.deposition import deposition
-from gibbsmin.practice.halogens import halogens
-from gibbsmin.practice.key_figure import KeyFigure
-from gibbsmin.practice.kiln import kiln
-from gibbsmin.practice.reduction import reduction
-from gibbsmin.practice.salts import salts
-from gibbsmin.practice.settled import Settled
-from gibbsmin.practice.sulfur import sulfur
-from gibbsmin.practice.sulfuric_acid import sulfuric_acid
+from gibbsmin.practice.figures.atmosphere import atmosphere
+from gibbsmin.practice.figures.catalyst import catalyst
+from gibbsmin.practice.figures.deposition import deposition
+from gibbsmin.practice.figures.halogens import halogens
+from gibbsmin.practice.figures.key_figure import KeyFigure
+from gibbsmin.practice.figures.kiln import kiln
+from gibbsmin.practice.figures.reduction import reduction
+from gibbsmin.practice.figures.salts import salts
+from gibbsmin.practice.figures.settled import Settled
+from gibbsmin.practice.figures.sulfur import sulfur
+from gibbsmin.practice.figures.sulfuric_acid import sulfuric_acid
 from gibbsmin.states.system import System
 
 FEED = {"CO": 1.0, "H2": 2.0, "H2O": 1.0, "H2S": 0.2, "HCl": 0.1, "KCl(s)": 0.1, "CaCO3(s):calcite": 0.1}

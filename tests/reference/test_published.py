@@ -19,7 +19,7 @@ import pytest
 
 from gibbsmin.constants import ATMOSPHERE, STANDARD_PRESSURE, STANDARD_TEMPERATURE, R
 from gibbsmin.elements import parse_formula
-from gibbsmin.practice.reactions import Reaction, reaction
+from gibbsmin.practice.reactions.reactions import Reaction, reaction
 from gibbsmin.states.solve import equilibrium
 from gibbsmin.states.state import State
 from gibbsmin.states.system import System

@@ -12,7 +12,7 @@ import pytest
 from report_fakes import FakeResult
 
 from gibbsmin.errors import InputError
-from gibbsmin.practice.cautions import CLOSING
+from gibbsmin.practice.safety.cautions import CLOSING
 from gibbsmin.results.folder import write_folder
 from gibbsmin.results.judge import judge
 

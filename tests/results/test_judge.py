@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from report_fakes import FakeFeed, FakeResult
 
-from gibbsmin.practice.key_figure import KeyFigure
+from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.results.judge import judge
 from gibbsmin.thermo.record import FROZEN
 

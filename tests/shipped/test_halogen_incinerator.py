@@ -87,7 +87,15 @@ def test_halogens(run: Run) -> None:
     for spray, T, state in each(run):
         gas, found = settled(spray, T), dict(state["key_figures"]["halogens"])
         total = sum(n for name, n in gas.items() if name != "H2O")
-        names = {"hcl": "HCl", "cl2": "Cl2", "cl_atom": "Cl", "hbr": "HBr", "br2": "Br2", "br_atom": "Br", "brcl": "BrCl"}
+        names = {
+            "hcl": "HCl",
+            "cl2": "Cl2",
+            "cl_atom": "Cl",
+            "hbr": "HBr",
+            "br2": "Br2",
+            "br_atom": "Br",
+            "brcl": "BrCl",
+        }
         for key, name in names.items():
             # bromides: HBr -35.7 today (ATcT), -36.4 kJ/mol in 1993
             rel = 0.12 if "Br" in name else 0.03

@@ -41,9 +41,7 @@ def bed(gas: Gas, approach: float = 15.0, inlet: float = 653.15, bar: float = 15
         wanted = hand.log_k(hand.AMMONIA, T + approach)
         low, high = -gas["NH3"] / 2.0, min(gas["N2"], gas["H2"] / 3.0)
         edge = 1e-9 * (high - low)
-        x = brentq(
-            lambda x: hand.log_q(hand.AMMONIA, hand.fractions(after(x)), bar) - wanted, low + edge, high - edge
-        )
+        x = brentq(lambda x: hand.log_q(hand.AMMONIA, hand.fractions(after(x)), bar) - wanted, low + edge, high - edge)
         return after(x)
 
     hot = hand.adiabatic(settled, hand.total_enthalpy(gas, inlet), 600.0, 900.0)

@@ -96,7 +96,7 @@ def test_compressor(run: Run) -> None:
         assert state["streams"]["compressor"]["temperature"] == pytest.approx(T, abs=0.2)
         assert state["steps"]["compressor"]["work"] == pytest.approx(work * moles, rel=1e-3)
         assert state["streams"]["compressor"]["pressure"] == pytest.approx(20.26e5)
-    assert T - 273.15 == pytest.approx(443.0, abs=2.0)
+    assert pytest.approx(443.0, abs=2.0) == T - 273.15
 
 
 def test_combustor(run: Run) -> None:
@@ -177,7 +177,7 @@ RULE = 'species = { inert = ["NO", "NO2"] }'
 
 def test_frozen_and_settling_turbine(run: Run, tmp_path: Path) -> None:
     _, _, base = next(each_one for each_one in each(run) if each_one[:2] == (0.0, 0.495))
-    sweeps = [without_sweep("train_gas_turbine"), ("[[sweep]]\nvary = \"feeds.air", "# [[sweep]]\n# vary = \"feeds.air")]
+    sweeps = [without_sweep("train_gas_turbine"), ('[[sweep]]\nvary = "feeds.air', '# [[sweep]]\n# vary = "feeds.air')]
     sweeps.append(("values = [0.40,", "# values = [0.40,"))
     work = {}
     for name, rule in (("frozen", "frozen = true"), ("settling", "")):

@@ -99,7 +99,9 @@ def test_water_work_and_what_goes_back(index: int, run: Run) -> None:
     state, ratio = run.state(index), RATIOS[index]
     water, _ = train(ratio)["water"]
     for name, part in (("first_knock_out.water", "first"), ("last_knock_out.water", "last")):
-        assert state["streams"][name]["amounts"]["H2O(l)"] == pytest.approx(water[part], rel=0.01 if part == "first" else 0.035)
+        assert state["streams"][name]["amounts"]["H2O(l)"] == pytest.approx(
+            water[part], rel=0.01 if part == "first" else 0.035
+        )
     assert state["streams"]["boiler.recycle"]["amount"] == pytest.approx(ratio * state["streams"]["boiler"]["amount"])
     assert state["steps"]["circulator"]["work"] == pytest.approx(train(ratio)["work"][1], rel=0.01)
 

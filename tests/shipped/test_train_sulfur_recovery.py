@@ -24,7 +24,7 @@ SPECIES = (
 RINGS = {"S": 1, "S2": 2, "S3": 3, "S4": 4, "S5": 5, "S6": 6, "S7": 7, "S8": 8}
 TABLE = {
     "H2S": "H-080", "SO2": "O-034", "H2O": "H-064", "CO": "C-093", "CO2": "C-095", "H2": "H-050", "N2": "N-023",
-    "Ar": "Ar-001", "S2": "S-012", "S6": "S-019", "S7": "S-020", "S8": "S-021", "S(l)": "S-004",
+    "Ar": "Ar-001", "S2": "S-012", "S3": "S-016", "S4": "S-017", "S5": "S-018", "S6": "S-019", "S7": "S-020", "S8": "S-021", "S(l)": "S-004",
 }  # fmt: skip
 STEPS = {
     "furnace", "boiler", "pit", *(f"condenser_{k}" for k in (1, 2, 3, 4)),
@@ -143,7 +143,11 @@ def test_condensers_leave_saturated_gas(run: Run) -> None:
 
 
 def test_beds_by_janaf(run: Run) -> None:
-    """2 H2S + SO2 = 3/2 S2 + 2 H2O within 6 % (1 to 3 K), COS + H2O = CO2 + H2S in the first bed; heat within 2 K."""
+    """2 H2S + SO2 = 3/2 S2 + 2 H2O, COS + H2O = CO2 + H2S in the first bed, heat within 2 K.
+
+    12 % in a constant is 0.5 kJ/mol at 500 K, which the heats of formation of H2S and H2O of two collections may differ
+    by; it moves the first bed by 3 K.
+    """
     claus = {TABLE["H2S"]: -2.0, TABLE["SO2"]: -1.0, TABLE["S2"]: 1.5, TABLE["H2O"]: 2.0}
     hydrolysis = {"C-094": -1.0, TABLE["H2O"]: -1.0, TABLE["CO2"]: 1.0, TABLE["H2S"]: 1.0}
     for state in run.data["states"]:
@@ -151,10 +155,10 @@ def test_beds_by_janaf(run: Run) -> None:
             stream, inlet = state["streams"][f"reactor_{k}"], state["streams"][f"heater_{k}"]
             T, bar, x = stream["temperature"], stream["pressure"] / 1e5, stream["mole_fractions_wet"]
             quotient = (x["S2"] * bar) ** 1.5 * x["H2O"] ** 2 / (x["H2S"] ** 2 * x["SO2"] * bar)
-            assert quotient == pytest.approx(10.0 ** log_k(claus, T), rel=0.06)
+            assert quotient == pytest.approx(10.0 ** log_k(claus, T), rel=0.12)
             if k == 1:
                 ratio = x["CO2"] * x["H2S"] / (x["COS"] * x["H2O"])
-                assert ratio == pytest.approx(10.0 ** log_k(hydrolysis, T), rel=0.06)
+                assert ratio == pytest.approx(10.0 ** log_k(hydrolysis, T), rel=0.12)
             else:
                 assert stream["amounts"]["COS"] == pytest.approx(inlet["amounts"]["COS"], rel=1e-12)
             for name in ("H2", "CO", "N2", "Ar"):
@@ -248,7 +252,7 @@ def tail(state: State) -> float:
 def test_what_the_header_promises(run: Run) -> None:
     at = {round(state["inputs"][VARIED], 3): state for state in run.data["states"]}
     base = at[0.298]
-    assert 90.0 * 32.06 == pytest.approx(2885.0, abs=1.0)
+    assert pytest.approx(2885.0, abs=1.0) == 90.0 * 32.06
     for state in at.values():
         assert state["streams"]["pit"]["mass"] * 3600.0 == pytest.approx(recovered(state) * 90.0 * 32.06, rel=1e-4)
     assert tail(base) == pytest.approx(2.0, abs=0.05)
@@ -272,9 +276,9 @@ def test_hydrogen_that_takes_sulfur_back_wants_more_air(run: Run, tmp_path: Path
         folder = tmp_path / f"{ratio}"
         folder.mkdir()
         air = ("air_ratio = 0.298", f"air_ratio = {ratio}")
-        (state,) = variant(
-            "train_sulfur_recovery", folder, without_sweep("train_sulfur_recovery"), *changes, air
-        ).data["states"]
+        (state,) = variant("train_sulfur_recovery", folder, without_sweep("train_sulfur_recovery"), *changes, air).data[
+            "states"
+        ]
         before, after = moles(state, "furnace"), moles(state, "boiler")
         assert after["H2"] == pytest.approx(0.7 * before["H2"], rel=1e-9)
         assert after["H2S"] == pytest.approx(before["H2S"] + 0.3 * before["H2"] + 0.5 * before["SH"], rel=1e-6)

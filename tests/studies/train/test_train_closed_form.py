@@ -120,9 +120,7 @@ def test_warm_recycle() -> None:
     plant = Plant("Ar")
     steps = [
         plant.step("mixed", "feed", "hot.back"),
-        plant.step(
-            "hot", "mixed", change=plant.unreacted("temperature", 800.0), takes=[plant.take("back", share=0.5)]
-        ),
+        plant.step("hot", "mixed", change=plant.unreacted("temperature", 800.0), takes=[plant.take("back", share=0.5)]),
     ]
     solved = steady(solve_train(steps, {"feed": plant.stream({"Ar": 1.0}, 300.0)}))
     assert solved.streams["mixed"].temperature[0] == pytest.approx(550.0, rel=1e-7)

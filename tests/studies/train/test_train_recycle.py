@@ -24,7 +24,7 @@ def nothing(x: Floats) -> Floats:
 @given(seed=st.integers(0, 2**32 - 1), size=st.integers(1, 5), gain=st.floats(0.1, 0.99))
 @settings(max_examples=40)
 def test_linear_loops_in_few_rounds(seed: int, size: int, gain: float) -> None:
-    """x = A x + b with A of no negative entries and this spectral radius, in several states at once, against numpy."""
+    """X = A x + b with A of no negative entries and this spectral radius, in several states at once, against numpy."""
     random = np.random.default_rng(seed)
     A = random.random((3, size, size)) + 0.01
     A *= gain / np.abs(np.linalg.eigvals(A)).max(axis=1)[:, None, None]
@@ -61,7 +61,7 @@ def test_a_state_does_not_wait_for_others() -> None:
 
 
 def test_a_round_that_overshoots_is_found_too() -> None:
-    """x = 12 - 2 x grows in plain rounds; the secant finds 4."""
+    """X = 12 - 2 x grows in plain rounds; the secant finds 4."""
     found = steady(np.ones((1, 1)), nothing, lambda x, states: 12.0 - 2.0 * x)
     assert found.settled.all()
     assert found.x[0, 0] == pytest.approx(4.0)

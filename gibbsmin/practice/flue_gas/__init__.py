@@ -1,0 +1,1 @@
+"""The numbers of a flue gas: composition, emissions, losses, dew points."""

@@ -1,0 +1,1 @@
+"""Chemical equations: read, balanced, and what they do over temperature."""

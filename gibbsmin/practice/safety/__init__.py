@@ -1,0 +1,1 @@
+"""Cautions, and the limits at which they are raised."""
