@@ -96,7 +96,7 @@ def describe_train(study: TrainStudy) -> dict[str, Any]:
 
 def _settling(case: TrainCase, stage: Stage) -> list[str] | None:
     """Return the list of what takes part in a stage: its own, else that of the case."""
-    if stage.species.settling is not None or stage.species.allow is not None:
+    if stage.species.model_fields_set & {"settling", "allow", "elements"}:
         return stage.species.settling
     return case.species.settling
 

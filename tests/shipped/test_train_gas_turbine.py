@@ -28,7 +28,7 @@ def air(equivalence: float) -> dict[str, float]:
     return hand.air(NEED / equivalence, 0.0101)
 
 
-def at(entropy: float, gas: dict[str, float], bar: float) -> float:
+def isentropic(entropy: float, gas: dict[str, float], bar: float) -> float:
     """Temperature of an unreacted gas of that entropy, K."""
     return float(brentq(lambda T: hand.total_entropy(gas, T, bar) - entropy, 250.0, 2500.0, xtol=1e-9))
 
@@ -37,7 +37,7 @@ def at(entropy: float, gas: dict[str, float], bar: float) -> float:
 def compressor() -> tuple[float, float]:
     """Outlet, K, and work for a mole of air, J."""
     gas = hand.times(1.0 / sum(air(1.0).values()), air(1.0))
-    ideal = at(hand.total_entropy(gas, 288.15, AMBIENT), gas, COMPRESSED)
+    ideal = isentropic(hand.total_entropy(gas, 288.15, AMBIENT), gas, COMPRESSED)
     start = hand.heat_content(gas, 288.15)
     work = (hand.heat_content(gas, ideal) - start) / 0.88
     T = brentq(lambda T: hand.heat_content(gas, T) - start - work, 400.0, 1200.0, xtol=1e-9)
@@ -176,7 +176,7 @@ RULE = 'species = { inert = ["NO", "NO2"] }'
 
 
 def test_frozen_and_settling_turbine(run: Run, tmp_path: Path) -> None:
-    _, _, base = next(each_one for each_one in each(run) if each_one[:2] == (0.0, 0.495))
+    base = next(state for water, ratio, state in each(run) if (water, ratio) == (0.0, 0.495))
     sweeps = [without_sweep("train_gas_turbine"), ('[[sweep]]\nvary = "feeds.air', '# [[sweep]]\n# vary = "feeds.air')]
     sweeps.append(("values = [0.40,", "# values = [0.40,"))
     work = {}

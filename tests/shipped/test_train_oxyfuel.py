@@ -154,6 +154,15 @@ def test_ash_takes_no_part_and_goes_out_once(run: Run) -> None:
         assert not [name for one in streams.values() for name in one["amounts"] if name.startswith("Si")]
 
 
+def test_gas_that_has_just_settled_is_not_called_a_premix(run: Run) -> None:
+    """At 2300 degC it holds CO beside O2, in balance."""
+    for state in run.data["states"]:
+        told = " ".join(state["cautions"])
+        assert "Toxic gas" in told
+        assert "Feed 'furnace'" not in told
+        assert "Stage boiler: The feeds together" not in told
+
+
 def test_the_same_as_the_case_of_one_furnace(run: Run, shipped: Callable[[str], Run]) -> None:
     """``oxyfuel_boiler`` finds the recycle by another way; its gas has no fan, which warms by 4 K."""
     alone = shipped("oxyfuel_boiler").data["states"]

@@ -1,4 +1,4 @@
-"""Sulfur recovery: furnace by Cantera, boiler by its atoms, beds by JANAF, condensers by a published vapour pressure."""
+"""Sulfur recovery: furnace by Cantera, boiler by its atoms, beds by JANAF, condensers by published vapour pressure."""
 
 from __future__ import annotations
 
@@ -24,7 +24,8 @@ SPECIES = (
 RINGS = {"S": 1, "S2": 2, "S3": 3, "S4": 4, "S5": 5, "S6": 6, "S7": 7, "S8": 8}
 TABLE = {
     "H2S": "H-080", "SO2": "O-034", "H2O": "H-064", "CO": "C-093", "CO2": "C-095", "H2": "H-050", "N2": "N-023",
-    "Ar": "Ar-001", "S2": "S-012", "S3": "S-016", "S4": "S-017", "S5": "S-018", "S6": "S-019", "S7": "S-020", "S8": "S-021", "S(l)": "S-004",
+    "Ar": "Ar-001", "S2": "S-012", "S3": "S-016", "S4": "S-017", "S5": "S-018",
+    "S6": "S-019", "S7": "S-020", "S8": "S-021", "S(l)": "S-004",
 }  # fmt: skip
 STEPS = {
     "furnace", "boiler", "pit", *(f"condenser_{k}" for k in (1, 2, 3, 4)),
@@ -143,10 +144,10 @@ def test_condensers_leave_saturated_gas(run: Run) -> None:
 
 
 def test_beds_by_janaf(run: Run) -> None:
-    """2 H2S + SO2 = 3/2 S2 + 2 H2O, COS + H2O = CO2 + H2S in the first bed, heat within 2 K.
+    """2 H2S + SO2 = 3/2 S2 + 2 H2O, COS + H2O = CO2 + H2S in the first bed, and no heat.
 
-    12 % in a constant is 0.5 kJ/mol at 500 K, which the heats of formation of H2S and H2O of two collections may differ
-    by; it moves the first bed by 3 K.
+    12 % in a constant is 0.5 kJ/mol at 500 K, and moves the first bed by 3 K: newer data of S2 lie 0.2 kJ/mol lower,
+    and rings that are not rigid hold up to 5 kJ/mol more heat than JANAF's.
     """
     claus = {TABLE["H2S"]: -2.0, TABLE["SO2"]: -1.0, TABLE["S2"]: 1.5, TABLE["H2O"]: 2.0}
     hydrolysis = {"C-094": -1.0, TABLE["H2O"]: -1.0, TABLE["CO2"]: 1.0, TABLE["H2S"]: 1.0}
@@ -166,11 +167,11 @@ def test_beds_by_janaf(run: Run) -> None:
             before, after = moles(state, f"heater_{k}"), moles(state, f"reactor_{k}")
             open_part = heat_content(after, T) - heat_content(before, inlet["temperature"])
             per_kelvin = heat_content(after, T + 1.0) - heat_content(after, T)
-            assert abs(open_part / per_kelvin) < 2.0
+            assert abs(open_part / per_kelvin) < 3.0
 
 
 def test_coolers_and_heaters_by_janaf(run: Run) -> None:
-    """Heat from the amounts of the streams; 2 % for the rings, whose data differ, and for traces that are left out."""
+    """Heat from the amounts of the streams; 3 % for the rings, whose data differ (see above)."""
     for state in run.data["states"]:
         inlet = {f"condenser_{k + 1}": f"reactor_{k}" for k in (1, 2, 3)} | {"condenser_1": "boiler"}
         inlet |= {f"heater_{k}": f"condenser_{k}" for k in (1, 2, 3)}
@@ -181,7 +182,7 @@ def test_coolers_and_heaters_by_janaf(run: Run) -> None:
                 liquid = moles(state, f"{name}.sulfur")
                 out += heat_content(liquid, streams[name]["temperature"])
             heat = (out - heat_content(moles(state, source), streams[source]["temperature"])) / 3600.0
-            assert state["steps"][name]["heat"] == pytest.approx(heat, rel=0.02), name
+            assert state["steps"][name]["heat"] == pytest.approx(heat, rel=0.03), name
 
 
 def test_numbers_of_the_steps_by_hand(run: Run) -> None:
@@ -218,11 +219,10 @@ def test_numbers_of_the_steps_by_hand(run: Run) -> None:
             expected |= {f"sulfur_vapour_as_{ring.lower()}": share for ring, share in shares.items()}
             found = state["stages"][name]["key_figures"]["sulfur"]
             given = {key for key, value in found.items() if value is not None}
-            named = {f"sulfur_vapour_as_{ring.lower()}" for ring, share in shares.items() if share > 1e-4}
-            assert given >= named
-            assert given - named == {key for key in expected if not key.startswith("sulfur_vapour_as")} | {
-                "sulfur_dew_temperature"
-            } | {key for key in given - named if key.startswith("sulfur_vapour_as")}
+            rings = {key for key in given if key.startswith("sulfur_vapour_as_")}
+            assert rings >= {f"sulfur_vapour_as_{ring.lower()}" for ring, share in shares.items() if share > 1e-4}
+            others = {key for key in expected if not key.startswith("sulfur_vapour_as_")}
+            assert given - rings == others | {"sulfur_dew_temperature"}
             for key in given - {"sulfur_dew_temperature"}:
                 assert found[key] == pytest.approx(expected[key], rel=1e-3, abs=1e-7), (name, key)
 
@@ -276,9 +276,8 @@ def test_hydrogen_that_takes_sulfur_back_wants_more_air(run: Run, tmp_path: Path
         folder = tmp_path / f"{ratio}"
         folder.mkdir()
         air = ("air_ratio = 0.298", f"air_ratio = {ratio}")
-        (state,) = variant("train_sulfur_recovery", folder, without_sweep("train_sulfur_recovery"), *changes, air).data[
-            "states"
-        ]
+        case = without_sweep("train_sulfur_recovery")
+        (state,) = variant("train_sulfur_recovery", folder, case, *changes, air).data["states"]
         before, after = moles(state, "furnace"), moles(state, "boiler")
         assert after["H2"] == pytest.approx(0.7 * before["H2"], rel=1e-9)
         assert after["H2S"] == pytest.approx(before["H2S"] + 0.3 * before["H2"] + 0.5 * before["SH"], rel=1e-6)

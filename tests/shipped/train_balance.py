@@ -49,7 +49,7 @@ def ends(state: State, step: str | None) -> tuple[list[Stream], list[Stream]]:
 
 
 def closes(run: Run, steps: set[str]) -> None:
-    """Elements, mass and energy of each step and of the whole close, entropy never falls, all states are proved."""
+    """Check elements, mass and energy of each step and of the whole, that entropy never falls, and all certificates."""
     for state in run.data["states"]:
         assert state["certificate"]["ok"] is True
         assert set(state["steps"]) == steps
@@ -58,7 +58,8 @@ def closes(run: Run, steps: set[str]) -> None:
         for step in (None, *steps):
             account = state["train"] if step is None else state["steps"][step]
             inlets, outlets = ends(state, step)
-            assert inlets and outlets
+            assert inlets
+            assert outlets
             brought, gone = ([elements(one) for one in streams] for streams in (inlets, outlets))
             for symbol in {symbol for one in brought for symbol in one}:
                 fed = sum(one.get(symbol, 0.0) for one in brought)
@@ -76,7 +77,7 @@ def closes(run: Run, steps: set[str]) -> None:
 
 
 def shown(run: Run) -> None:
-    """The screen is at most 80 columns wide, says that the plant is invented and who decides."""
+    """Check that the screen is at most 80 columns wide, and says that the plant is invented and who decides."""
     assert "(invented)" in run.data["title"]
     assert max(map(len, run.screen.splitlines()[:-1])) <= 80
     assert "Local codes and licensed practice decide" in re.sub(r"\s+", " ", run.screen)

@@ -205,8 +205,9 @@ def _reasons(solved: Solved, back: Mapping[str, Stream]) -> tuple[str, ...]:
     reasons = [""] * count
     for name, step in solved.steps.items():
         if step.changed.batch is None:
-            here = beyond(step.changed.outlet.temperature) & (step.changed.outlet.total > 0.0)
-            found = [BEYOND if far else "" for far in here]
+            outlet = step.changed.outlet
+            far = beyond(outlet.temperature) & (outlet.total > 0.0) & (outlet is not step.inlet)
+            found = [BEYOND if one else "" for one in far]
         else:
             found = list(step.changed.batch.reason)
         for state, reason in enumerate(found):
@@ -227,9 +228,8 @@ def _reasons(solved: Solved, back: Mapping[str, Stream]) -> tuple[str, ...]:
                 f"close to {worst:.1e} only (limit {BALANCE:g}). Take out more of the loop."
             )
         elif worst > BALANCE:
-            gathers = _leading(_growth(solved, back, state))
             reasons[state] = (
-                f"The recycle has no steady state: it gathers {gathers or 'something'}, and less of "
+                f"The recycle has no steady state: it gathers {_gathers(solved, back, state)}, and less of "
                 f"{_leading(open_parts) or 'what comes in'} leaves than comes in. "
                 "Take a part of the loop out (a purge), or remove what gathers."
             )
@@ -241,15 +241,17 @@ def _reasons(solved: Solved, back: Mapping[str, Stream]) -> tuple[str, ...]:
     return tuple(reasons)
 
 
-def _growth(solved: Solved, back: Mapping[str, Stream], state: int) -> dict[str, float]:
-    """Work out by how much each species of the recycled streams grew in the last round, [mol or mol/s]."""
+def _gathers(solved: Solved, back: Mapping[str, Stream], state: int) -> str:
+    """Name the species of which the recycled streams got more in the last round; if it shows in none, most of them."""
     streams = solved.streams
-    found: dict[str, float] = {}
+    grew: dict[str, float] = {}
+    there: dict[str, float] = {}
     for name, before in back.items():
-        grown = streams[name].amounts[state] - before.amounts[state]
-        for record, more in zip(before.substances.records, grown, strict=True):
-            found[record.substance] = found.get(record.substance, 0.0) + float(more)
-    return found
+        n = streams[name].amounts[state]
+        for record, now, more in zip(before.substances.records, n, n - before.amounts[state], strict=True):
+            grew[record.substance] = grew.get(record.substance, 0.0) + float(more)
+            there[record.substance] = there.get(record.substance, 0.0) + float(now)
+    return _leading(grew) or _leading(there) or "something"
 
 
 def _leading(parts: Mapping[str, float]) -> str:

@@ -81,7 +81,7 @@ def loop(plant: Plant, purge: float, **feed: float) -> Solved:
 @pytest.mark.parametrize(
     ("feed", "gathers", "wants"),
     [
-        ({"N2": 1.0, "H2": 3.0, "Ar": 0.02}, "gathers Ar", "less of Ar leaves"),
+        ({"N2": 1.0, "H2": 3.0, "Ar": 0.02}, "gathers Ar", "Ar leaves"),
         ({"N2": 1.0, "H2": 3.5}, "gathers H2", "less of H leaves"),
         ({"N2": 1.0, "H2": 3.5, "Ar": 0.5}, "gathers", "leaves than comes in"),
     ],
