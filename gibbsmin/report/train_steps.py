@@ -114,15 +114,12 @@ def train_certificate(result: TrainResult) -> str:
         return (
             f"{bad} of {len(good)} states NOT certified; the first is state {first + 1}: {result.solved.reasons[first]}"
         )
-    batches = [step.changed.batch for step in result.solved.steps.values() if step.changed.batch is not None]
     told = []
-    if batches:
-        worst = [
-            max(float(np.abs(getattr(batch, key)).max()) for batch in batches)
-            for key in ("element_residual", "gap", "worst_affinity")
-        ]
+    if result.stages:
+        residual, gap, affinity = (float(values.max()) for values in result.proof.values())
         states = f"{len(good)} states of " if len(good) > 1 else ""
-        told.append(f"{states}{_counted(len(batches), 'settling step')} {certificate(*worst)}")
+        steps = _counted(len(result.stages), "settling step")
+        told.append(f"{states}{steps} {certificate(residual, gap, affinity)}")
     whole = result.accounts[WHOLE]
     closed = f"the whole closes to {_power(whole.element_open)} in elements"
     energy = _power(whole.energy_open)

@@ -120,6 +120,16 @@ class TrainResult:
         }
 
     @cached_property
+    def proof(self) -> dict[str, Floats]:
+        """The worst of the proofs of all stages that settle, (states,), [-, RT, RT]; zero where none does."""
+        batches = [stage.batch for stage in self.stages.values()]
+        zero = np.zeros(len(self))
+        return {
+            key: np.max([zero, *(np.abs(getattr(batch, key)) for batch in batches)], axis=0)
+            for key in ("element_residual", "gap", "worst_affinity")
+        }
+
+    @cached_property
     def stages(self) -> dict[str, Result]:
         """The stages that settle, each as a result of its own, by name."""
         return {
@@ -197,7 +207,8 @@ class TrainResult:
         dict
             Safe for JSON. Each state has ``streams``, ``stages`` (as the states of a case of one mixture) and
             ``steps`` (heat, work, what is lost), and ``train`` (the whole, with the conversions and the residual of
-            the recycles). A stream holds each substance with its frozen part.
+            the recycles). A stream holds each substance with its frozen part. ``certificate`` is the worst of those of
+            the stages.
         """
         stages = {name: result.to_dict()["states"] for name, result in self.stages.items()}
         legend = {name: result.legend() for name, result in self.stages.items() if result.key_figures}
@@ -226,7 +237,11 @@ class TrainResult:
                 "recycle_rounds": 0 if loop is None else loop.rounds,
                 "conversion": {name: _conversion(one, i) for name, one in self.conversions.items()},
             },
-            "certificate": {"ok": bool(self.certified[i]), "reason": self.solved.reasons[i]},
+            "certificate": {
+                **{key: plain(values[i]) for key, values in self.proof.items()},
+                "ok": bool(self.certified[i]),
+                "reason": self.solved.reasons[i],
+            },
         }
 
     def tables(self) -> dict[str, str]:

@@ -112,16 +112,20 @@ def response(system: System, temperature: float, pressure: float, amounts: Array
     """
     T, P = temperature, pressure
     here = np.flatnonzero(amounts > 0.0)
-    n, gas, A = amounts[here], system.gas[here], system.element_matrix[:, here]
+    n, gas = amounts[here], system.gas[here]
     h, cp = _standard_functions(system, here, T)  # H°/RT and Cp°/R, (present,)
-    basis, melting = _basis(A, gas, n)
     terms = R * T * float(n @ (np.abs(h) + 1.0))
-    melting = melting or abs(enthalpy - R * T * float(n @ h)) > BETWEEN * terms
+    melting = abs(enthalpy - R * T * float(n @ h)) > BETWEEN * terms
     frozen = R * float(n @ cp)
-    if not gas.any():
+    N, mass = float(n[gas].sum()), float(n @ system.molar_masses[here])
+    moving = ~system.is_inert[here]  # what is inert has z = 0, and adds its amount to q.M^-1 q
+    idle = float(n[gas & ~moving].sum())
+    n, gas, h, A = n[moving], gas[moving], h[moving], system.element_matrix[:, here[moving]]
+    basis, dependent = _basis(A, gas, n)
+    melting = melting or dependent
+    if not N:
         return Response(np.inf if melting else frozen, frozen)
 
-    N = float(n[gas].sum())
     nu = np.linalg.lstsq(A[:, basis], A[:, gas], rcond=None)[0]  # (r, gases)
     u = h - gas
     Du = u[gas] - u[basis] @ nu  # (gases,)
@@ -131,13 +135,13 @@ def response(system: System, temperature: float, pressure: float, amounts: Array
     M, q, r = X @ X.T, X @ np.sqrt(n[gas]), X @ (np.sqrt(n[gas]) * Du)
     solved = np.linalg.solve(M, np.column_stack((r, q))) if free.any() else np.empty((0, 2))
     z = Du - (nu[free] / D[:, None]).T @ solved[:, 0]
-    kappa = float(q @ solved[:, 1]) / N  # eq. (6)
+    kappa = (float(q @ solved[:, 1]) + idle) / N  # eq. (6)
     beta = 1.0 + float(n[gas] @ z) / N
     Cv = np.inf if melting else frozen - N * R + R * float(n[gas] @ z**2)  # eq. (5)
     flat = kappa < PLATEAU
     exponent = kappa + N * R * beta**2 / Cv  # eq. (7)
     frozen_exponent = frozen / (frozen - N * R)
-    specific_work = N * R * T / float(n @ system.molar_masses[here])  # P/rho, J/kg
+    specific_work = N * R * T / mass  # P/rho, J/kg
     return Response(
         heat_capacity=np.inf if flat else Cv + N * R * beta**2 / kappa,
         frozen_heat_capacity=frozen,

@@ -52,8 +52,8 @@ class System:
         Atoms of each element in each species [-].
     molar_masses : (S,) array
         [kg/mol].
-    gas : (S,) bool array
-        True for the species of the gas.
+    gas, is_inert : (S,) bool array
+        True for the species of the gas, and for those that take no part.
     """
 
     def __init__(
@@ -75,9 +75,11 @@ class System:
         self.constraints = {name: self._known(parts) for name, parts in (constraints or {}).items()}
         named = {name: self._known(parts) for name, parts in (approaches or {}).items()}
         self.approaches = Approaches(named, dict(zip(self.species, self.records, strict=True)))
+        held = set(self.inert)
+        self.is_inert = np.array([name in held for name in self.species], bool)
         self.elements = self._rows()
-        rows = [[self._entry(record, row) for record in self.records] for row in self.elements]
-        self.element_matrix = np.array(rows, float).reshape(len(rows), len(self.records))
+        self._row = {row: e for e, row in enumerate(self.elements)}
+        self.element_matrix = np.column_stack([self._column(record) for record in self.records])
         self.molar_masses = np.array([record.molar_mass for record in self.records])
         self.gas = np.array([not record.condensed for record in self.records])
 
@@ -184,14 +186,20 @@ class System:
         """Coefficients by the names of this system, without those that are zero."""
         return {self.name_of(name): float(value) for name, value in parts.items() if value}
 
-    def _entry(self, record: Species, row: str) -> float:
-        """Entry of the element matrix: an inert species counts in its own row and in constraints only."""
-        name = next((name for name in self.constraints if constraint_row(name) == row), None)
-        if name is not None:
-            return self.constraints[name].get(record.name, 0.0)
+    def _column(self, record: Species) -> Array:
+        """Column of the element matrix, (E,): an inert species counts in its own row and in constraints only."""
+        column = np.zeros(len(self.elements))
         if record.name in self.inert:
-            return float(row == f"inert {record.name}")
-        return float(record.charge) if row == CHARGE else record.elements.get(row, 0.0)
+            column[self._row[f"inert {record.name}"]] = 1.0
+        else:
+            for symbol, count in record.elements.items():
+                if symbol in self._row:
+                    column[self._row[symbol]] = count
+            if record.charge and CHARGE in self._row:
+                column[self._row[CHARGE]] = record.charge
+        for name, parts in self.constraints.items():
+            column[self._row[constraint_row(name)]] = parts.get(record.name, 0.0)
+        return column
 
     @cached_property
     def table(self) -> Table:
@@ -254,12 +262,12 @@ class System:
             if amount < 0.0:
                 raise FeedError(f"the amount of {name} is negative: {value}")
             record = self.records[self.index[name]] if name in self.index else load().get(name)
-            column = [self._entry(record, row) for row in self.elements]
+            column = self._column(record)
             parts = [*record.elements, CHARGE] if record.charge else list(record.elements)
             missing = [] if record.name in self.inert else [part for part in parts if part not in self.elements]
             if amount > 0.0 and missing:
                 raise FeedError(f"the feed holds {name}, but no species of the system holds {' and '.join(missing)}")
-            total += amount * np.array(column)
+            total += amount * column
         return total
 
     def __repr__(self) -> str:

@@ -160,6 +160,17 @@ def test_nothing_stands_where_a_recycle_is_not_steady(folder: Callable[[str], Fo
     assert found.row("mass", "kg/h", 3)["condenser"] != ""
 
 
+def test_the_proof_of_a_state_is_the_worst_of_its_stages(folder: Callable[[str], Folder]) -> None:
+    for state in folder(train_texts.TOO_COLD + train_texts.COOLING).data["states"]:
+        stages = [stage["certificate"] for stage in state["stages"].values()]
+        for key in ("element_residual", "gap", "worst_affinity"):
+            told = state["certificate"][key]
+            if state["certificate"]["ok"]:
+                assert told == max(abs(one[key]) for one in stages)
+            else:
+                assert told is None
+
+
 def test_what_comes_before_a_step_that_fails_stands(folder: Callable[[str], Folder]) -> None:
     found = folder(train_texts.TOO_COLD + train_texts.COOLING)
     good, bad, other = found.data["states"]

@@ -31,7 +31,7 @@ def run(shipped: Callable[[str], Run]) -> Run:
 
 
 def bed(gas: Gas, approach: float = 15.0, inlet: float = 653.15, bar: float = 150.0) -> tuple[Gas, float]:
-    """An adiabatic bed whose constant holds at T + approach."""
+    """Settle an adiabatic bed whose constant holds at T + approach."""
 
     def after(x: float) -> Gas:
         made = {"N2": -x, "H2": -3.0 * x, "NH3": 2.0 * x}

@@ -36,7 +36,7 @@ def run(shipped: Callable[[str], Run]) -> Run:
 
 
 def bed(gas: Gas, T: float, approach: float) -> tuple[Gas, float]:
-    """An adiabatic shift bed whose constant holds at T + approach; CH4 and N2 pass."""
+    """Settle an adiabatic shift bed whose constant holds at T + approach; CH4 and N2 pass."""
     idle = {name: gas[name] for name in ("CH4", "N2")}
     atoms = hand.elements({name: n for name, n in gas.items() if name not in idle})
 

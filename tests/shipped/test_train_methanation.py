@@ -34,7 +34,7 @@ def run(shipped: Callable[[str], Run]) -> Run:
 
 
 def bed(gas: Gas, T: float, bar: float) -> tuple[Gas, float]:
-    """What an adiabatic bed gives, and how hot."""
+    """Say what an adiabatic bed gives, and how hot."""
     hot = hand.adiabatic(lambda t: hand.reformed(gas, t, bar), hand.total_enthalpy(gas, T), T, 1300.0)
     return hand.reformed(gas, hot, bar), hot
 
@@ -47,7 +47,7 @@ def dried(gas: Gas, T: float, bar: float) -> tuple[Gas, float]:
 
 @cache
 def train(ratio: float) -> dict[str, tuple[Gas, float]]:
-    """What goes on from each step for all that is fed, and how hot; beside it the water taken out, and the work."""
+    """Say what goes on from each step, and how hot; beside it the water that is taken out, and the work."""
     came = hand.total_enthalpy(FED, 573.15)
 
     def off(T: float) -> float:
@@ -91,7 +91,8 @@ def test_temperatures_and_gases(index: int, run: Run) -> None:
         for species, x in hand.fractions(gas).items():
             if x > 1e-4:
                 found = streams[name]["mole_fractions_wet"][species]
-                assert found == pytest.approx(x, rel=0.025 if x > 0.1 else 0.06), (name, species)
+                wide = 0.035 if species == "H2O" else 0.02 if x > 0.1 else 0.06
+                assert found == pytest.approx(x, rel=wide), (name, species)
 
 
 @pytest.mark.parametrize("index", range(5))

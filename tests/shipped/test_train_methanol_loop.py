@@ -1,7 +1,7 @@
 """The methanol loop: one round of it by hand, beginning with the gas that the loop reports.
 
-Shift by the NIST-JANAF tables; methanol by gri30, packaged with Cantera, whose constant differs from ours by 3 %; vapour
-pressures of water by IAPWS and of methanol by the VDI Heat Atlas.
+Shift by the NIST-JANAF tables; methanol by gri30, packaged with Cantera, whose constant differs from ours by 3 %;
+vapour pressures of water by IAPWS and of methanol by the VDI Heat Atlas.
 """
 
 from __future__ import annotations

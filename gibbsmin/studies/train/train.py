@@ -23,7 +23,7 @@ BALANCE: Final = 1e-8
 """Element that the whole train may leave open, relative to what the feeds bring of it, before it is called unsteady."""
 
 GATHERS: Final = 1e-3
-"""Open part from which a loop that hardly changes is unsteady nevertheless: it holds so much that a round adds little."""
+"""Open part from which a loop that hardly changes is unsteady all the same: it holds too much for a round to show."""
 
 BEYOND: Final = "The stream would get a temperature beyond all data. Move less heat, or work less on it."
 

@@ -146,8 +146,8 @@ def test_take_of_ratio_and_flow() -> None:
 def test_published_methanol_with_purge() -> None:
     """Felder & Rousseau, Elementary Principles of Chemical Processes, example on recycle and purge (from memory).
 
-    CO2 + 3 H2 = CH3OH + H2O; reactor feed 28.0 % CO2, 70.0 % H2, 2.00 % inert; 60 % of H2 reacts in a pass; all methanol
-    and water are condensed; 155 kmol/h of methanol. Printed: fresh feed 681 kmol/h of 25.6, 74.0 and 0.400 %.
+    CO2 + 3 H2 = CH3OH + H2O; reactor feed 28.0 % CO2, 70.0 % H2, 2.00 % inert; 60 % of H2 reacts in a pass; all
+    methanol and water are condensed; 155 kmol/h of methanol. Printed: fresh feed 681 kmol/h of 25.6, 74.0 and 0.400 %.
     """
     plant = Plant("CO2 H2 CH3OH H2O Ar")
     purge = 0.1227  # 5.4 of 44 mol
@@ -190,10 +190,10 @@ def test_published_dehydrogenation() -> None:
 
 
 def test_published_methanol_of_synthesis_gas() -> None:
-    """Himmelblau, Basic Principles and Calculations in Chemical Engineering, example on recycle and purge (from memory).
+    """Himmelblau, Basic Principles and Calculations in Chemical Engineering, recycle with purge (from memory).
 
-    67.3 % H2, 32.5 % CO, 0.2 % CH4; 18 % of CO reacts in a pass; the purge is to hold 3.2 % CH4. Printed, per 100 mol of
-    feed: 705 go back, 31.25 of methanol, purge 6.25.
+    67.3 % H2, 32.5 % CO, 0.2 % CH4; 18 % of CO reacts in a pass; the purge is to hold 3.2 % CH4. Printed, per 100
+    mol of feed: 705 go back, 31.25 of methanol, purge 6.25.
     """
     plant = Plant("CO H2 CH3OH CH4")
     steps = [
@@ -210,8 +210,9 @@ def test_published_methanol_of_synthesis_gas() -> None:
 
 
 @given(
-    share=st.lists(st.floats(0.0, 0.95), min_size=3, max_size=3), feed=st.lists(st.floats(0.1, 50.0), min_size=3, max_size=3)
-)  # fmt: skip
+    share=st.lists(st.floats(0.0, 0.95), min_size=3, max_size=3),
+    feed=st.lists(st.floats(0.1, 50.0), min_size=3, max_size=3),
+)
 def test_three_loops_that_feed_each_other(share: list[float], feed: list[float]) -> None:
     """A ring of mixers, each of which passes a share on and lets the rest go: n_i = f_i + s_(i-1) n_(i-1)."""
     plant = Plant("N2")

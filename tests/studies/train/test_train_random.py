@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 from studies.train.plant import Plant
 
@@ -56,8 +56,7 @@ def trains(draw: st.DrawFn) -> tuple[list[Step], dict[str, Stream]]:
             plant.unreacted("heat", 0.0, draw(st.floats(1e4, 1e5))),
             plant.unreacted("entropy", draw(st.floats(0.5, 1.0)), draw(st.floats(1e5, 3e6))),
         ]
-        # a loop without a temperature that is held may heat up by its compressor until no data are left
-        change = changes[1] if k == 0 else draw(st.sampled_from(changes))
+        change = draw(st.sampled_from(changes))
         inlets = [*goes[k], *([f"s{k - 1}"] if k else [])]
         takes = [plant.take(side, shares[k, side][0], share=shares[k, side][1]) for side in sides[k]]
         steps.append(plant.step(f"s{k}", " ".join(inlets), " ".join(back[k]), change, takes))
@@ -69,6 +68,7 @@ def trains(draw: st.DrawFn) -> tuple[list[Step], dict[str, Stream]]:
 def test_matter_and_energy_close(drawn: tuple[list[Step], dict[str, Stream]], order: object) -> None:
     steps, feeds = drawn
     solved = solve_train(steps, feeds)
+    assume("beyond all data" not in solved.reasons[0])  # a compressor in a loop that is not cooled
     assert solved.reasons == ("",)
     products = [solved.streams[name] for name in solved.products]
     for name in SPECIES:  # nothing reacts: each species by itself
@@ -100,6 +100,7 @@ def test_adiabatic_steps_make_entropy(drawn: tuple[list[Step], dict[str, Stream]
     """Mixing, throttling and real compression or expansion, each over its own balance; parting species costs it."""
     steps, feeds = drawn
     solved = solve_train(steps, feeds)
+    assume(solved.reasons == ("",))
     for name, step in solved.steps.items():
         raised = step.changed.outlet.pressure[0] > step.inlet.pressure[0] and not np.any(step.changed.work)
         if np.any(step.changed.heat) or raised:  # a valve that raises the pressure is none

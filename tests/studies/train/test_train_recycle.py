@@ -103,11 +103,12 @@ def test_without_a_purge_it_works_if_everything_reacts_away() -> None:
 def test_a_loop_that_heats_up_without_end_is_told() -> None:
     """Nine parts in ten go round a compressor that is not cooled: the work gathers."""
     plant = Plant("Ar")
+    back = plant.take("back", share=0.9)
     steps = [
         plant.step("mixed", "feed", "valve.back"),
         plant.step("compressor", "mixed", change=plant.unreacted("entropy", 0.8, 3e6)),
-        plant.step("valve", "compressor", change=plant.unreacted("heat", 0.0, 1e5), takes=[plant.take("back", share=0.9)]),
-    ]  # fmt: skip
+        plant.step("valve", "compressor", change=plant.unreacted("heat", 0.0, 1e5), takes=[back]),
+    ]
     (reason,) = solve_train(steps, {"feed": plant.stream({"Ar": 1.0})}).reasons
     assert reason.startswith("compressor: ")
     assert "beyond all data" in reason
