@@ -55,6 +55,8 @@ class Recipe:
     to, per : str
         Feed that a ratio of amount or mass counts, none for all others, and what of it: ``"as received"``, ``"dry"``
         or ``"dry ash-free"``.
+    group : str
+        Stage of a train that takes the feed, within which its ratio counts; nothing for a single mixture.
     fuel : Fuel or None
         A fuel known by its analysis, of which a unit is a kilogram as received; its atoms are those of ``atoms``.
     """
@@ -72,6 +74,7 @@ class Recipe:
     to: str = ""
     per: str = "as received"
     fuel: Fuel | None = None
+    group: str = ""
 
     @property
     def elements(self) -> dict[str, float]:

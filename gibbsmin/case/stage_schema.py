@@ -101,7 +101,10 @@ class Stage(Table):
     name: Text = Field(description="Name of the step and of the stream that leaves it.", examples=["reformer"])
     inlets: list[Text] = Field(
         default=[],
-        description="Streams that it takes: feeds, steps, or side streams as STAGE.NAME. They mix first.",
+        description=(
+            "Streams that it takes: feeds, steps, or side streams as STAGE.NAME. They mix first. Ratios of feeds count "
+            "within one stage, unless `to` names another feed."
+        ),
         examples=[["gas", "steam"]],
     )
     recycled: list[Text] = Field(

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
 
@@ -94,7 +94,9 @@ class TrainStudy(StudyFrame):
             A name is not known, an element has no place, or a feed cannot be sized; with the key.
         """
         find = finder(own)
-        recipes, axes, basis = read_feeds(case, find), read_axes(case), read_feed_basis(case)
+        goes_to = {name: stage.name for stage in case.stage for name in stage.inlets}
+        recipes = tuple(replace(one, group=goes_to[one.name]) for one in read_feeds(case, find))
+        axes, basis = read_axes(case), read_feed_basis(case)
         rules: dict[str, Rules] = {}
         for k, stage in enumerate(case.stage):
             try:

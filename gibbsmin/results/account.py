@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.constants import STANDARD_TEMPERATURE
-from gibbsmin.practice.audit import Audit, audit
+from gibbsmin.practice.audit import ROUNDING, Audit, audit
 from gibbsmin.states.batch import Batch
 
 Floats = NDArray[np.float64]
@@ -70,6 +70,18 @@ class Account:
     def work(self, batch: Batch) -> Floats | None:
         """Shaft work put into the mixture, (states,), [J or W]; None where it is not known."""
         return self.exchanged(batch) if self.shaft else np.where(batch.certified, 0.0, np.nan)
+
+    def entropies_generated(self, batch: Batch) -> Floats | None:
+        """Entropy that every state generates, with its surroundings, (states,), [J/K or W/K]; as `audits` has it."""
+        heat = self.heat(batch)
+        if self.feed_entropy is None or heat is None or self.work(batch) is None:
+            return None
+        T, T0 = batch.temperature, self.surroundings_temperature
+        T_s = np.where(heat > 0.0, np.maximum(T, T0), np.minimum(T, T0))
+        T_s = T_s if self.source_temperature is None else np.full_like(T, self.source_temperature)
+        made = batch.entropy - self.feed_entropy - heat / T_s
+        turnover = np.abs(batch.entropy) + np.abs(self.feed_entropy) + np.abs(heat / T_s)
+        return np.where(np.abs(made) < ROUNDING * turnover, 0.0, made)
 
     def audits(self, batch: Batch, basis: str) -> list[Audit | None]:
         """Second-law account of every state; None where it is not certified, or a feed is not known.

@@ -169,6 +169,11 @@ class Result:
         return self.account.work(self.batch)
 
     @cached_property
+    def entropies_generated(self) -> Floats | None:
+        """Entropy that every state generates, (states,), [J/K or W/K]; None where that of a feed is not known."""
+        return self.account.entropies_generated(self.batch)
+
+    @cached_property
     def audits(self) -> list[Audit | None]:
         """Second-law account of every state."""
         return self.account.audits(self.batch, self.basis)
