@@ -10,6 +10,7 @@ import numpy as np
 from gibbsmin.practice.audit import Audit, audit
 from gibbsmin.results.account import Account
 from gibbsmin.results.spreadsheet import spreadsheet
+from gibbsmin.studies.labelled import Axis
 from gibbsmin.thermo.database import load
 
 SPECIES = ["H2", "H2O", "CO", "CO2", "CH4", "N2", "C2H4", "C(s):graphite", "H2O(l)"]
@@ -72,13 +73,6 @@ class FakeBatch:
 
 
 @dataclass
-class FakeAxis:
-    """Values of a varied input."""
-
-    values: Any
-
-
-@dataclass
 class FakeFeed:
     """A feed's amounts."""
 
@@ -107,9 +101,10 @@ class FakeResult:
         self.input_units = {"held.temperature": "degC"} if varied else {}
 
     @property
-    def axes(self) -> tuple[FakeAxis, ...]:
-        """The one varied input, if any."""
-        return tuple(FakeAxis(values) for values in self.inputs.values())
+    def axes(self) -> tuple[Axis, ...]:
+        """The one varied input, if any; of several each a value a state."""
+        along = "point" if len(self.inputs) > 1 else ""
+        return tuple(Axis(name, values, self.input_units[name], along) for name, values in self.inputs.items())
 
     def tables(self) -> dict[str, str]:
         """Write the one spreadsheet."""

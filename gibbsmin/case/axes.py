@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Annotated, Any, Final, Literal
 
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
 from pydantic import Field, field_validator, model_validator
 
 from gibbsmin.case.feed_schema import Feed
@@ -15,12 +17,14 @@ from gibbsmin.case.rules_schema import difference
 from gibbsmin.errors import InputError
 from gibbsmin.units import from_si, one_of, unit_of
 
-MAX_STATES: Final = 100_000
+Floats = NDArray[np.float64]
+
+MAX_STATES: Final = 10_000_000
 """Largest number of states that one case may ask for."""
 
 
 class Axis(Table):
-    """One input that is varied: from, to and points, or a list of values."""
+    """One input that is varied: from, to and points, or a list of values; of a random design from and to alone."""
 
     vary: Text = Field(
         description=(
@@ -35,7 +39,9 @@ class Axis(Table):
     )
     to: float | str | None = Field(default=None, description="Last value, included.", examples=["1000 degC", 4.0])
     points: Annotated[int, Field(ge=2, le=MAX_STATES)] | None = Field(
-        default=None, description="Number of values from first to last, both counted.", examples=[81]
+        default=None,
+        description="Number of values from first to last, both counted; left out where [design] draws at random.",
+        examples=[81],
     )
     values: list[float | str] | None = Field(
         default=None, description="The values one by one.", examples=[[2.0, 2.5, 3.0], ["1 bar", "10 bar"]]
@@ -59,14 +65,14 @@ class Axis(Table):
         extra = [*ends, *(["spacing"] if self.spacing != "linear" else [])]
         if self.values is not None and extra:
             raise RuleError(f"values lists every value; leave out {', '.join(extra)}", extra[0])
-        if self.values is None and len(ends) < 3:
+        if self.values is None and (self.start is None or self.to is None):
             raise RuleError("give from, to and points, or a list of values")
         if self.values is not None and not self.values:
             raise RuleError("lists no values; give at least one", "values")
         return self
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class AxisValues:
     """What one input takes in turn.
 
@@ -74,17 +80,58 @@ class AxisValues:
     ----------
     vary : str
         Path of the input, as in the case file.
-    values, unit : list of float, str
-        The values in an SI unit; ``"1"`` for ratios.
-    typed_values, typed_unit : list of float, str
-        The same in the unit that was typed.
+    values : array (n,)
+        The values, in ``unit``; where they are drawn at random, the first and the last that may be.
+    unit, typed_unit : str
+        An SI unit, ``"1"`` for ratios; and the one that was typed.
+    logarithmic : bool
+        Whether equal ratios lie between equal steps, rather than equal differences.
     """
 
     vary: str
-    values: list[float]
+    values: Floats
     unit: str
-    typed_values: list[float]
     typed_unit: str
+    logarithmic: bool = False
+
+    @property
+    def typed_values(self) -> Floats:
+        """The values in the unit that was typed, (n,)."""
+        return self.typed(self.values)
+
+    def at(self, places: NDArray[np.intp] | Floats) -> Floats:
+        """Values of some states.
+
+        Parameters
+        ----------
+        places : array (states,)
+            Numbers of values, from 0; or, where they are not whole numbers, shares of the range.
+
+        Returns
+        -------
+        array (states,)
+            In ``unit``.
+        """
+        if np.issubdtype(places.dtype, np.integer):
+            return np.asarray(self.values[places])
+        first, last = self.values[0], self.values[-1]
+        drawn = first * (last / first) ** places if self.logarithmic else first + (last - first) * places
+        return np.asarray(np.clip(drawn, min(first, last), max(first, last)))  # rounding must not lead beyond
+
+    def typed(self, values: Floats) -> Floats:
+        """Turn values of the input into the unit that was typed, to twelve figures."""
+        if self.typed_unit == self.unit:
+            return values
+        zero = from_si(0.0, self.typed_unit)
+        raw = zero + values * ((from_si(1e3, self.typed_unit) - zero) / 1e3)
+        size = np.where(raw == 0.0, 1.0, np.abs(raw))
+        decimals = 11 - np.floor(np.log10(size))
+        scale = 10.0 ** np.abs(decimals)  # whole up to 1e22, so that dividing by it gives the nearest decimal
+        return np.asarray(np.where(decimals >= 0.0, np.round(raw * scale) / scale, np.round(raw / scale) * scale))
+
+    def only(self, values: ArrayLike) -> AxisValues:
+        """Return the same input with other values, in ``unit``."""
+        return replace(self, values=np.asarray(values, float))
 
 
 def axis_values(axis: Axis, inputs: Mapping[str, Limits], feeds: Mapping[str, Feed]) -> AxisValues:
@@ -111,22 +158,24 @@ def axis_values(axis: Axis, inputs: Mapping[str, Limits], feeds: Mapping[str, Fe
     limits = limits_of(axis.vary, inputs, feeds)
     if axis.values is None:
         found = [_read(axis.start, limits, "from"), _read(axis.to, limits, "to")]
-        values = _between(axis, found[0][0], found[1][0])
         first = axis.start
     else:
         found = [_read(value, limits, "values", k) for k, value in enumerate(axis.values)]
-        values = [value for value, _ in found]
         first = axis.values[0]
-    unit = found[0][1]
+    listed, unit = [value for value, _ in found], found[0][1]
     if any(other != unit for _, other in found):
         raise RuleError("the values are part amounts of substance, part masses; use one kind")
-    if len(set(values)) < len(values):
+    if len(set(listed)) < len(listed):
         raise RuleError("two values are the same; give each once", "to" if axis.values is None else "values")
-    if limits.difference:
-        return AxisValues(axis.vary, values, unit, values, unit)
-    typed_unit = (unit_of(first) if first is not None else "") or unit
-    typed = values if typed_unit == unit else [float(f"{from_si(value, typed_unit):.12g}") for value in values]
-    return AxisValues(axis.vary, values, unit, typed, typed_unit)
+    typed_unit = unit if limits.difference else (unit_of(first) if first is not None else "") or unit
+    made = AxisValues(axis.vary, np.array(listed), unit, typed_unit, axis.spacing == "logarithmic")
+    if made.logarithmic and min(listed) <= 0.0:
+        raise RuleError("logarithmic spacing needs values above zero", "spacing")
+    if axis.points is None:
+        return made
+    values = made.at(np.arange(axis.points) / (axis.points - 1))
+    values[-1] = listed[-1]
+    return made.only(values)
 
 
 def _read(value: float | str | None, limits: Limits, *key: str | int) -> tuple[float, str]:
@@ -145,13 +194,3 @@ def _read(value: float | str | None, limits: Limits, *key: str | int) -> tuple[f
     if found > limits.highest:
         raise RuleError(f"{value} is too high; expected at most {limits.highest:g}{shown}", *key)
     return found, unit
-
-
-def _between(axis: Axis, first: float, last: float) -> list[float]:
-    """Values from first to last, both included."""
-    count = axis.points or 2
-    if axis.spacing == "linear":
-        return [first + (last - first) * k / (count - 1) for k in range(count - 1)] + [last]
-    if first <= 0.0 or last <= 0.0:
-        raise RuleError("logarithmic spacing needs values above zero", "spacing")
-    return [first * (last / first) ** (k / (count - 1)) for k in range(count - 1)] + [last]

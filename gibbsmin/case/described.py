@@ -14,9 +14,11 @@ from gibbsmin.constants import ATMOSPHERE, STANDARD_TEMPERATURE
 from gibbsmin.errors import FeedError
 from gibbsmin.practice.feeds.air import WATER_MOLAR_MASS, dew_point, humidity_ratio
 from gibbsmin.practice.feeds.heating import AT_15_CELSIUS, heating_value
+from gibbsmin.studies.designs import RANDOM
 
 if TYPE_CHECKING:
     from gibbsmin.case.study import Study
+    from gibbsmin.case.study_frame import StudyFrame
 
 _WATER: Final = {"H": 2.0, "O": 1.0}
 _BURNS: Final = 1e3  # J/mol; a lower heating value below it is rounding, or the evaporation of water
@@ -38,9 +40,8 @@ def describe(study: Study) -> dict[str, Any]:
         a dict each, by reference temperature in K), ``fuels`` (by analysis: name to what
         `describe_fuel` gives), ``ratios`` (see `feed_ratios`), ``moisture`` (of gas with water
         vapour in it, by feed: ``mole_fraction``, ``humidity_ratio``, ``dew_point`` and the ``pressure`` that it is
-        at), ``held`` (as typed), ``remark``, ``sweep`` (a dict each: ``vary``,
-        ``first``, ``last``, ``unit``, ``points``), ``states``, ``units`` (as typed). SI throughout, save for what is
-        typed.
+        at), ``held`` (as typed), ``remark``, ``sweep``, ``design`` and ``states`` (see `describe_sweep`), ``units``
+        (as typed). SI throughout, save for what is typed.
     """
     system, case = study.system, study.case
     gas = list(map(bool, system.gas))
@@ -64,19 +65,42 @@ def describe(study: Study) -> dict[str, Any]:
         "feeds": [feed.to_dict() for feed in study.feeds.values()],
         **describe_recipes(study.recipes),
         "held": case.held.model_dump(exclude_none=True),
-        "remark": study.conditions.account.remark,
+        "remark": study.beginning().conditions.account.remark,
+        **describe_sweep(study),
+        "units": shown_units(case, study.basis),
+    }
+
+
+def describe_sweep(study: StudyFrame) -> dict[str, Any]:
+    """Say what is varied, and how.
+
+    Parameters
+    ----------
+    study : StudyFrame
+
+    Returns
+    -------
+    dict
+        ``sweep`` (a dict each: ``vary``, ``first``, ``last``, ``unit``, ``points`` - how many values there are, all
+        those of the design where they are drawn at random - and ``logarithmic``), ``design`` (``kind``, and of a random
+        one ``points`` and ``seed``), ``states``.
+    """
+    design = study.design
+    drawn = {"points": study.all_states, "seed": design.seed} if design.kind in RANDOM else {}
+    return {
         "sweep": [
             {
                 "vary": axis.vary,
-                "first": axis.typed_values[0],
-                "last": axis.typed_values[-1],
+                "first": float(axis.typed_values[0]),
+                "last": float(axis.typed_values[-1]),
                 "unit": axis.typed_unit,
-                "points": len(axis.values),
+                "points": points,
+                "logarithmic": axis.logarithmic,
             }
-            for axis in study.axes
+            for axis, points in zip(study.axes, design.sizes, strict=True)
         ],
-        "states": study.states,
-        "units": shown_units(case, study.basis),
+        "design": {"kind": design.kind, **drawn},
+        "states": study.all_states,
     }
 
 

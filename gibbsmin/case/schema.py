@@ -8,7 +8,8 @@ from typing import Final, Literal
 
 from pydantic import Field, model_validator
 
-from gibbsmin.case.axes import MAX_STATES, Axis, axis_values
+from gibbsmin.case.axes import Axis, axis_values
+from gibbsmin.case.design_schema import DesignTable, read_design
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.fields import Number, RuleError, Table, Text
 from gibbsmin.case.flue_gas_schema import FlueGasTable
@@ -17,9 +18,6 @@ from gibbsmin.case.inputs import Limits, inputs
 from gibbsmin.case.key_sets import KeySet
 from gibbsmin.case.rules_schema import Approach, Constraint
 from gibbsmin.case.species_schema import SpeciesTable
-
-MAX_AXES: Final = 2
-"""Largest number of inputs that one case may vary."""
 
 NAME: Final = r"^[A-Za-z0-9_-]{1,40}$"
 """What the name of a feed, a reaction or a constraint may be."""
@@ -69,8 +67,13 @@ class CaseFrame(Table):
     )
     sweep: list[Axis] = Field(
         default=[],
-        description="Inputs that are varied, one [[sweep]] table each; the last one varies fastest.",
+        description="Inputs that are varied, one [[sweep]] table each; in a grid the last one varies fastest.",
         examples=[[{"vary": "held.temperature", "from": "600 degC", "to": "1000 degC", "points": 81}]],
+    )
+    design: DesignTable = Field(
+        default=DesignTable(),
+        description="The table [design]: how the values of the varied inputs are put together.",
+        examples=[{"kind": "latin hypercube", "points": 1000, "seed": 1}],
     )
     show: Show = Field(
         default=Show(),
@@ -97,14 +100,13 @@ class CaseFrame(Table):
     def _rules_between_tables(self) -> CaseFrame:
         if not self.feeds:
             raise RuleError("there are no feeds; add at least one table [feeds.NAME]", "feeds")
-        if len(self.sweep) > MAX_AXES:
-            raise RuleError(f"{len(self.sweep)} inputs are varied; at most {MAX_AXES} can be", "sweep", MAX_AXES)
         for table, kind, names in self.named():
             for name in names:
                 if not re.search(NAME, name):
                     message = f"{name!r} will not do as the name of a {kind}; use up to 40 letters, digits, _ and -"
                     raise RuleError(message, table, name)
         self.check()
+        read_design(self.design, self.sweep)
         for number, axis in enumerate(self.sweep):
             if axis.vary in [earlier.vary for earlier in self.sweep[:number]]:
                 raise RuleError(f"{axis.vary} is varied twice", "sweep", number, "vary")
@@ -112,11 +114,6 @@ class CaseFrame(Table):
                 axis_values(axis, self.inputs(), self.feeds)
             except RuleError as error:
                 raise RuleError(error.message, "sweep", number, *error.key) from None
-        states = 1
-        for axis in self.sweep:
-            states *= axis.points or len(axis.values or [])
-        if states > MAX_STATES:
-            raise RuleError(f"the sweep has {states:,} states; at most {MAX_STATES:,} can be solved", "sweep", 0)
         return self
 
 

@@ -16,14 +16,15 @@ from gibbsmin.case.described import describe
 from gibbsmin.case.feed_states import FeedStates, feed_facts
 from gibbsmin.case.fields import RuleError
 from gibbsmin.case.flue_gas import closed_feeds, frozen, setting
+from gibbsmin.case.large import LARGE, Archived, Ways, run_large
 from gibbsmin.case.rules import Rules, read_rules
 from gibbsmin.case.schema import Case
 from gibbsmin.case.selection import choose_system, element_row, finder
 from gibbsmin.case.shown import shown_units
 from gibbsmin.case.sizes import feed_units
 from gibbsmin.case.source import dotted
-from gibbsmin.case.study_frame import StudyFrame, read_axes, read_feed_basis, read_feeds
-from gibbsmin.errors import CaseError, nearest
+from gibbsmin.case.study_frame import StudyFrame, read_feed_basis, read_feeds, read_varied
+from gibbsmin.errors import CaseError, InputError, nearest
 from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.practice.flue_gas.flue_gas import flue_gas
 from gibbsmin.results.folder import check_place, write_folder
@@ -79,17 +80,20 @@ class Study(StudyFrame):
             A name is not known, an element has no place, or a feed cannot be sized; with the key.
         """
         find = finder(own)
-        recipes, axes, basis = read_feeds(case, find), read_axes(case), read_feed_basis(case)
+        recipes, basis = read_feeds(case, find), read_feed_basis(case)
+        axes, design = read_varied(case)
         rules = read_rules(case, find, own)
         system = choose_system(case.species, recipes, own, rules)
         study = cls(
-            case=case, system=system, rules=rules, recipes=recipes, axes=axes, basis=basis, path=path, sha256=sha256
-        )
+            case=case, system=system, rules=rules,
+            recipes=recipes, axes=axes, design=design, basis=basis, path=path, sha256=sha256,
+        )  # fmt: skip
+        tried = study.tried()
         try:
-            study.element_rows, study.units  # noqa: B018 - made here so that what is wrong shows before anything runs
+            tried.element_rows, tried.units  # noqa: B018 - made here so that what is wrong shows before anything runs
         except RuleError as error:
             raise RuleError(error.message, "feeds", *error.key) from None
-        study.conditions, study.element_amounts  # noqa: B018 - likewise
+        tried.conditions, tried.element_amounts  # noqa: B018 - likewise
         return study
 
     @cached_property
@@ -163,19 +167,67 @@ class Study(StudyFrame):
         Raises
         ------
         InputError
-            The folder cannot be written, or holds something that is not a result.
+            The folder cannot be written, or holds something that is not a result; or there are more states than are
+            kept in memory: see `run_into`.
         CaseError
             No air gives the flue gas its oxygen, or no returned flue gas is steady.
         """
+        if self.is_large:
+            raise InputError(f"{self.all_states:,} states are kept on disk, not in memory; use run_into(folder)")
         if out is not None:
             check_place(Path(out))
-        try:
-            result = self._solve(progress)
-        except RuleError as error:  # what only solving tells
-            raise CaseError(error.message, self.path, dotted(error.key)) from None
+        result = self.solved(progress)
         if out is not None:
             write_folder(result, judge(result), Path(out))
         return result
+
+    @property
+    def is_large(self) -> bool:
+        """Whether there are more states than are kept in memory."""
+        return self.all_states > LARGE
+
+    def run_into(
+        self,
+        out: str | Path,
+        progress: Progress | None = None,
+        *,
+        workers: int = 1,
+        resume: bool = False,
+        cluster: str = "",
+    ) -> Archived:
+        """Solve a study of any size part by part, its states kept on disk.
+
+        Parameters
+        ----------
+        out : str or Path
+            Result folder.
+        progress : callable, optional
+            Called with the states done and all states.
+        workers : int
+            Processes on this machine.
+        resume : bool
+            Whether to go on from the parts of a run that was interrupted.
+        cluster : str
+            Address of the scheduler of a Dask cluster to solve on; empty for this machine.
+
+        Returns
+        -------
+        Archived
+
+        Raises
+        ------
+        InputError
+            The folder cannot be written, or holds something that is not a result; parts of another study are there;
+            the cluster does not answer.
+        """
+        return run_large(self, Path(out), Ways(workers, resume, cluster), progress)
+
+    def solved(self, progress: Progress | None = None) -> Result:
+        """Solve all states in memory; as `run`, without a folder."""
+        try:
+            return self._solve(progress)
+        except RuleError as error:  # what only solving tells
+            raise CaseError(error.message, self.path, dotted(error.key)) from None
 
     def _solve(self, progress: Progress | None) -> Result:
         """Solve all states."""
@@ -204,7 +256,7 @@ class Study(StudyFrame):
             axes=self.typed_axes,
             batch=batch,
             display_units=shown_units(self.case, self.basis),
-            feeds=self._feed_amounts(feeds.units[0]) if self.states == 1 else self.feeds,
+            feeds=self._feed_amounts(feeds.units[0]) if self.all_states == 1 else self.feeds,
             held=held,
             account=conditions.account,
         )

@@ -5,7 +5,7 @@ from __future__ import annotations
 from math import isfinite
 from typing import TYPE_CHECKING, Any
 
-from gibbsmin.case.described import describe_recipes
+from gibbsmin.case.described import describe_recipes, describe_sweep
 from gibbsmin.case.shown import shown_units
 from gibbsmin.states.system import System
 from gibbsmin.studies.train.stream import Stream
@@ -32,12 +32,12 @@ def describe_train(study: TrainStudy) -> dict[str, Any]:
         solved: ``name``, ``inlets``, ``recycled``, ``held`` (as typed) or None, ``frozen``, ``sides``, ``approach``
         and ``constraint`` (as typed), ``settling`` (the list that says what takes part) or None, ``species`` (names:
         ``gas`` and ``condensed`` that may form, and what ``passes``) or None where nothing settles), ``products``,
-        ``sweep``, ``states``, ``units``.
+        ``sweep``, ``design``, ``states``, ``units``.
         SI throughout, save for what is typed.
     """
     case = study.case
     by_name = {stage.name: stage for stage in case.stage}
-    streams = study.feed_streams()
+    streams = study.beginning().feed_streams()
     feeds = list(streams.values())
     symbols = dict.fromkeys(symbol for stream in feeds for symbol in (*stream.substances.elements, *stream.atoms))
     taken = {name for stage in case.stage for name in (*stage.inlets, *stage.recycled)}
@@ -79,17 +79,7 @@ def describe_train(study: TrainStudy) -> dict[str, Any]:
         ],
         "stages": stages,
         "products": [name for name in outlets if name not in taken],
-        "sweep": [
-            {
-                "vary": axis.vary,
-                "first": axis.typed_values[0],
-                "last": axis.typed_values[-1],
-                "unit": axis.typed_unit,
-                "points": len(axis.values),
-            }
-            for axis in study.axes
-        ],
-        "states": study.states,
+        **describe_sweep(study),
         "units": shown_units(case, study.basis),
     }
 

@@ -19,7 +19,7 @@ from gibbsmin.case.shown import shown_units
 from gibbsmin.case.source import dotted
 from gibbsmin.case.species_schema import SpeciesTable
 from gibbsmin.case.stage_schema import Stage, StageHeld
-from gibbsmin.case.study_frame import StudyFrame, read_axes, read_feed_basis, read_feeds
+from gibbsmin.case.study_frame import StudyFrame, read_feed_basis, read_feeds, read_varied
 from gibbsmin.case.train_described import describe_train
 from gibbsmin.case.train_schema import TrainCase, nodes
 from gibbsmin.errors import CaseError, InputError
@@ -96,7 +96,7 @@ class TrainStudy(StudyFrame):
         find = finder(own)
         goes_to = {name: stage.name for stage in case.stage for name in stage.inlets}
         recipes = tuple(replace(one, group=goes_to[one.name]) for one in read_feeds(case, find))
-        axes, basis = read_axes(case), read_feed_basis(case)
+        (axes, design), basis = read_varied(case), read_feed_basis(case)
         rules: dict[str, Rules] = {}
         for k, stage in enumerate(case.stage):
             try:
@@ -106,14 +106,15 @@ class TrainStudy(StudyFrame):
         systems, present = _systems(case, recipes, rules, own)
         study = cls(
             case=case, systems=systems, rules=rules, substances=Substances(present),
-            recipes=recipes, axes=axes, basis=basis, path=path, sha256=sha256,
+            recipes=recipes, axes=axes, design=design, basis=basis, path=path, sha256=sha256,
         )  # fmt: skip
+        tried = study.tried()
         try:
-            study.units  # noqa: B018 - made here so that what is wrong shows before anything runs
+            tried.units  # noqa: B018 - made here so that what is wrong shows before anything runs
         except RuleError as error:
             raise RuleError(error.message, "feeds", *error.key) from None
-        study.steps(find)
-        study._check_temperatures()
+        tried.steps(find)
+        tried._check_temperatures()
         return study
 
     @property

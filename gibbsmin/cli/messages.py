@@ -76,21 +76,33 @@ class Progress:
     def __init__(self, what: str) -> None:
         self._what = what
         self._start = time.monotonic()
+        self._first: int | None = None
         self._bar: Any = None
         self._task: Any = None
 
     def __call__(self, done: int, total: int) -> None:
         """Show that ``done`` of ``total`` states are solved."""
+        self._first = done if self._first is None else self._first
         if self._bar is None:
             if not sys.stderr.isatty() or time.monotonic() - self._start < _PATIENCE:
                 return
             from rich.console import Console
+            from rich.progress import BarColumn, MofNCompleteColumn, TextColumn, TimeRemainingColumn
             from rich.progress import Progress as Bar
 
-            self._bar = Bar(console=Console(stderr=True), transient=True)
-            self._task = self._bar.add_task(self._what, total=total)
+            self._bar = Bar(
+                TextColumn("{task.description}"),
+                BarColumn(),
+                MofNCompleteColumn(),
+                TextColumn("{task.fields[rate]}"),
+                TimeRemainingColumn(),
+                console=Console(stderr=True),
+                transient=True,
+            )
+            self._task = self._bar.add_task(self._what, total=total, rate="")
             self._bar.start()
-        self._bar.update(self._task, completed=done)
+        rate = (done - self._first) / max(time.monotonic() - self._start, 1e-9)
+        self._bar.update(self._task, completed=done, rate=f"{rate:,.0f} a second")
 
     def close(self) -> None:
         """Take the bar away."""

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Annotated, Any
 
 import typer
 
-from gibbsmin.cli.messages import NOT_CERTIFIED, WRONG, Progress, guarded, say
+from gibbsmin.cli.messages import INTERRUPTED, NOT_CERTIFIED, WRONG, Progress, guarded, say
 from gibbsmin.cli.messages import show as show_lines
 from gibbsmin.errors import GibbsminError, InputError
 
@@ -28,6 +28,16 @@ def run(
         ),
     ] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print the result as JSON and nothing else.")] = False,
+    workers: Annotated[
+        int | None,
+        typer.Option(min=1, max=256, help="Processes for more than 20,000 states. Default: all processors."),
+    ] = None,
+    resume: Annotated[
+        bool, typer.Option("--resume", help="Go on with an interrupted run of more than 20,000 states.")
+    ] = False,
+    cluster: Annotated[
+        str, typer.Option(metavar="ADDRESS", help="Solve them on the Dask cluster of this scheduler.")
+    ] = "",
     quiet: Annotated[bool, typer.Option("--quiet", "-q", help="Print no tables; errors still show.")] = False,
 ) -> None:
     """Solve each case, print its table, and write its result folder.
@@ -47,7 +57,11 @@ def run(
     for number, (study, folder) in enumerate(zip(studies, folders, strict=True)):
         if number and not as_json and not quiet:
             typer.echo("")
-        data, good = _solve(study, folder, show=not as_json and not quiet)
+        show = not as_json and not quiet
+        if getattr(study, "is_large", False):
+            data, good = _solve_large(study, folder, show, workers, resume, cluster)
+        else:
+            data, good = _solve(study, folder, show)
         documents.append(data)
         certified = certified and good
     if as_json:
@@ -81,6 +95,31 @@ def _read(cases: list[Path]) -> list[Study | TrainStudy]:
     if wrong:
         raise typer.Exit(WRONG)
     return studies
+
+
+def _solve_large(
+    study: Any, folder: Path, show: bool, workers: int | None, resume: bool, cluster: str
+) -> tuple[dict[str, Any], bool]:
+    """Solve a study whose states are kept on disk; the document, and whether all states are certified."""
+    from gibbsmin.case.large import cores
+    from gibbsmin.report.large_summary import large_summary
+
+    progress = Progress("solving")
+    try:
+        done = study.run_into(
+            folder, progress, workers=cores() if workers is None else workers, resume=resume, cluster=cluster
+        )
+    except KeyboardInterrupt:
+        say("gibbsmin: stopped; what is solved is kept, run again with --resume to go on")
+        raise typer.Exit(INTERRUPTED) from None
+    finally:
+        progress.close()
+    if show:
+        show_lines(large_summary(done.document, folder))
+    if not done.all_certified:
+        failed = done.document["count"] - done.document["certified"]
+        say(f"gibbsmin: {failed} of {done.document['count']} states could not be certified; the rest is written")
+    return done.document, done.all_certified
 
 
 def _solve(study: Study | TrainStudy, folder: Path, show: bool) -> tuple[dict[str, Any], bool]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from math import isfinite
+from string import ascii_uppercase
 from typing import TYPE_CHECKING, Final, NamedTuple
 
 import numpy as np
@@ -19,6 +20,7 @@ if TYPE_CHECKING:
     from gibbsmin.results.result import Result
 
 _GAP: Final = 2
+_NAMES: Final = 48  # columns of a row that the varied inputs may take by their names; wider, letters stand for them
 _IN_PPM: Final = 1e-3  # a gas species that stays below it is shown in ppm
 _SHOWN: Final = 1e-6  # one that stays below this is not shown
 
@@ -73,6 +75,26 @@ def drawn(columns: Sequence[Column]) -> list[str]:
     return [
         "".join(f"{text:>{column.width}}" for text, column in zip(row, columns, strict=True)).rstrip() for row in rows
     ]
+
+
+def lettered(columns: Sequence[Column]) -> tuple[list[Column], list[str]]:
+    """Put letters in place of the names of inputs where these leave too little room for what is found.
+
+    Parameters
+    ----------
+    columns : sequence of Column
+        The varied inputs.
+
+    Returns
+    -------
+    columns : list of Column
+    letters : list of str
+        The letter of each; empty where it keeps its name.
+    """
+    if sum(column.width for column in columns) <= _NAMES:
+        return list(columns), [""] * len(columns)
+    letters = list(ascii_uppercase[: len(columns)])
+    return [column._replace(head=letter) for column, letter in zip(columns, letters, strict=True)], letters
 
 
 def input_columns(result: Result, shown: NDArray[np.intp]) -> list[Column]:

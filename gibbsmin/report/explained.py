@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from math import isfinite
 from typing import Any, Final
 
+from gibbsmin.report.design_words import design_words
 from gibbsmin.report.fuel_sheet import fuel_sheet
 from gibbsmin.report.held_words import held_words
 from gibbsmin.report.numbers import figures, plain
@@ -69,13 +70,20 @@ def feeds_explained(told: Mapping[str, Any]) -> list[str]:
 
 
 def states_explained(told: Mapping[str, Any]) -> list[str]:
-    """Say what is varied, and how many states there are to solve; ``told`` as for `feeds_explained`."""
+    """Say what is varied and how, and how many states there are to solve; ``told`` as for `feeds_explained`."""
     lines = []
+    design = told["design"]
+    drawn = "seed" in design
     for axis in told["sweep"]:
         span = f"{plain(axis['first'])} to {plain(axis['last'])} {axis['unit']}".removesuffix(" 1")
-        lines += labelled("varied", f"{axis['vary']}, {axis['points']} values from {span}")
+        values = f"from {span}" if drawn else f"{axis['points']:,} values from {span}"
+        lines += labelled("varied", f"{axis['vary']}, {values}{', logarithmic' if axis['logarithmic'] else ''}")
+    sizes = " x ".join(f"{axis['points']:,}" for axis in told["sweep"])
+    how = design_words(design) or f"grid of {sizes}: each value with each"
+    if len(told["sweep"]) > 1 or drawn:
+        lines += labelled("design", how)
     count = told["states"]
-    return [*lines, *labelled("to solve", f"{count} state{'s' if count != 1 else ''}; nothing was solved yet")]
+    return [*lines, *labelled("to solve", f"{count:,} state{'s' if count != 1 else ''}; nothing was solved yet")]
 
 
 def _feed(feed: Mapping[str, Any], basis: str, mass: str, units: Mapping[str, str]) -> list[str]:

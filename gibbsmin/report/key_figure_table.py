@@ -52,7 +52,8 @@ def shown_value(figure: KeyFigure, value: float) -> str:
     """
     if not np.isfinite(value):
         return MISSING
-    scaled = value * _SCALES.get(figure.shown, 1.0) - _ZERO.get(figure.shown, 0.0)
+    factor, zero = in_shown_unit(figure.shown)
+    scaled = value * factor - zero
     if figure.shown in ("", "W", "J") and figure.unit in ("W", "J"):
         return prefixed(value, figure.unit)
     if figure.shown == "degC":
@@ -60,6 +61,17 @@ def shown_value(figure: KeyFigure, value: float) -> str:
     if figure.shown == "%":
         return f"{scaled:.2f}" if abs(scaled) >= 0.01 or scaled == 0.0 else f"{scaled:.1e}"
     return figures(scaled, _COUNT.get(figure.shown, 4))
+
+
+def in_shown_unit(shown: str) -> tuple[float, float]:
+    """Tell how a value in SI becomes one in the unit ``shown``: factor, and what is then taken off.
+
+    Examples
+    --------
+    >>> in_shown_unit("%"), in_shown_unit("degC"), in_shown_unit("")
+    ((100.0, 0.0), (1.0, 273.15), (1.0, 0.0))
+    """
+    return _SCALES.get(shown, 1.0), _ZERO.get(shown, 0.0)
 
 
 def shown_unit(figure: KeyFigure) -> str:

@@ -3,13 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from itertools import pairwise
 from typing import TYPE_CHECKING, NamedTuple
 
 import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.studies.labelled import dimensions
 
 if TYPE_CHECKING:
     from gibbsmin.results.result import Result
+
+Bools = NDArray[np.bool_]
 
 
 class Onset(NamedTuple):
@@ -43,31 +47,43 @@ def onsets(result: Result) -> list[Onset]:
     Parameters
     ----------
     result : Result
+        Of a grid, or of inputs in step.
 
     Returns
     -------
     list of Onset
-        In the order of the other inputs, then of that one. States that are not certified end a line.
+        In the order of the other inputs, then of that one. States that are not certified end a line. Where inputs go
+        in step, the line is that of the points, and no other input stays the same.
     """
-    names = list(result.inputs)
-    if not names:
+    sizes = dimensions(result.axes)
+    if not sizes:
         return []
+    names = [axis.name for axis in result.axes]
     axis = "held.temperature" if "held.temperature" in names else names[-1]
-    rest = [name for name in names if name != axis]
-    values = np.asarray(result.inputs[axis], float)  # (states,)
-    groups: dict[tuple[float, ...], list[int]] = {}
-    for i in range(len(values)):
-        groups.setdefault(tuple(float(result.inputs[name][i]) for name in rest), []).append(i)
-    system, amounts, certified = result.system, result.batch.amounts, result.batch.certified
-    condensed = [(k, name) for k, name in enumerate(system.species) if not system.gas[k]]
-    changing = [(k, name) for k, name in condensed if np.unique(amounts[certified, k] > 0.0).size == 2]
+    along = result.axes[names.index(axis)]
+    place = list(sizes).index(along.dimension)
+    rest = [other for other in result.axes if other.dimension != along.dimension]
+    values = np.asarray(along.values, float)
+    order = np.argsort(values, kind="stable") if len(sizes) == len(names) else np.arange(len(values))
+
+    def lines(states: Bools) -> Bools:
+        grid = np.moveaxis(states.reshape(tuple(sizes.values())), place, -1)
+        return grid.reshape(-1, len(values))[:, order]  # (lines, values)
+
+    values = values[order]
+    known = lines(np.asarray(result.batch.certified, bool))
     found = []
-    for key, members in groups.items():
-        order = sorted(members, key=lambda i: values[i])
-        for k, name in changing:
-            for i, j in pairwise(order):
-                here, there = amounts[i, k] > 0.0, amounts[j, k] > 0.0
-                if here != there and certified[i] and certified[j]:
-                    others = dict(zip(rest, key, strict=True))
-                    found.append(Onset(name, axis, float(values[i]), float(values[j]), bool(there), others))
-    return found
+    for k, name in enumerate(result.system.species):
+        if result.system.gas[k] or not result.batch.amounts[:, k].any():
+            continue
+        here = lines(result.batch.amounts[:, k] > 0.0)
+        changes = (here[:, :-1] != here[:, 1:]) & known[:, :-1] & known[:, 1:]
+        found += [(int(line), k, int(i), name, bool(here[line, i + 1])) for line, i in np.argwhere(changes)]
+    told = []
+    for line, _, i, name, appears in sorted(found):
+        index = np.unravel_index(line, tuple(len(other.values) for other in rest))
+        others = {other.name: float(other.values[at]) for other, at in zip(rest, index, strict=True)}
+        low, high = float(values[i]), float(values[i + 1])
+        rising = low < high
+        told.append(Onset(name, axis, *((low, high) if rising else (high, low)), appears == rising, others))
+    return told

@@ -10,13 +10,15 @@ from numpy.typing import NDArray
 
 from gibbsmin.errors import UnitError
 from gibbsmin.practice.figures.key_figure import KeyFigure
-from gibbsmin.report.columns import Column, drawn, fitting, short, unit_word
+from gibbsmin.report.columns import Column, drawn, fitting, lettered, short, unit_word
+from gibbsmin.report.design_words import varied_lines
 from gibbsmin.report.numbers import MISSING, figures, plain
 from gibbsmin.report.sweep_table import chosen
 from gibbsmin.report.train_steps import energy_scale, scaled
-from gibbsmin.report.words import labelled, shortened
+from gibbsmin.report.words import shortened
 from gibbsmin.results.stream_sheet import Entry
 from gibbsmin.results.train_result import TrainResult
+from gibbsmin.studies.labelled import dimensions
 from gibbsmin.studies.train.account import WHOLE
 from gibbsmin.units import from_si, quantity
 
@@ -45,10 +47,11 @@ def train_sweep(result: TrainResult) -> list[str]:
     list of str
         None longer than 80 columns.
     """
-    shown = chosen([len(axis.values) for axis in result.axes])
-    lines = [*labelled("varied", " and ".join(result.inputs)), "", "whole train, and outlets whose temperature moves"]
-    inputs = _inputs(result, shown)
-    lines += drawn(fitting([*inputs, *_energies(result, shown)], _temperatures(result, shown)))
+    shown = chosen(list(dimensions(result.axes).values()))
+    inputs, letters = lettered(_inputs(result, shown))
+    lines = varied_lines(dict(zip(result.inputs, letters, strict=True)), result.case.get("design", {}))
+    lines += ["", "whole train, and outlets whose temperature moves"]
+    lines += drawn(fitting(inputs, [*_energies(result, shown), *_temperatures(result, shown)]))
     sheet = result.sheet
     by_mass = sorted(sheet.products, key=lambda name: -np.nanmax([0.0, *sheet.streams[name].mass]))
     gases = [name for name in by_mass if np.any(sheet.streams[name].gas_total > 0.0)][:PRODUCTS]
@@ -56,14 +59,14 @@ def train_sweep(result: TrainResult) -> list[str]:
         stream = sheet.streams[name]
         water = np.nan_to_num(stream.amounts[:, stream.water]).any()
         lines += ["", f"{name}, gas in mole %{' wet' if water else ''}"]
-        lines += drawn(fitting([*inputs, *_flows(result, stream, shown)], _shares(result, stream, shown)))
+        lines += drawn(fitting(inputs, [*_flows(result, stream, shown), *_shares(result, stream, shown)]))
     rest = _masses(result, [name for name in by_mass if name not in gases], shown)
     while rest:
         table = fitting(inputs, rest)
         rest = rest[max(1, len(table) - len(inputs)) :]
         lines += ["", f"{'other ' if gases else ''}products, by mass", *drawn(table)]
     if len(shown) < len(result):
-        lines += ["", f"{len(shown)} of {len(result)} states; table.csv has them all"]
+        lines += ["", f"{len(shown)} of {len(result):,} states; table.csv has them all"]
     return lines
 
 

@@ -108,7 +108,7 @@ def write_folder(result: Written, judged: Sequence[Sequence[Caution]], folder: P
             (fresh / name).write_text(text, encoding="utf-8", newline="")
         if result.inputs:
             result.dataset().to_netcdf(fresh / "result.nc", engine="h5netcdf")
-        _exchange(fresh, target, work / "old")
+        exchange(fresh, target, work / "old")
     except OSError as error:
         raise InputError(f"cannot write results to {folder}: {error.strerror or error}") from error
     finally:
@@ -123,7 +123,7 @@ def as_json(data: Any) -> str:
     return json.dumps(data, ensure_ascii=False, allow_nan=False, **layout) + "\n"
 
 
-def _exchange(fresh: Path, target: Path, old: Path) -> None:
+def exchange(fresh: Path, target: Path, old: Path) -> None:
     """Put ``fresh`` in the place of ``target``; bring the old one back if that fails."""
     if not target.exists():
         fresh.rename(target)

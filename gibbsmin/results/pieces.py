@@ -17,6 +17,9 @@ Floats = NDArray[np.float64]
 KEPT: Final = 1e-12
 """Mole fraction that a species must reach in one of the states looked at beforehand, to be kept [-]."""
 
+SHOWN: Final = 1e-6
+"""Mole fraction that a species must reach there to have a column in the CSV file [-]."""
+
 
 @dataclass(frozen=True)
 class Variable:
@@ -41,12 +44,15 @@ class Layout:
         Species that are not.
     gas : tuple of bool
         Which of ``species`` are of the gas.
+    shown : tuple of bool
+        Which of them the CSV file has; the data set has all.
     """
 
     variables: tuple[Variable, ...]
     species: tuple[str, ...]
     left_out: tuple[str, ...]
     gas: tuple[bool, ...]
+    shown: tuple[bool, ...]
 
 
 _STATE: Final = (
@@ -63,18 +69,19 @@ _STATE: Final = (
 _RATES: Final = {"m3": "m3/s", "J": "W", "J/K": "W/K"}
 
 
-def layout_of(result: Result) -> Layout:
+def layout_of(results: Sequence[Result]) -> Layout:
     """Choose what is kept, from states looked at beforehand.
 
     Parameters
     ----------
-    result : Result
+    results : sequence of Result
         Some states of the study, spread over all of it.
 
     Returns
     -------
     Layout
     """
+    result = results[0]
     flow = result.basis == "mol/s"
     variables = [Variable(name, _RATES.get(unit, unit) if flow else unit, text) for name, unit, text in _STATE]
     energy, per_K = ("W", "W/K") if flow else ("J", "J/K")
@@ -84,14 +91,25 @@ def layout_of(result: Result) -> Layout:
         variables.append(Variable("work", energy, "shaft work to be supplied"))
     if result.entropies_generated is not None:
         variables.append(Variable("entropy_generated", per_K, "entropy generated in the system and its surroundings"))
-    for group, figures in result.key_figures.items():
-        variables += [Variable(f"{group}.{one.name}", one.unit, one.label) for one in figures]
+    figures = {
+        f"{group}.{one.name}": Variable(f"{group}.{one.name}", one.unit, one.label)
+        for each in results
+        for group, ones in each.key_figures.items()
+        for one in ones
+    }
+    variables += figures.values()
     gas = np.asarray(result.system.gas, bool)
-    amounts = np.nan_to_num(result.batch.amounts)
+    amounts = np.nan_to_num(np.concatenate([one.batch.amounts for one in results]))
     share = np.where(gas, gas_fractions(amounts, gas), amounts > 0.0).max(axis=0, initial=0.0)
     kept = share >= KEPT
     names = np.array(result.system.species)
-    return Layout(tuple(variables), tuple(names[kept]), tuple(names[~kept]), tuple(map(bool, gas[kept])))
+    return Layout(
+        tuple(variables),
+        tuple(names[kept]),
+        tuple(names[~kept]),
+        tuple(map(bool, gas[kept])),
+        tuple(map(bool, share[kept] >= SHOWN)),
+    )
 
 
 def piece_of(result: Result, layout: Layout) -> dict[str, Any]:
@@ -136,15 +154,19 @@ def piece_of(result: Result, layout: Layout) -> dict[str, Any]:
 
 
 def csv_lines(piece: Mapping[str, Any], layout: Layout) -> str:
-    """Write the rows of a part as CSV; empty cells where a state is not vouched for."""
-    gas = np.asarray(layout.gas, bool)
+    """Write the rows of a part as CSV, ten figures each; empty cells where a state is not vouched for."""
+    gas, shown = np.asarray(layout.gas, bool), np.asarray(layout.shown, bool)
     with np.errstate(divide="ignore", invalid="ignore"):
-        share = piece["amounts"][:, gas] / piece["gas"][:, None]
-    table = np.column_stack((piece["inputs"], piece["numbers"], piece["amounts"], share)).tolist()
+        share = piece["amounts"][:, shown & gas] / piece["gas"][:, None]
+    table = np.column_stack((piece["inputs"], piece["numbers"], piece["amounts"][:, shown & ~gas], share))
+    row = "%.10g," * table.shape[1]
     lines = []
-    for row, good, reason in zip(table, piece["certified"].tolist(), piece["reasons"].tolist(), strict=True):
-        cells = ["" if value != value else repr(value) for value in row]  # nan is not itself
-        lines.append(",".join((*cells, "1" if good else "0", f'"{reason}"' if reason else "")))
+    told = zip(table.tolist(), piece["certified"].tolist(), piece["reasons"].tolist(), strict=True)
+    for values, good, reason in told:
+        if good:
+            lines.append((row % tuple(values)).replace("nan", "") + "1,")
+        else:
+            lines.append((row % tuple(values)).replace("nan", "") + f'0,"{reason}"')
     return "\r\n".join(lines) + "\r\n"
 
 
@@ -152,8 +174,11 @@ def csv_head(inputs: Sequence[tuple[str, str]], layout: Layout, basis: str) -> s
     """Write the head of the CSV file; ``inputs`` are names and units."""
     heads = [f"{name} [{unit if unit not in ('', '1') else '-'}]" for name, unit in inputs]
     heads += [f"{one.name} [{one.unit if one.unit != '1' else '-'}]" for one in layout.variables]
-    heads += [f"{name} [{basis}]" for name in layout.species]
-    heads += [f"{name} [mol/mol gas]" for name, is_gas in zip(layout.species, layout.gas, strict=True) if is_gas]
+    listed = [
+        pair for pair, shown in zip(zip(layout.species, layout.gas, strict=True), layout.shown, strict=True) if shown
+    ]
+    heads += [f"{name} [{basis}]" for name, is_gas in listed if not is_gas]
+    heads += [f"{name} [mol/mol gas]" for name, is_gas in listed if is_gas]
     return ",".join([*(_quoted(head) for head in heads), "certified [-]", "reason"]) + "\r\n"
 
 

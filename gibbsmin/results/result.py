@@ -219,7 +219,10 @@ class Result:
     def legend(self) -> dict[str, dict[str, dict[str, str]]]:
         """Tell what the numbers of the trade are, by set and name."""
         return {
-            group: {one.name: {"label": one.label, "unit": one.unit, "note": one.note} for one in figures}
+            group: {
+                one.name: {"label": one.label, "unit": one.unit, "shown": one.shown, "note": one.note}
+                for one in figures
+            }
             for group, figures in self.key_figures.items()
         }
 

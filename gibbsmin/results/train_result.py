@@ -20,7 +20,7 @@ from gibbsmin.results.train_conversion import Conversion, conversions
 from gibbsmin.results.train_spreadsheet import train_spreadsheets
 from gibbsmin.solver.status import UNSETTLED
 from gibbsmin.states.batch import Batch
-from gibbsmin.studies.labelled import Axis
+from gibbsmin.studies.labelled import Axis, coordinates, dimensions
 from gibbsmin.studies.train.account import WHOLE, StepAccount, accounts
 from gibbsmin.studies.train.stream import Stream
 from gibbsmin.studies.train.train import Solved, StepResult
@@ -254,12 +254,13 @@ class TrainResult:
         Returns
         -------
         xarray.Dataset
-            Dimensions are the varied inputs, ``stream`` and ``species``; and ``step`` for heat, work and lost work.
+            Dimensions are the varied inputs of a grid, else ``point``; ``stream`` and ``species``; and ``step`` for
+            heat, work and lost work.
         """
         import xarray
 
-        names = tuple(axis.name for axis in self.axes)
-        shape = tuple(len(axis.values) for axis in self.axes)
+        sizes = dimensions(self.axes)
+        names, shape = tuple(sizes), tuple(sizes.values())
         unit, per_K = ("W", "W/K") if self.basis == "mol/s" else ("J", "J/K")
         sheet, steps = self.sheet, self.accounts
 
@@ -289,10 +290,11 @@ class TrainResult:
         variables["certified"] = (names, self.certified.reshape(shape), {"long_name": "whether the certificate holds"})
         reasons = np.array(self.solved.reasons, dtype=str).reshape(shape)
         variables["reason"] = (names, reasons, {"long_name": "why it does not"})
-        coordinates: dict[str, Any] = {axis.name: (axis.name, axis.values, {"units": axis.unit}) for axis in self.axes}
-        coordinates |= {"stream": list(sheet.streams), "step": list(steps), "species": list(sheet.names)}
+        places = {"stream": list(sheet.streams), "step": list(steps), "species": list(sheet.names)}
         return xarray.Dataset(
-            variables, coordinates, {"basis": self.basis, "title": self.title, "case_sha256": self.case_sha256}
+            variables,
+            coordinates(self.axes) | places,
+            {"basis": self.basis, "title": self.title, "case_sha256": self.case_sha256},
         )
 
 

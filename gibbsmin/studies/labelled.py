@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, Final
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,13 +18,36 @@ if TYPE_CHECKING:
 Floats = NDArray[np.float64]
 
 
+POINT: Final = "point"
+"""Dimension of states that do not lie on a grid."""
+
+
 @dataclass(frozen=True)
 class Axis:
-    """A varied input: its ``name``, its ``values`` (n,), and their ``unit``."""
+    """A varied input: its ``name``, its ``values`` (n,), and their ``unit``.
+
+    ``along`` is the dimension that the values lie along, where it is not a dimension of its own name.
+    """
 
     name: str
     values: Floats
     unit: str
+    along: str = ""
+
+    @property
+    def dimension(self) -> str:
+        """Name of the dimension that the values lie along."""
+        return self.along or self.name
+
+
+def dimensions(axes: Sequence[Axis]) -> dict[str, int]:
+    """Return the dimensions that the states of a study lie along, with their sizes, the last one the fastest."""
+    return {axis.dimension: len(axis.values) for axis in axes}
+
+
+def coordinates(axes: Sequence[Axis]) -> dict[str, Any]:
+    """Return the varied inputs as xarray takes coordinates: by name the dimension, the values, and the unit."""
+    return {axis.name: (axis.dimension, axis.values, {"units": axis.unit}) for axis in axes}
 
 
 def mole_fractions(system: System, amounts: Floats) -> Floats:
@@ -63,9 +86,9 @@ def labelled(
     system : System
         The species.
     batch : Batch
-        As many states as the axes have combinations, the last axis varying fastest.
+        As many states as the dimensions of the axes have places, the last one varying fastest.
     axes : sequence of Axis
-        The varied inputs; none for one state.
+        The varied inputs; none for one state. Those of a grid have a dimension each.
     basis : str
         ``"mol"``, or ``"mol/s"`` where the feeds are flows.
     extra : mapping, optional
@@ -74,12 +97,13 @@ def labelled(
     Returns
     -------
     xarray.Dataset
-        Dimensions are the names of the axes and ``species``. An axis takes the place of a variable of its name.
+        Dimensions are those of the axes and ``species``. An axis takes the place of a variable of its name.
     """
     import xarray
 
-    names = tuple(axis.name for axis in axes)
-    shape = tuple(len(axis.values) for axis in axes)
+    sizes = dimensions(axes)
+    names, shape = tuple(sizes), tuple(sizes.values())
+    varied = coordinates(axes)
     per = "/s" if basis == "mol/s" else ""
     energy, entropy = ("W", "W/K") if per else ("J", "J/K")
 
@@ -102,7 +126,7 @@ def labelled(
     variables: dict[str, Any] = {
         name: (names, spread(values), {"units": unit, "long_name": text})
         for name, (values, unit, text) in states.items()
-        if name not in names
+        if name not in varied
     }
     amounts = np.asarray(batch.amounts, float)
     fractions = mole_fractions(system, amounts)
@@ -112,6 +136,4 @@ def labelled(
     variables["mole_fraction"] = (over, spread(fractions), within)
     variables["certified"] = (names, spread(batch.certified), {"long_name": "whether the certificate holds"})
     variables["reason"] = (names, spread(np.array(batch.reason, dtype=str)), {"long_name": "why it does not"})
-    coordinates: dict[str, Any] = {axis.name: (axis.name, axis.values, {"units": axis.unit}) for axis in axes}
-    coordinates["species"] = list(system.species)
-    return xarray.Dataset(variables, coordinates, {"basis": basis})
+    return xarray.Dataset(variables, {**varied, "species": list(system.species)}, {"basis": basis})

@@ -103,7 +103,9 @@ def test_check_says_what_the_case_asks_for(write):
     assert told["title"] == "Tube outlet of an invented reformer"
     assert told["basis"] == "mol/s"
     assert told["held"] == {"temperature": "870 degC", "pressure": "24 bar"}
-    assert told["sweep"] == [{"vary": "held.temperature", "first": 800.0, "last": 900.0, "unit": "degC", "points": 3}]
+    (axis,) = told["sweep"]
+    assert (axis["vary"], axis["first"], axis["last"], axis["unit"]) == ("held.temperature", 800.0, 900.0, "degC")
+    assert (axis["points"], axis["logarithmic"], told["design"]) == (3, False, {"kind": "grid"})
     assert told["states"] == 3
     assert [feed["name"] for feed in told["feeds"]] == ["gas", "steam"]
     assert told["elements"]["O"] == pytest.approx((2 + 303) / 3.6)

@@ -87,7 +87,17 @@ def test_explained() -> None:
             "gas": {"air_ratio": 1.15, "excess_air": 0.15, "equivalence_ratio": 1 / 1.15},
             "all feeds": {"air_ratio": 0.25, "excess_air": -0.75, "equivalence_ratio": 4.0, "steam_to_carbon": 3.0},
         },
-        "sweep": [{"vary": "held.temperature", "first": 600.0, "last": 1000.0, "unit": "degC", "points": 81}],
+        "sweep": [
+            {
+                "vary": "held.temperature",
+                "first": 600.0,
+                "last": 1000.0,
+                "unit": "degC",
+                "points": 81,
+                "logarithmic": False,
+            }
+        ],
+        "design": {"kind": "grid"},
         "states": 81,
     }
     lines = explained(told)

@@ -1,0 +1,256 @@
+"""A written result folder, read for drawing: no more states and no more of result.json than a figure needs."""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Mapping
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, Final
+
+import numpy as np
+from numpy.typing import NDArray
+
+from gibbsmin.errors import InputError
+from gibbsmin.report.figures.names import held_title, input_unit, input_words
+
+if TYPE_CHECKING:
+    import xarray
+
+Floats = NDArray[np.float64]
+
+LINE_POINTS: Final = 401
+"""Most points of a line; a longer sweep is drawn by evenly chosen states."""
+
+MAP_POINTS: Final = 161
+"""Most points of a map in each direction."""
+
+PANEL_POINTS: Final = 41
+"""Most values of an input where three or more are varied."""
+
+DESIGN_POINTS: Final = 600
+"""Most points of a design that is no grid."""
+
+_CHUNK: Final = 1 << 18
+_NOT_INPUTS: Final = ("species", "stream", "step")
+
+
+@dataclass(frozen=True)
+class Input:
+    """A varied input: dotted ``name``, ``label`` and ``unit`` as people write them, ``values`` as typed, (n,).
+
+    ``typed_unit`` is the unit as files have it.
+    """
+
+    name: str
+    label: str
+    unit: str
+    values: Floats
+    typed_unit: str
+
+
+@dataclass(frozen=True)
+class Source:
+    """A result, as far as figures go.
+
+    Attributes
+    ----------
+    head : mapping
+        What result.json says before its states.
+    state : mapping or None
+        The only state, where nothing is varied.
+    kind : str
+        ``"grid"``, ``"in step"`` (all inputs move together), or another design, whose states are points.
+    inputs : tuple of Input
+        Of a grid, the values of each axis; else one value of each input a point.
+    data : xarray.Dataset or None
+        The states that are drawn; None where nothing is varied.
+    notes : tuple of str
+        What the reader must know, such as that not every state is drawn.
+    """
+
+    head: Mapping[str, Any]
+    state: Mapping[str, Any] | None
+    kind: str
+    inputs: tuple[Input, ...]
+    data: xarray.Dataset | None
+    notes: tuple[str, ...] = ()
+
+    @property
+    def case(self) -> Mapping[str, Any]:
+        """The case as read."""
+        found: Mapping[str, Any] = self.head.get("case") or {}
+        return found
+
+    @property
+    def basis(self) -> str:
+        """``"mol"`` or ``"mol/s"``."""
+        return str(self.head.get("basis", "mol"))
+
+    @property
+    def is_train(self) -> bool:
+        """Whether it is a train of stages."""
+        return "order" in self.head
+
+    @property
+    def shape(self) -> tuple[int, ...]:
+        """Numbers of points drawn: along each input of a grid, else in all."""
+        if self.kind == "grid":
+            return tuple(one.values.size for one in self.inputs)
+        return (self.inputs[0].values.size,)
+
+    @property
+    def held(self) -> str:
+        """What is held, for titles."""
+        return held_title(self.case, [one.name for one in self.inputs])
+
+
+def read_source(folder: Path) -> Source:
+    """Read a result folder.
+
+    Parameters
+    ----------
+    folder : Path
+
+    Returns
+    -------
+    Source
+
+    Raises
+    ------
+    InputError
+        It is no result of gibbsmin, or its files cannot be read.
+    """
+    try:
+        head, states = read_head(folder / "result.json")
+    except FileNotFoundError:
+        raise InputError(f"{folder} holds no result.json; name a folder that gibbsmin run has written") from None
+    except OSError as error:
+        raise InputError(f"cannot read {folder}: {error.strerror or error}") from error
+    except ValueError:
+        raise InputError(f"{folder}/result.json is not whole; run the case again") from None
+    if "gibbsmin" not in head and "schema" not in head:
+        raise InputError(f"{folder}/result.json is no result of gibbsmin")
+    file = folder / "result.nc"
+    if file.exists():
+        try:
+            return _sweep(head, file)
+        except (OSError, KeyError, ValueError) as error:
+            raise InputError(f"{file} cannot be read ({error}); run the case again") from error
+    if not states:
+        raise InputError(f"{folder} holds neither states nor result.nc; run the case again")
+    if len(states) > 1:
+        raise InputError(f"{folder} holds {len(states)} states but no result.nc; run the case again")
+    return Source(head, states[0], "grid", (), None)
+
+
+def read_head(file: Path) -> tuple[dict[str, Any], list[Any]]:
+    """Read result.json up to its states, and these only where there are few.
+
+    Parameters
+    ----------
+    file : Path
+
+    Returns
+    -------
+    head : dict
+    states : list
+        Empty where a data set lies beside the file.
+
+    Raises
+    ------
+    OSError, ValueError
+        It cannot be read, or is not JSON.
+    """
+    if not file.with_name("result.nc").exists():
+        data = json.loads(file.read_text(encoding="utf-8"))
+        if not isinstance(data, dict):
+            raise ValueError("not an object")
+        return data, list(data.get("states", []))
+    decoder, head = json.JSONDecoder(), {}
+    with file.open(encoding="utf-8") as text:
+        rest = text.read(_CHUNK).lstrip()
+        if not rest.startswith("{"):
+            raise ValueError("not an object")
+        rest = rest[1:]
+        while True:
+            try:
+                rest = rest.lstrip(" \n\r\t,")
+                if rest.startswith("}") or rest.startswith('"states"'):
+                    return head, []
+                key, at = decoder.raw_decode(rest)
+                value, end = decoder.raw_decode(rest[at:].lstrip(" \n\r\t").removeprefix(":").lstrip(" \n\r\t"))
+                tail = rest[at:].lstrip(" \n\r\t").removeprefix(":").lstrip(" \n\r\t")[end:]
+            except ValueError:
+                more = text.read(_CHUNK)
+                if not more:
+                    raise
+                rest += more
+                continue
+            if not tail:
+                more = text.read(_CHUNK)
+                if not more:
+                    raise ValueError("ends too soon")
+                rest += more
+                continue
+            head[key], rest = value, tail
+
+
+def _sweep(head: Mapping[str, Any], file: Path) -> Source:
+    """Read the states of a sweep that are drawn."""
+    import xarray
+
+    with xarray.open_dataset(file, engine="h5netcdf") as data:
+        names = [str(dim) for dim in data.dims if dim not in _NOT_INPUTS]
+        names = [name for name in map(str, data["certified"].dims) if name in names]
+        design = (head.get("case") or {}).get("design") or {}
+        kind = str(design.get("kind", "grid"))
+        if kind == "grid" and names == ["point"] and "point" not in data.coords:
+            kind = "points"
+        if kind == "grid":
+            most = (LINE_POINTS, MAP_POINTS)[len(names) - 1] if len(names) < 3 else PANEL_POINTS
+        else:
+            most = LINE_POINTS if kind == "in step" else DESIGN_POINTS
+        steps = {name: stride(data.sizes[name], most) for name in names}
+        thinned = data.isel({name: slice(None, None, step) for name, step in steps.items()}).load()
+        inputs = [name for name in names if name in data.coords] if kind == "grid" else _along(data, names[0])
+    notes = tuple(
+        f"Every {_ordinal(step)} {'state' if len(names) == 1 else f'value of {input_words(name)}'} is drawn."
+        for name, step in steps.items()
+        if step > 1
+    )
+    read = tuple(
+        Input(
+            name,
+            input_words(name),
+            input_unit(name, str(thinned[name].attrs.get("units", "1"))),
+            np.asarray(thinned[name].values, float),
+            str(thinned[name].attrs.get("units", "1")),
+        )
+        for name in inputs
+    )
+    return Source(head, None, kind, read, thinned, notes)
+
+
+def _along(data: xarray.Dataset, dimension: str) -> list[str]:
+    """Inputs of a design that is no grid: coordinates along its points."""
+    return [str(name) for name, one in data.coords.items() if one.dims == (dimension,) and name != dimension]
+
+
+def stride(count: int, most: int) -> int:
+    """Step with which at most ``most`` of ``count`` points are left, the last one among them if that can be.
+
+    Examples
+    --------
+    >>> stride(100, 401), stride(1001, 161), stride(1000, 161)
+    (1, 8, 7)
+    """
+    if count <= most:
+        return 1
+    least = -(-(count - 1) // (most - 1))
+    return next((step for step in range(least, 2 * least + 1) if (count - 1) % step == 0), least)
+
+
+def _ordinal(number: int) -> str:
+    ending = {1: "st", 2: "nd", 3: "rd"}.get(number % 10, "th") if number % 100 not in (11, 12, 13) else "th"
+    return f"{number}{ending}"
