@@ -80,19 +80,27 @@ class AxisValues:
     ----------
     vary : str
         Path of the input, as in the case file.
-    values : array (n,)
-        The values, in ``unit``; where they are drawn at random, the first and the last that may be.
+    listed : array (n,)
+        Values in ``unit``: all of them, or the first and the last.
     unit, typed_unit : str
         An SI unit, ``"1"`` for ratios; and the one that was typed.
     logarithmic : bool
         Whether equal ratios lie between equal steps, rather than equal differences.
+    count : int
+        Number of values from the first to the last; 0 where all are listed, or any may be drawn.
     """
 
     vary: str
-    values: Floats
+    listed: Floats
     unit: str
     typed_unit: str
     logarithmic: bool = False
+    count: int = 0
+
+    @property
+    def values(self) -> Floats:
+        """All values in ``unit``, (n,)."""
+        return self.at(np.arange(self.count)) if self.count else self.listed
 
     @property
     def typed_values(self) -> Floats:
@@ -112,11 +120,14 @@ class AxisValues:
         array (states,)
             In ``unit``.
         """
-        if np.issubdtype(places.dtype, np.integer):
-            return np.asarray(self.values[places])
-        first, last = self.values[0], self.values[-1]
-        drawn = first * (last / first) ** places if self.logarithmic else first + (last - first) * places
-        return np.asarray(np.clip(drawn, min(first, last), max(first, last)))  # rounding must not lead beyond
+        numbers = np.issubdtype(places.dtype, np.integer)
+        if numbers and not self.count:
+            return np.asarray(self.listed[places])
+        first, last = self.listed[0], self.listed[-1]
+        share = places / (self.count - 1) if numbers else places
+        between = first * (last / first) ** share if self.logarithmic else first + (last - first) * share
+        between = np.where(share == 1.0, last, between)
+        return np.asarray(np.clip(between, min(first, last), max(first, last)))  # rounding must not lead beyond
 
     def typed(self, values: Floats) -> Floats:
         """Turn values of the input into the unit that was typed, to twelve figures."""
@@ -131,7 +142,7 @@ class AxisValues:
 
     def only(self, values: ArrayLike) -> AxisValues:
         """Return the same input with other values, in ``unit``."""
-        return replace(self, values=np.asarray(values, float))
+        return replace(self, listed=np.asarray(values, float), count=0)
 
 
 def axis_values(axis: Axis, inputs: Mapping[str, Limits], feeds: Mapping[str, Feed]) -> AxisValues:
@@ -168,14 +179,10 @@ def axis_values(axis: Axis, inputs: Mapping[str, Limits], feeds: Mapping[str, Fe
     if len(set(listed)) < len(listed):
         raise RuleError("two values are the same; give each once", "to" if axis.values is None else "values")
     typed_unit = unit if limits.difference else (unit_of(first) if first is not None else "") or unit
-    made = AxisValues(axis.vary, np.array(listed), unit, typed_unit, axis.spacing == "logarithmic")
-    if made.logarithmic and min(listed) <= 0.0:
+    logarithmic = axis.spacing == "logarithmic"
+    if logarithmic and min(listed) <= 0.0:
         raise RuleError("logarithmic spacing needs values above zero", "spacing")
-    if axis.points is None:
-        return made
-    values = made.at(np.arange(axis.points) / (axis.points - 1))
-    values[-1] = listed[-1]
-    return made.only(values)
+    return AxisValues(axis.vary, np.array(listed), unit, typed_unit, logarithmic, axis.points or 0)
 
 
 def _read(value: float | str | None, limits: Limits, *key: str | int) -> tuple[float, str]:

@@ -91,8 +91,8 @@ def describe_sweep(study: StudyFrame) -> dict[str, Any]:
         "sweep": [
             {
                 "vary": axis.vary,
-                "first": float(axis.typed_values[0]),
-                "last": float(axis.typed_values[-1]),
+                "first": float(axis.typed(axis.listed)[0]),
+                "last": float(axis.typed(axis.listed)[-1]),
                 "unit": axis.typed_unit,
                 "points": points,
                 "logarithmic": axis.logarithmic,

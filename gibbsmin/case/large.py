@@ -28,6 +28,7 @@ from gibbsmin.results.judge import judge, peaks
 from gibbsmin.results.pieces import Layout, csv_lines, layout_of, piece_of
 from gibbsmin.results.provenance import provenance
 from gibbsmin.results.result import Result
+from gibbsmin.studies.labelled import POINT
 from gibbsmin.thermo.database import load
 
 if TYPE_CHECKING:
@@ -160,7 +161,10 @@ def _plan(study: Study, layout: Layout) -> Plan:
     case = study.case.model_dump(by_alias=True, exclude_none=True)
     identity = [case, layout.species, [one.name for one in layout.variables], load().version, __version__, PART]
     fingerprint = hashlib.sha256(json.dumps(identity, sort_keys=True, default=str).encode()).hexdigest()
-    axes = tuple((axis.name, axis.unit, np.asarray(axis.values, float)) for axis in study.typed_axes)
+    if study.design.kind == "grid":
+        axes = tuple((axis.name, axis.unit, np.asarray(axis.values, float)) for axis in study.typed_axes)
+    else:
+        axes = ((POINT, "1", np.arange(study.all_states, dtype=float)),)
     return Plan(
         title=study.case.title,
         case=case,

@@ -84,7 +84,7 @@ def feed_units(recipes: Sequence[Recipe], sizes: Mapping[str, Floats | float]) -
     A feed k sized by a ratio r_k sets one linear equation, sum_j (b_j - r_k c_j) s_j = 0: what the feeds bring, b, and
     what they ask for, c, a unit. Feed k alone brings, and the others alone ask for it, save for the air ratio: there
     every oxidant brings its O2, and all feeds ask for what they need to burn. The feeds so sized follow together.
-    In a train only feeds that go into the same stage count.
+    In a train only feeds that go into the same stage count, if there are any.
     """
     size = np.stack(np.broadcast_arrays(*(np.atleast_1d(np.asarray(sizes[r.name], float)) for r in recipes)), axis=1)
     sized = [k for k, recipe in enumerate(recipes) if recipe.sized_by in RATIOS]
@@ -92,7 +92,7 @@ def feed_units(recipes: Sequence[Recipe], sizes: Mapping[str, Floats | float]) -
         return size
     known = [k for k in range(len(recipes)) if k not in sized]
     brings, asks = (np.array(one) for one in zip(*(_brought_and_asked(recipes, k) for k in sized), strict=True))
-    together = np.array([[bool(recipes[k].to) or recipes[k].group == one.group for one in recipes] for k in sized])
+    together = np.array([_together(recipes, k) for k in sized])
     brings, asks = brings * together, asks * together
     ratio = np.stack([_ratio(recipes[k].sized_by, size[:, k]) for k in sized], axis=1)
     rows = brings - ratio[:, :, None] * asks  # (states, ratios, F)
@@ -105,6 +105,12 @@ def feed_units(recipes: Sequence[Recipe], sizes: Mapping[str, Floats | float]) -
     for place, k in enumerate(sized):
         _check(recipes, k, units, brings[place], asks[place])
     return units
+
+
+def _together(recipes: Sequence[Recipe], k: int) -> list[bool]:
+    """Tell which feeds count for the ratio of feed ``k``: those of its stage, all where it is alone or names one."""
+    own = [one.group == recipes[k].group for one in recipes]
+    return [True] * len(recipes) if recipes[k].to or sum(own) == 1 else own
 
 
 def _check(recipes: Sequence[Recipe], k: int, units: Floats, brings: Floats, asks: Floats) -> None:

@@ -103,7 +103,7 @@ class Stage(Table):
         default=[],
         description=(
             "Streams that it takes: feeds, steps, or side streams as STAGE.NAME. They mix first. Ratios of feeds count "
-            "within one stage, unless `to` names another feed."
+            "within one stage, unless `to` names another feed or the stage takes no other."
         ),
         examples=[["gas", "steam"]],
     )

@@ -100,7 +100,7 @@ class StudyFrame:
 
     def beginning(self) -> Self:
         """Return the same study for the first value of each input only, one state."""
-        return self._only([axis.values[:1] for axis in self.axes])
+        return self._only([axis.listed[:1] for axis in self.axes])
 
     def tried(self) -> Self:
         """Return the states that are looked at before any is solved.
@@ -111,8 +111,8 @@ class StudyFrame:
         if self.all_states <= TRIED and self.design.kind not in RANDOM:
             return self
         if self.design.kind == "in step":
-            return self._only([axis.values[[0, -1]] for axis in self.axes], Design((2,) * len(self.axes), "in step"))
-        return self._only([np.unique([axis.values.min(), axis.values.max()]) for axis in self.axes])
+            return self._only([axis.listed[[0, -1]] for axis in self.axes], Design((2,) * len(self.axes), "in step"))
+        return self._only([np.unique([axis.listed.min(), axis.listed.max()]) for axis in self.axes])
 
     def _only(self, values: Sequence[ArrayLike], design: Design | None = None) -> Self:
         """Return the same study with other values of its inputs, each with each unless ``design`` says how."""

@@ -2,6 +2,7 @@
 
 import numpy as np
 import pytest
+import train_texts
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
@@ -10,7 +11,10 @@ from gibbsmin.case.read import read_case
 from gibbsmin.errors import CaseError, InputError
 from gibbsmin.report.explained import explained
 from gibbsmin.report.summary import summary
+from gibbsmin.report.train_explained import train_explained
+from gibbsmin.report.train_summary import train_summary
 from gibbsmin.results.judge import judge
+from gibbsmin.results.judge_train import judge_train
 
 TEMPERATURE = '[[sweep]]\nvary = "held.temperature"\nfrom = "800 degC"\nto = "900 degC"\npoints = 3\n'
 RANGES = (
@@ -109,9 +113,8 @@ def test_what_cannot_be_at_the_end_of_a_range_is_told_before_anything_runs(write
 
 @given(st.floats(1e-9, 1e9), st.floats(1.01, 1e9), st.integers(2, 50))
 def test_logarithmic_values_have_equal_ratios(first, ratio, count):
-    axis = AxisValues("x", np.array([first, first * ratio]), "1", "1", logarithmic=True)
-    values = axis.at(np.arange(count) / (count - 1))
-    assert values[0] == first
+    values = AxisValues("x", np.array([first, first * ratio]), "1", "1", logarithmic=True, count=count).values
+    assert (values[0], values[-1]) == (first, first * ratio)
     assert values[1:] / values[:-1] == pytest.approx(ratio ** (1.0 / (count - 1)), rel=1e-9)
     assert values.max() <= first * ratio
 
@@ -160,10 +163,10 @@ def test_a_grid_of_three_inputs_has_three_dimensions(write):
     assert data["held.pressure"].values.tolist() == [1.0, 100.0]
     picked = data.sel({"held.temperature": 800.0, "held.pressure": 100.0, "feeds.steam.steam_to_carbon": 0.5})
     assert (float(picked["temperature"]), float(picked["pressure"])) == pytest.approx((1073.15, 1e7))
-    # carbon of 93 CH4 + 4 C2H6 + 1 CO2 and half a mole of H2O each, by hand, kmol/h
+    # Oxygen of 1 CO2, and of half a mole of H2O for each carbon of 93 CH4 + 4 C2H6 (not that of CO2), kmol/h.
     water = {"CH4": 0, "C2H6": 0, "H2O": 1, "CO": 1, "CO2": 2}
     oxygen = sum(n * float(picked["amount"].sel(species=name)) for name, n in water.items())
-    assert 3.6 * oxygen == pytest.approx(2.0 * 1 + 0.5 * (93 + 8 + 1), rel=1e-6)  # O2 itself is below 1e-9
+    assert 3.6 * oxygen == pytest.approx(2.0 * 1 + 0.5 * (93 + 8), rel=1e-6)  # free O2 is a trace
 
 
 def test_the_states_of_a_part_are_those_of_the_whole(write):
@@ -202,11 +205,55 @@ def test_the_table_of_three_inputs_names_them_and_fits(write, kind, tmp_path):
     shown = [[float(cell) for cell in row.split()[:3]] for row in rows]
     assert np.array(shown) == pytest.approx(np.column_stack(list(result.inputs.values())), rel=1e-3, abs=5e-3)
     text = "\n".join(lines)
-    assert ("onsets" in text) == (kind in ("grid", "in step"))
-    assert ("states with    C(s):graphite" in text) == (kind not in ("grid", "in step"))
+    drawn = kind not in ("grid", "in step")
+    assert ("onsets" in text) == (kind == "in step")  # along the temperatures of the grid graphite stays, or stays away
+    graphite = (result.batch.amounts[:, result.system.index["C(s):graphite"]] > 0.0).sum()
+    assert (f"states with    C(s):graphite {graphite}" in text) == drawn
 
 
-def test_a_train_over_points(write, tmp_path):
-    from train_texts import CASE_OF_TWO
+DRAWN = """
+[design]
+kind = "sobol"
+points = 8
+seed = 2
+[[sweep]]
+vary = "feeds.steam.flow"
+from = "40 kmol/h"
+to = "80 kmol/h"
+[[sweep]]
+vary = "stages.knock_out.held.temperature"
+from = "20 degC"
+to = "60 degC"
+[[sweep]]
+vary = "feeds.gas.temperature"
+from = "330 degC"
+to = "370 degC"
+[[sweep]]
+vary = "feeds.steam.temperature"
+from = "330 degC"
+to = "370 degC"
+"""
 
-    assert CASE_OF_TWO
+
+def test_a_train_over_points(tmp_path):
+    (tmp_path / "case.toml").write_text(train_texts.SHIFT + DRAWN)
+    study = read_case(tmp_path / "case.toml")
+    result = study.run()
+    assert result.certified.all()
+    data = result.dataset()
+    assert data["amount"].dims == ("point", "stream", "species")
+    steam = data["amount"].sel(stream="steam", species="H2O").values
+    assert 3.6 * steam == pytest.approx(data["feeds.steam.flow"].values)  # mol/s and kmol/h
+    out = data["temperature"].sel(stream="knock_out").values - 273.15
+    assert out == pytest.approx(data["stages.knock_out.held.temperature"].values)
+    part = study.part(3, 5).run()
+    at = list(result.streams).index("knock_out")
+    assert part.dataset()["amount"].values[:, at] == pytest.approx(data["amount"].values[3:5, at], rel=1e-7, abs=1e-12)
+    lines = train_summary(result, judge_train(result), tmp_path)[:-1]
+    assert max(map(len, lines)) <= 80
+    varied = " ".join(line.strip() for line in lines[2:6])
+    assert "A = feeds.steam.flow, B = stages.knock_out.held.temperature" in varied
+    assert "C = feeds.gas.temperature and D = feeds.steam.temperature; sobol, 8 points, seed 2" in varied
+    rows = [line.split() for line in lines if line.split()[:4] == ["A", "B", "C", "D"]]
+    assert len(rows) >= 2  # the whole train, and its gas
+    assert "sobol, 8 points, seed 2" in " ".join(train_explained(study.describe()))

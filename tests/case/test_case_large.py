@@ -260,3 +260,17 @@ def test_parts_are_blocks_that_cover_the_grid_once(shape: tuple[int, ...], large
         place, block = slab(shape, start, stop)
         found[place] = np.arange(start, stop).reshape(block)
     assert found.ravel().tolist() == list(range(found.size))
+
+
+def test_points_that_form_no_grid(case: Path, tmp_path: Path) -> None:
+    """A Sobol design: one dimension, with the inputs along it; each state is the one solved by itself."""
+    text = CASE.replace("points = 50\n", "").replace("points = 80\n", "")
+    case.write_text(text + '[design]\nkind = "sobol"\npoints = 2048\nseed = 7\n', encoding="utf-8")
+    study = read(case)
+    data = study.run_into(tmp_path / "out").dataset()
+    assert data.temperature.dims == ("point",)
+    assert data.sizes["point"] == 2048
+    whole = study.solved()
+    for name, values in whole.inputs.items():
+        np.testing.assert_allclose(data[name], values)
+    np.testing.assert_allclose(data.heat, whole.heats, rtol=1e-9)

@@ -4,15 +4,19 @@ from __future__ import annotations
 
 from pathlib import Path
 from typing import Any
+from unittest import mock
 
 import numpy as np
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 from report_fakes import FakeResult
 
 from gibbsmin.report.onsets import onsets
 from gibbsmin.report.summary import summary
 from gibbsmin.report.sweep_table import ROWS, chosen
 from gibbsmin.results.judge import judge
+from gibbsmin.studies.labelled import Axis
 
 
 def shown(result: Any) -> list[str]:
@@ -50,12 +54,20 @@ def test_long_sweep_shows_some_states_and_says_so() -> None:
     assert any(f"{ROWS} of 300 states" in line for line in lines)
 
 
-@pytest.mark.parametrize("sizes", [[1], [40], [41], [1000], [5, 8], [40, 50], [3, 1000], [1000, 3], [2, 25]])
+@pytest.mark.parametrize(
+    "sizes",
+    [[1], [40], [41], [1000], [5, 8], [40, 50], [3, 1000], [1000, 3], [2, 25], [9, 4, 5], [10] * 5, [3] * 6, [15] * 6],
+)
 def test_states_shown_are_few_and_span_every_input(sizes: list[int]) -> None:
     shown = chosen(sizes)
     assert 1 <= len(shown) <= ROWS
     assert len(set(shown.tolist())) == len(shown)
     assert (shown[0], shown[-1]) == (0, np.prod(sizes) - 1)
+    assert all(
+        len(set(places.tolist())) > 1
+        for places, size in zip(np.unravel_index(shown, sizes), sizes, strict=True)
+        if size > 1
+    )
     if np.prod(sizes) <= ROWS:
         assert len(shown) == np.prod(sizes)
 
@@ -72,6 +84,42 @@ def test_onset_on_a_falling_axis_is_told_rising() -> None:
     (found,) = onsets(result)
     assert not found.appears
     assert found.low < found.high
+
+
+def test_onsets_in_step_follow_the_points() -> None:
+    result = FakeResult(12)  # graphite from the seventh point on
+    result.case["design"] = {"kind": "in step"}
+    pressure = np.linspace(30.0, 19.0, 12)
+    result.inputs = {"feeds.gas.flow": np.arange(12.0), "held.pressure": pressure}
+    result.input_units = {"feeds.gas.flow": "kmol/h", "held.pressure": "bar"}
+    (found,) = onsets(result)
+    assert (found.axis, found.low, found.high, found.appears) == ("held.pressure", 24.0, 25.0, False)
+    assert not found.others
+    assert any("along pressure: C(s):graphite to 24..25 bar" in line for line in shown(result))
+
+
+@given(st.lists(st.integers(2, 4), min_size=1, max_size=3), st.integers(0, 2**32 - 1))
+def test_onsets_of_a_grid_are_where_neighbours_differ(sizes: list[int], seed: int) -> None:
+    drawn = np.random.default_rng(seed)
+    count = int(np.prod(sizes))
+    result = FakeResult(count)
+    grid = [np.arange(size, dtype=float) for size in sizes]
+    axes = tuple(Axis(f"feeds.f{k}.flow", values, "mol/s") for k, values in enumerate(grid))
+    result.inputs = dict(zip((one.name for one in axes), map(np.ravel, np.meshgrid(*grid, indexing="ij")), strict=True))
+    result.batch.amounts[:, 7] = drawn.integers(0, 2, count)
+    result.batch.certified = drawn.random(count) < 0.9
+    present, good = result.batch.amounts[:, 7].reshape(sizes) > 0.0, result.batch.certified.reshape(sizes)
+    expected = [
+        (*place, bool(present[(*place[:-1], place[-1] + 1)]))
+        for place in np.ndindex(*sizes[:-1], sizes[-1] - 1)
+        if present[place] != present[(*place[:-1], place[-1] + 1)]
+        and good[place]
+        and good[(*place[:-1], place[-1] + 1)]
+    ]
+    with mock.patch.object(FakeResult, "axes", axes):
+        found = onsets(result)
+    assert [(*map(int, one.others.values()), int(one.low), one.appears) for one in found] == expected
+    assert all(one.high == one.low + 1.0 for one in found)
 
 
 def test_no_onset_is_read_across_a_state_without_certificate() -> None:

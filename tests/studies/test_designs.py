@@ -42,9 +42,9 @@ def test_a_grid_has_every_combination_the_last_input_fastest(sizes):
 
 
 def test_a_window_of_a_grid_far_too_large_for_memory():
-    design = Design((10**4,) * 5)
-    assert design.states == 10**20
-    assert [int(column[0]) for column in design.places(10**18, 10**18 + 3)] == [100, 0, 0, 0, 0]
+    design = Design((10**4,) * 4)
+    assert design.states == 10**16
+    assert [int(column[0]) for column in design.places(10**14, 10**14 + 3)] == [100, 0, 0, 0]
 
 
 def test_no_input_is_one_state():

@@ -16,11 +16,17 @@ from gibbsmin.report.figures.drawn import number
 from gibbsmin.report.figures.labels import Line
 from gibbsmin.report.figures.quantities import Quantity
 from gibbsmin.report.figures.source import Input
-from gibbsmin.report.figures.style import FAINT, POINTS, with_unit
+from gibbsmin.report.figures.style import POINTS, with_unit
 
 Floats = NDArray[np.float64]
 
-UNIT_WORDS: Final = {"%": "percent", "ppmv": "ppm by volume, ppmv"}
+UNIT_WORDS: Final = {
+    "%": "percent",
+    "ppmv": "ppm by volume, ppmv",
+    **{unit: f"temperature, {unit}" for unit in ("K", "°C", "°F")},
+    **{f"{prefix}W": f"power, {prefix}W" for prefix in ("", "k", "M", "G")},
+    **{f"{prefix}J": f"energy, {prefix}J" for prefix in ("", "k", "M", "G")},
+}
 """Units as titles of axes that several results share."""
 
 _FEW: Final = 25  # up to so many points each is marked
@@ -28,17 +34,19 @@ _EVEN: Final = 1e-6
 _TITLE: Final = 5.0  # pt that a letter of a panel's title takes
 
 
-def input_axis(panel: Axes, one: Input) -> None:
+def input_axis(panel: Axes, one: Input, ticks: int = 8) -> None:
     """Set the horizontal axis: title, limits, and its scale, logarithmic where the values are spaced so."""
     low, high = float(one.values.min()), float(one.values.max())
-    scale_input(panel.xaxis, one)
+    scale_input(panel.xaxis, one, ticks)
     if low < high:
         panel.set_xlim(low, high)
     panel.set_xlabel(with_unit(one.label, one.unit))
 
 
-def scale_input(axis: Axis, one: Input) -> None:
+def scale_input(axis: Axis, one: Input, ticks: int = 8) -> None:
     """Make an axis logarithmic where the values of the input are spaced so, with ticks that people read."""
+    axis.set_major_locator(MaxNLocator(ticks, steps=[1, 2, 2.5, 5, 10]))
+    axis.set_major_formatter(FuncFormatter(lambda value, _: number(value)))
     if is_geometric(one.values):
         (axis.axes.set_xscale if axis.axis_name == "x" else axis.axes.set_yscale)("log")
         decades = np.log10(one.values.max() / one.values.min())
@@ -90,6 +98,7 @@ def linear_axis(panel: Axes, quantities: Sequence[Quantity]) -> None:
     bottom = 0.0 if 0.0 <= low < 0.35 * high else low - room
     panel.set_ylim(bottom, 0.0 if high <= 0.0 and high > 0.35 * low else high + room)
     panel.yaxis.set_major_locator(MaxNLocator(6, steps=[1, 2, 2.5, 5, 10]))
+    panel.yaxis.set_major_formatter(FuncFormatter(lambda value, _: number(value)))
 
 
 def draw_line(panel: Axes, one: Input, quantity: Quantity, colour: str, **stroke: Any) -> Line:
@@ -109,7 +118,7 @@ def draw_values(panel: Axes, x: Floats, y: Floats, label: str, colour: str, **st
 def panel_title(panel: Axes, text: str, width: float) -> None:
     """Write what a panel shows over it, on the left, in as many lines as its ``width`` [pt] asks for."""
     wrapped = "\n".join(textwrap.wrap(text, max(int(width / _TITLE), 12), break_long_words=True))
-    panel.set_title(wrapped, loc="left", fontsize=POINTS - 0.5, color=FAINT if not text else None)
+    panel.set_title(wrapped, loc="left", fontsize=POINTS - 0.5)
 
 
 def _percent_or_ppm(value: float, _: float) -> str:

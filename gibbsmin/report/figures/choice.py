@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 from typing import Final
 
 import numpy as np
@@ -25,6 +26,7 @@ MOST_LINES: Final = 7
 """Most lines in a panel."""
 
 _DECADES: Final = 3.0  # over so many a logarithmic axis
+_DEEPEST: Final = 1e-8  # of the largest value, the least that a logarithmic axis shows
 _CHANGING: Final = 3  # key figures that are shown unasked
 _SPECIES: Final = 3  # species that are shown unasked where two inputs are varied
 
@@ -64,7 +66,7 @@ def changing_figures(source: Source) -> list[Quantity]:
     found = []
     for one in key_quantities(source):
         values = one.values
-        if not np.isfinite(values).all() or not one.varies or _repeats_input(source, values):
+        if not np.isfinite(values).all() or not one.varies or _is_fed(source, one):
             continue
         low, high = one.span
         found.append((-(high - low) / max(abs(low), abs(high)), len(found), one))
@@ -82,12 +84,13 @@ def key_results(source: Source) -> list[Quantity]:
     and heat where they are results, and condensed phases that come or go, are always among them.
     """
     asked = asked_figures(source)
-    found = [*asked, *(one for one in state_quantities(source) if not one.label.startswith("pressure"))]
+    found = [*asked, *(one for one in state_quantities(source) if one.label != "pressure")]
     if not asked:
         found += changing_figures(source)
-        found += [one for one in by_change(gas_quantities(source)) if one.varies][:_SPECIES]
-    found += [one for one in condensed_quantities(source) if comes_or_goes(one)][:_SPECIES]
-    return found
+        main = [one for one in by_change(gas_quantities(source)) if one.varies][:_SPECIES]
+        found += [replace(one, label=f"{one.label} in the gas, wet") for one in main]
+    phases = [one for one in condensed_quantities(source) if comes_or_goes(one)][:_SPECIES]
+    return [*found, *(replace(one, label=f"amount of {one.label}") for one in phases)]
 
 
 def by_change(quantities: Sequence[Quantity]) -> list[Quantity]:
@@ -96,21 +99,28 @@ def by_change(quantities: Sequence[Quantity]) -> list[Quantity]:
 
 
 def is_logarithmic(quantities: Sequence[Quantity], floor: float) -> bool:
-    """Tell whether values, as far as they lie above ``floor`` (as shown), span more than three decades."""
-    spans = _clipped(quantities, floor)
-    if not spans or any(one.span[0] < 0.0 for one in quantities):
+    """Tell whether values, as far as they lie above ``floor`` (as shown), span more than three decades.
+
+    Shares of the gas that fall below the floor count as far as it; other zeros, and amounts of phases, do not.
+    """
+    shown = np.concatenate([one.shown[np.isfinite(one.values)] for one in quantities])
+    if not shown.size or shown.min() < 0.0 or any(one.kind == "condensed" for one in quantities):
         return False
-    return bool(np.log10(max(high for _, high in spans) / min(low for low, _ in spans)) > _DECADES)
+    above = np.maximum(shown, floor) if all(one.kind == "gas" for one in quantities) else shown[shown > floor]
+    return bool(above.size and np.log10(above.max() / above.min()) > _DECADES)
 
 
 def floor_of(source: Source, quantities: Sequence[Quantity]) -> float:
-    """Lowest value of a logarithmic axis, as shown: the threshold for shares, else eight decades below the largest."""
+    """Lowest value of a logarithmic axis, as shown: the threshold for shares, else the decade of the least value."""
     units = {one.unit for one in quantities}
     share = {"%": 100.0, "ppmv": 1e6}
     if len(units) == 1 and (unit := next(iter(units))) in share:
         return threshold(source) * share[unit]
-    largest = max((high for one in quantities if np.isfinite(high := one.span[1])), default=1.0)
-    return max(largest, 1e-300) * 1e-8
+    shown = np.concatenate([one.shown[np.isfinite(one.values)] for one in quantities])
+    above = shown[shown > 0.0]
+    if not above.size:
+        return 1e-8
+    return float(10.0 ** np.floor(np.log10(max(above.min(), _DEEPEST * above.max()))))
 
 
 def _clipped(quantities: Sequence[Quantity], floor: float) -> list[tuple[float, float]]:
@@ -118,10 +128,15 @@ def _clipped(quantities: Sequence[Quantity], floor: float) -> list[tuple[float, 
     return [(max(low, floor), max(high, floor)) for low, high in (one.span for one in quantities) if np.isfinite(high)]
 
 
-def _repeats_input(source: Source, values: Floats) -> bool:
-    """Whether values are a straight line over one of the inputs: a ratio that was set, told again."""
+def _is_fed(source: Source, one: Quantity) -> bool:
+    """Whether a key figure tells of the feeds: by its name, or as it does not follow all inputs, or is one of them."""
+    values = one.values
+    if one.label.endswith(" fed") or "inlet" in one.label:
+        return True
     if source.kind != "grid":
         return any(_same(values, one.values) for one in source.inputs)
+    if any(np.ptp(values, axis=k).max() <= 1e-9 * np.abs(values).max() for k in range(values.ndim)):
+        return True
     mesh = np.meshgrid(*(one.values for one in source.inputs), indexing="ij")
     return any(_same(values, one) for one in mesh)
 

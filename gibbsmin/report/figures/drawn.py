@@ -135,3 +135,16 @@ def listed(words: Sequence[str]) -> str:
     ('a', 'a and b', 'a, b and c')
     """
     return words[0] if len(words) == 1 else f"{', '.join(words[:-1])} and {words[-1]}"
+
+
+def capital(text: str) -> str:
+    """Begin with a capital, unless a symbol would suffer.
+
+    Examples
+    --------
+    >>> capital("heat to be supplied"), capital("pH"), capital("n-butane")
+    ('Heat to be supplied', 'pH', 'n-butane')
+    """
+    first = text.split(" ", maxsplit=1)[0]
+    return text[:1].upper() + text[1:] if first.isalpha() and first.islower() and len(first) > 1 else text
+

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from dataclasses import replace
 from typing import Final
 
 import numpy as np
@@ -10,9 +10,10 @@ from matplotlib.axes import Axes
 
 from gibbsmin.report.figures.axes import draw_values, input_axis, linear_axis, log_axis
 from gibbsmin.report.figures.choice import floor_of, is_logarithmic
-from gibbsmin.report.figures.drawn import Drawn, columns, input_span, input_value, listed, span_words
+from gibbsmin.report.figures.drawn import Drawn, capital, columns, input_span, input_value, listed, span_words
 from gibbsmin.report.figures.files import file_name
 from gibbsmin.report.figures.labels import Line, label_lines
+from gibbsmin.report.figures.onsets import marks_of, sentence
 from gibbsmin.report.figures.quantities import Quantity
 from gibbsmin.report.figures.source import Input, Source
 from gibbsmin.report.figures.style import canvas, shades, with_unit
@@ -44,7 +45,7 @@ def family(source: Source, quantity: Quantity, place: int) -> Drawn:
     Drawn
     """
     few, one = source.inputs[place], source.inputs[1 - place]
-    title = f"{capital(quantity.label)}{source.held}"
+    title = f"{capital(quantity.label)}{source.held}, a line for each {few.label}"
     figure, panels = canvas(title)
     panel = panels[0, 0]
     lines = family_panel(panel, source, quantity, place)
@@ -58,12 +59,12 @@ def family(source: Source, quantity: Quantity, place: int) -> Drawn:
         f"Lines of {span_words(quantity)} over {input_span(one)}{source.held}, one for each {few.label}: {values}.",
         figure,
         columns(source, [quantity]),
-        source.notes,
+        (*_come_and_go(few, one, quantity, place), *source.notes),
     )
 
 
 def family_panel(
-    panel: Axes, source: Source, quantity: Quantity, place: int, within: tuple[int, ...] = (), named: bool = True
+    panel: Axes, source: Source, quantity: Quantity, place: int, within: tuple[int, ...] = ()
 ) -> list[Line]:
     """Draw the lines of one panel, the scale chosen for the whole of the result.
 
@@ -76,8 +77,6 @@ def family_panel(
         Which of the first two inputs takes few values.
     within : tuple of int, optional
         Where a third input, and more, stand.
-    named : bool
-        Whether the labels name the input, or its values only.
 
     Returns
     -------
@@ -86,7 +85,7 @@ def family_panel(
     few, one = source.inputs[place], source.inputs[1 - place]
     floor = floor_of(source, [quantity])
     if is_logarithmic([quantity], floor):
-        log_axis(panel, floor, quantity.span[1], shares=quantity.unit == "%")
+        log_axis(panel, floor, quantity.span[1], shares=quantity.kind == "gas")
     else:
         linear_axis(panel, [quantity])
     values = quantity.shown[(slice(None), slice(None), *within)]
@@ -95,30 +94,18 @@ def family_panel(
     order = np.argsort(few.values, kind="stable")
     for k, colour in zip(order, shades(few.values.size), strict=True):
         label = input_value(few, float(few.values[k]))
-        if named and k == order[-1]:
-            label = f"{_brief(few)} {label}"
         lines.append(draw_values(panel, one.values, values[k], label, colour))
     input_axis(panel, one)
     return lines
 
 
-def _brief(one: Input) -> str:
-    """Shortest name of an input, to stand at a line."""
-    return one.label if len(one.label) <= 16 else one.label.rpartition(" of ")[2]
-
-
-def capital(text: str) -> str:
-    """Begin with a capital, unless a symbol would suffer.
-
-    Examples
-    --------
-    >>> capital("heat to be supplied"), capital("pH"), capital("n-butane")
-    ('Heat to be supplied', 'pH', 'n-butane')
-    """
-    first = text.split(" ", maxsplit=1)[0]
-    return text[:1].upper() + text[1:] if first.isalpha() and first.islower() and len(first) > 1 else text
-
-
-def families(source: Source, quantities: Sequence[Quantity], place: int) -> list[Drawn]:
-    """Draw a figure a result."""
-    return [family(source, quantity, place) for quantity in quantities]
+def _come_and_go(few: Input, one: Input, quantity: Quantity, place: int) -> list[str]:
+    """Tell where a phase comes and goes along each line."""
+    if quantity.kind != "condensed":
+        return []
+    told = []
+    for k, value in enumerate(few.values):
+        line = replace(quantity, values=np.take(quantity.values, k, axis=place))
+        if text := sentence(marks_of(one, [line]), one.unit):
+            told.append(f"At {input_value(few, float(value))}: {text}")
+    return told

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 from typing import Final
 
 import numpy as np
@@ -17,7 +18,7 @@ from gibbsmin.report.figures.axes import (
     panel_title,
 )
 from gibbsmin.report.figures.choice import MOST_LINES, floor_of, is_logarithmic, main_species
-from gibbsmin.report.figures.drawn import Colours, Drawn, columns, input_span, listed, span_words
+from gibbsmin.report.figures.drawn import Colours, Drawn, capital, columns, input_span, listed, span_words
 from gibbsmin.report.figures.labels import Line, label_lines
 from gibbsmin.report.figures.onsets import draw_marks, marks_of, sentence
 from gibbsmin.report.figures.quantities import Quantity, condensed_quantities, gas_quantities
@@ -73,7 +74,8 @@ def composition(source: Source, colours: Colours, stream: str = "", title: str =
         panel.set_ylim(bottom=0.0)
         panel.set_ylabel(with_unit("solids and liquids", drawn[0].unit))
         strokes = [
-            draw_line(panel, one, quantity, INK, linestyle=dash) for quantity, dash in zip(drawn, DASHES, strict=False)
+            draw_line(panel, one, present(quantity), INK, linestyle=dash)
+            for quantity, dash in zip(drawn, DASHES, strict=False)
         ]
         lines.append((panel, strokes))
     input_axis(panels[-1, 0], one)
@@ -135,10 +137,12 @@ def result_panels(source: Source, quantities: Sequence[Quantity], name: str, tit
     several = any(len(group) > 1 for group in shown)
     across = 1 if len(shown) == 1 else 2 if several or len(shown) in (2, 4) else 3
     down = -(-len(shown) // across)
-    figure, panels = canvas(title, down, across, HEIGHT if down == 1 and across < 3 else 2.4 * down + 0.5 * (down == 1))
+    if len(shown) == len(shown[0]) == 1:
+        title = f"{capital(shown[0][0].label)}{source.held}"
+    figure, panels = canvas(title, down, across, 2.5 * down + 0.4)
     lines = []
     for panel, group in zip(panels.flat, shown, strict=False):
-        lines.append((panel, group, _result_panel(panel, source, one, group, WIDTH * 72.0 / across - 40.0)))
+        lines.append((panel, group, _result_panel(panel, source, one, group, across)))
     for panel in panels.flat[len(shown) :]:
         panel.remove()
     figure.draw_without_rendering()
@@ -156,21 +160,33 @@ def result_panels(source: Source, quantities: Sequence[Quantity], name: str, tit
     )
 
 
-def _result_panel(panel: Axes, source: Source, one: Input, group: Sequence[Quantity], width: float) -> list[Line]:
+def _result_panel(panel: Axes, source: Source, one: Input, group: Sequence[Quantity], across: int) -> list[Line]:
     """Draw the lines of a panel; a single result is named over it, several at their ends."""
     floor = floor_of(source, group)
     if is_logarithmic(group, floor):
-        log_axis(panel, floor, max(quantity.span[1] for quantity in group), shares=group[0].unit == "%")
+        log_axis(panel, floor, max(quantity.span[1] for quantity in group), shares=group[0].kind == "gas")
     else:
         linear_axis(panel, group)
-    lines = [draw_line(panel, one, q, colour) for q, colour in zip(group, shades(len(group)), strict=True)]
+    kept = [present(quantity) for quantity in group] if len(group) > 1 else group
+    lines = [draw_line(panel, one, q, colour) for q, colour in zip(kept, shades(len(group)), strict=True)]
     unit = group[0].unit
-    if len(group) == 1:
-        panel_title(panel, with_unit(group[0].label, unit), width)
-    else:
+    if len(group) > 1:
         panel.set_ylabel(UNIT_WORDS.get(unit, unit))
-    input_axis(panel, one)
+    elif across == 1:
+        panel.set_ylabel(with_unit(group[0].label, unit))
+    else:
+        panel_title(panel, with_unit(group[0].label, unit), WIDTH * 72.0 / across - 40.0)
+    input_axis(panel, one, 9 - 2 * across)
     return lines
+
+
+def present(quantity: Quantity) -> Quantity:
+    """Leave out where something is not there, but for the states beside those where it is, so that lines reach zero."""
+    there = quantity.values > 0.0
+    near = there.copy()
+    near[1:] |= there[:-1]
+    near[:-1] |= there[1:]
+    return replace(quantity, values=np.where(near | (quantity.values != 0.0), quantity.values, np.nan))
 
 
 def over(source: Source) -> str:

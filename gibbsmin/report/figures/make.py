@@ -57,7 +57,7 @@ def draw(source: Source) -> Iterator[Drawn]:
     """
     colours = Colours()
     if source.state is not None:
-        yield from (stream_bars if source.is_train else state_bars)(source, source.state, colours)
+        yield from stream_bars(source, source.state, colours) if source.is_train else state_bars(source, source.state)
     elif source.kind not in ("grid", "in step"):
         results = train_results(source) if source.is_train else key_results(source)
         yield from scatter(source, results)

@@ -29,7 +29,7 @@ def input_words(name: str) -> str:
     >>> input_words("held.temperature"), input_words("feeds.air.air_ratio"), input_words("feeds.air.temperature")
     ('temperature', 'air ratio', 'temperature of air')
     >>> input_words("stages.purge_point.take.purge.percent"), input_words("species.conversion.CH4")
-    ('purge of purge point', 'conversion of CH₄')
+    ('purge taken at purge point', 'conversion of CH₄')
     >>> input_words("approach.shift.temperature"), input_words("species.carbon_conversion")
     ('approach temperature of shift', 'carbon conversion')
     """
@@ -41,7 +41,8 @@ def input_words(name: str) -> str:
         return words
     if "take" in middle:
         side = middle[-1].replace("_", " ")
-        return f"{side} of {middle[0].replace('_', ' ')}" if key != "flow" else f"flow of {side}"
+        at = f"{side} taken at {middle[0].replace('_', ' ')}"
+        return f"flow of {at}" if key == "flow" else at
     if "conversion" in middle:
         return f"conversion of {in_formulas(key)}"
     if table == "approach" or "approach" in middle:

@@ -15,7 +15,7 @@ from gibbsmin.report.figures.source import Input
 from gibbsmin.report.figures.style import FAINT, POINTS, value_with_unit
 
 _ROWS: Final = 3
-_LETTER: Final = 0.56  # of the size of letters
+_LETTER: Final = 0.62  # of the size of letters
 _HALF_UNIT: Final = 0.5
 
 

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, Any, Final
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.elements import split_name
+from gibbsmin.elements import parse_formula, split_name
 from gibbsmin.errors import FormulaError
 from gibbsmin.report.figures.names import typed_units
 from gibbsmin.report.figures.style import formula, in_formulas, unit_word
@@ -83,11 +83,18 @@ def threshold(source: Source) -> float:
 
 
 def is_gas(name: str) -> bool:
-    """Tell a gas by its name; what is not a name of a species is none."""
+    """Tell a gas by its name; what is no formula, such as ash, is none.
+
+    Examples
+    --------
+    >>> is_gas("CH4"), is_gas("C(s):graphite"), is_gas("ash")
+    (True, False, False)
+    """
     try:
-        return split_name(name).phase == "gas"
+        parse_formula(split_name(name).formula)
     except FormulaError:
         return False
+    return split_name(name).phase == "gas"
 
 
 def gas_quantities(source: Source, stream: str = "") -> list[Quantity]:
@@ -106,7 +113,7 @@ def gas_quantities(source: Source, stream: str = "") -> list[Quantity]:
         Mole fractions, shown in percent.
     """
     names, amounts = _amounts(source, stream)
-    at = [k for k, name in enumerate(names) if is_gas(name)]
+    at = np.flatnonzero(_gas(source, names))
     total = amounts[..., at].sum(axis=-1)
     with np.errstate(invalid="ignore", divide="ignore"):
         shares = np.where(total[..., None] > 0.0, amounts[..., at] / total[..., None], np.nan)
@@ -126,8 +133,9 @@ def condensed_quantities(source: Source, stream: str = "") -> list[Quantity]:
     names, amounts = _amounts(source, stream)
     unit = typed_units(source.case, source.basis)["amount"]
     found = []
+    gas = _gas(source, names)
     for k, name in enumerate(names):
-        if not is_gas(name) and np.nan_to_num(amounts[..., k]).max(initial=0.0) > 0.0:
+        if not gas[k] and np.nan_to_num(amounts[..., k]).max(initial=0.0) > 0.0:
             head = f"{stream}: {name} [{source.basis}]" if stream else f"{name} [{source.basis}]"
             factor = from_si(1.0, unit)
             values = amounts[..., k]
@@ -197,7 +205,7 @@ def step_energies(source: Source, key: str) -> list[Quantity]:
     every = prefixed_quantity("", "", _masked(source, source.data[f"step_{key}"]), unit)
     found = []
     for k, step in enumerate(map(str, source.data["step"].values)):
-        label = step.replace("_", " ")
+        label = step.replace("_", " ") if key == "heat" else f"{step.replace('_', ' ')}, {key}"
         found.append(Quantity(f"{step}: {key} [{unit}]", label, every.values[..., k], every.unit, every.factor))
     largest = np.nanmax(np.abs(every.values), initial=0.0)
     return [one for one in found if one.varies and np.ptp(one.values[np.isfinite(one.values)]) > 1e-6 * largest]
@@ -233,6 +241,16 @@ def _amounts(source: Source, stream: str) -> tuple[list[str], Floats]:
     return [str(name) for name in data["species"].values], _masked(source, array)
 
 
+def _gas(source: Source, names: Sequence[str]) -> list[bool]:
+    """Tell which species are of the gas: those with a share between nothing and all, and of the rest by name."""
+    assert source.data is not None, "a sweep"
+    if "mole_fraction" not in source.data:
+        return [is_gas(name) for name in names]
+    shares = source.data["mole_fraction"].values.reshape(-1, len(names))
+    parted = ((shares > 0.0) & (shares < 1.0)).any(axis=0)
+    return [bool(flag) or is_gas(name) for flag, name in zip(parted, names, strict=True)]
+
+
 def _good(source: Source, key: str) -> Floats:
     assert source.data is not None, "a sweep"
     return _masked(source, source.data[key])
@@ -253,7 +271,3 @@ def _largest(shares: Floats) -> Floats:
     found: Floats = flat.max(axis=0, initial=0.0)
     return found
 
-
-def ranges(quantities: Sequence[Quantity]) -> list[Quantity]:
-    """Those that have a number at all."""
-    return [one for one in quantities if np.isfinite(one.values).any()]

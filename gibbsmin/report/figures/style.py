@@ -9,6 +9,7 @@ colour, light to dark.
 from __future__ import annotations
 
 import re
+import textwrap
 from collections.abc import Iterator
 from contextlib import contextmanager
 from typing import Any, Final
@@ -76,6 +77,7 @@ _LOOK: Final[dict[str, Any]] = {
 _DIGITS: Final = str.maketrans("0123456789+-", "₀₁₂₃₄₅₆₇₈₉⁺⁻")
 _RAISED: Final = str.maketrans("0123456789", "⁰¹²³⁴⁵⁶⁷⁸⁹")
 _UNITS: Final = {"degC": "°C", "degF": "°F", "1": "", "-": ""}
+_TITLE: Final = 76  # letters of a line of a title
 _READABLE: Final = 4.5  # contrast that words need
 
 
@@ -108,7 +110,8 @@ def canvas(title: str, rows: int = 1, columns: int = 1, height: float = HEIGHT, 
         ``panels`` is an array of axes (rows, columns).
     """
     figure = Figure(figsize=(WIDTH, height), layout="constrained")
-    figure.suptitle(title, x=0.008, ha="left", fontsize=POINTS, fontweight="bold", wrap=False)
+    wrapped = "\n".join(textwrap.wrap(title, _TITLE))
+    figure.suptitle(wrapped, x=0.008, ha="left", fontsize=POINTS, fontweight="bold")
     panels = figure.subplots(rows, columns, squeeze=False, **shared)
     for panel in panels.flat:
         panel.grid(axis="y")
@@ -168,7 +171,8 @@ def in_formulas(text: str) -> str:
     >>> in_formulas("NOx at 6 % O2, dry"), in_formulas("2 S/Cl fed"), in_formulas("H2/CO")
     ('NOx at 6 % O₂, dry', '2 S/Cl fed', 'H₂/CO')
     """
-    found = r"(?<![A-Za-z0-9])(?:[A-Z][a-z]?\d*|\((?:[A-Z][a-z]?\d*)+\)\d*)+(?![a-z])"
+    part = r"[A-Z][a-z]?(?:\d+(?:\.\d+)?)?"
+    found = rf"(?<![A-Za-z0-9])(?:{part}|\((?:{part})+\)\d*)+(?![a-z])"
     return re.sub(found, lambda match: match[0].translate(_DIGITS), text)
 
 
