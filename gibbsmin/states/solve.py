@@ -148,11 +148,10 @@ def equilibria(
         found = ", ".join(f"{name} {length}" for name, length in told.items())
         raise InputError(f"held conditions and feeds have one axis, that of the states, of one length; got {found}")
     count = counts.pop() if counts else 1
-    # copies: the compiled code is one for writable arrays in row order only
-    one, two = (np.array(np.broadcast_to(value, (count,)), float, order="C") for value in (one, two))
-    b = np.array(np.broadcast_to(b, (count, b.shape[-1])), float, order="C")
+    one, two, b = _rows(one, (count,)), _rows(two, (count,)), _rows(b, (count, b.shape[-1]))
     _constrain(b, system, constrained or {})
-    b[np.abs(b) < NOTHING * np.abs(b).max(axis=1, keepdims=True, initial=0.0)] = 0.0
+    sizes = np.abs(b)
+    b[sizes < NOTHING * sizes.max(axis=1, keepdims=True, initial=0.0)] = 0.0
     one = one * STANDARD_PRESSURE / R if pair.volume else one / STANDARD_PRESSURE
     if pair.second != "temperature":
         two = two / R
@@ -208,29 +207,32 @@ def _constrain(b: Array, system: System, constrained: Mapping[str, ArrayLike]) -
         b[:, system.elements.index(constraint_row(name))] = amount
 
 
+def _rows(values: Array, shape: tuple[int, ...]) -> Array:
+    """Copy values to every state: the compiled code is one for writable arrays in row order only."""
+    rows = np.empty(shape)
+    rows[...] = values
+    return rows
+
+
 def _finite(value: ArrayLike, what: str) -> Array:
     """Return ``value`` as an array of finite numbers, positive where that is needed, T within all data."""
     array: Array = np.asarray(value, float)
+    least, most = _span(array)
     if what in ("temperature", "pressure", "volume"):
-        array = _positive(value, what)
-    elif not np.isfinite(array).all():
+        if not 0.0 < least <= most < np.inf:
+            wrong = array[~((array > 0.0) & np.isfinite(array))][0]
+            raise InputError(f"{what} must be finite and above zero; got {wrong}")
+    elif not -np.inf < least <= most < np.inf:
         raise InputError(f"{what} must be finite; got {array[~np.isfinite(array)][0]}")
-    if what == "temperature" and np.any((array < COLDEST) | (array > HOTTEST)):
-        raise InputError(f"temperature must lie within {COLDEST:.0f} and {HOTTEST:.0f} K; got {_first(array):.6g} K")
+    if what == "temperature" and not COLDEST <= least <= most <= HOTTEST:
+        wrong = array[(array < COLDEST) | (array > HOTTEST)][0]
+        raise InputError(f"temperature must lie within {COLDEST:.0f} and {HOTTEST:.0f} K; got {wrong:.6g} K")
     return array
 
 
-def _positive(value: ArrayLike, what: str) -> Array:
-    """Return ``value`` as an array of finite positive numbers."""
-    array: Array = np.asarray(value, float)
-    if not np.all(np.isfinite(array) & (array > 0.0)):
-        raise InputError(f"{what} must be finite and above zero; got {array[~(array > 0.0) | ~np.isfinite(array)][0]}")
-    return array
-
-
-def _first(T: Array) -> float:
-    """First temperature out of range."""
-    return float(T[(T < COLDEST) | (T > HOTTEST)].flat[0])
+def _span(array: Array) -> tuple[float, float]:
+    """Return the least and the most of an array, nan where one of its numbers is; a middling number if it is empty."""
+    return (float(array.min()), float(array.max())) if array.size else (1.0e3, 1.0e3)
 
 
 def _element_amounts(system: System, feeds: Any, element_amounts: Any) -> Array:
@@ -243,11 +245,12 @@ def _element_amounts(system: System, feeds: Any, element_amounts: Any) -> Array:
     array: Array = np.asarray(given, float)
     if array.ndim not in (1, 2) or array.shape[-1] != len(names):
         raise InputError(f"{what} must have shape (states, {len(names)}) or ({len(names)},); got {array.shape}")
-    if not np.isfinite(array).all():
+    least, most = _span(array)
+    if not -np.inf < least <= most < np.inf:
         raise InputError(f"{what} must be finite")
     if feeds is None:
         return array
-    if (array < 0.0).any():
+    if least < 0.0:
         raise FeedError(
             f"the feed of {names[int(np.argmax((array < 0.0).reshape(-1, len(names)).any(axis=0)))]} is negative"
         )

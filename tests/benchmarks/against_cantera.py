@@ -1,86 +1,79 @@
-"""Run as a script: time a state of methane in air (gri30) by gibbsmin and by each of Cantera's solvers.
+"""Run as a script: time the states of a problem by gibbsmin and by each of Cantera's solvers, in one process.
 
-The argument says what is held: ``TP``, or ``HP`` with the enthalpy of a feed preheated to at most 1200 K (flames).
-To be run with one thread for linear algebra (``OPENBLAS_NUM_THREADS=1``): Cantera's solver is no faster with two, and
-the second one, which waits busily, slows whatever is measured next. Rounds of both alternate, so that a busy machine
-slows both; a solver that is twice as slow as the fastest runs in the first round only. Prints JSON: seconds a state of
-every round.
+The argument names one of `problems.PROBLEMS`. To be run with one thread for linear algebra
+(``OPENBLAS_NUM_THREADS=1``): Cantera's solver is no faster with two, and the second one, which waits busily, slows
+whatever is measured next. Rounds of both alternate, so that a busy machine slows both; a solver that is half as slow
+again as the fastest runs in the first round only. Where Cantera does not settle every state, those that it does not are
+counted, and time is compared on those that its solver settles. The last line is JSON: seconds a state of every round.
 """
+
+from __future__ import annotations
 
 import json
 import sys
-from collections.abc import Callable
-from time import perf_counter
+from collections import Counter
+from collections.abc import Callable, Iterable
+from time import process_time
+from typing import Any
 
 import cantera as ct
-import numpy as np
+from problems import PROBLEMS, Problem, Way
 
-from gibbsmin.interop import system_from_cantera
-from gibbsmin.states.solve import equilibria
-
-STATES, FEW, ROUNDS = 2000, 200, 7
-HOTTEST = {"TP": 3000.0, "HP": 1200.0}
-"""Temperature up to which states, or feeds, are drawn, [K]."""
-SOLVERS = ("element_potential", "vcs", "gibbs")
+ROUNDS = 7
+SLOW = 1.5
+"""A solver that needs so many times as long as the fastest is not measured again."""
 
 
-def draw(gas: ct.Solution, held: str) -> tuple[np.ndarray, np.ndarray, np.ndarray]:
-    """Draw unrelated states: T from 300 K, P 0.1 to 100 bar, equivalence ratio 0.3 to 3."""
-    rng = np.random.default_rng(53)
-    X = np.zeros((STATES, gas.n_species))
-    X[:, gas.species_index("CH4")] = rng.uniform(0.3, 3.0, STATES)
-    X[:, gas.species_index("O2")] = 2.0
-    X[:, gas.species_index("N2")] = 7.52
-    X /= X.sum(axis=1, keepdims=True)
-    return rng.uniform(300.0, HOTTEST[held], STATES), 10.0 ** rng.uniform(4.0, 7.0, STATES), X
-
-
-def settle(gas: ct.Solution, held: str, solver: str, T: np.ndarray, P: np.ndarray, X: np.ndarray) -> None:
-    """Set each state and settle it; a state on which the solver gives up costs the time until it does."""
-    for t, p, x in zip(T, P, X, strict=True):
-        gas.TPX = t, p, x
+def settle_all(settle: Way, states: Iterable[int]) -> None:
+    """Settle states; one on which the solver gives up costs the time until it does."""
+    for i in states:
         try:
-            gas.equilibrate(held, solver=solver, max_steps=200)
+            settle(i)
         except ct.CanteraError:
             continue
 
 
-def enthalpies(gas: ct.Solution, T: np.ndarray, P: np.ndarray, X: np.ndarray) -> np.ndarray:
-    """Enthalpy of a mole of each feed, [J]."""
-    H = np.empty(STATES)
-    for i in range(STATES):
-        gas.TPX = T[i], P[i], X[i]
-        H[i] = gas.enthalpy_mole / 1000.0
-    return H
-
-
 def seconds(work: Callable[[], object]) -> float:
-    start = perf_counter()
+    """Time of this process's one processor: what other processes take does not count."""
+    start = process_time()
     work()
-    return perf_counter() - start
+    return process_time() - start
 
 
-def main() -> None:
-    gas = ct.Solution("gri30.yaml")
-    system = system_from_cantera(gas)
-    held = sys.argv[1]
-    T, P, X = draw(gas, held)
-    if held == "HP":
-        conditions = {"enthalpy": enthalpies(gas, T, P, X), "pressure": P}
-    else:
-        conditions = {"temperature": T, "pressure": P}
-    batch = equilibria(system, X, **conditions)
-    few = (T[:FEW], P[:FEW], X[:FEW])
-    times: dict[str, list[float]] = {"gibbsmin": [], **{solver: [] for solver in SOLVERS}}
-    solvers = list(SOLVERS)
+def measure(problem: Problem) -> dict[str, Any]:
+    """Time all ways; for condensed phases the most reliable of Cantera's ways counts, then the fastest."""
+    batch = problem.solve()
+    problem.solve_one_by_one()
+    states = {name: list(range(problem.few)) for name in problem.ways}
+    told: dict[str, dict[str, int]] = {}
+    if problem.verdicts is not None:
+        for name, settle in problem.ways.items():
+            found = problem.verdicts(batch, settle)
+            states[name] = [i for i, verdict in enumerate(found) if verdict == "same"]
+            told[name] = dict(Counter(found))
+    ways = {name: settle for name, settle in problem.ways.items() if len(states[name]) > problem.few / 4}
+    own, count = (problem.solve, len(batch)) if problem.one_by_one is None else (problem.solve_one_by_one, problem.few)
+    times: dict[str, list[float]] = {"gibbsmin": [], **{name: [] for name in ways}}
     for _ in range(ROUNDS):
-        times["gibbsmin"].append(seconds(lambda: equilibria(system, X, **conditions)) / STATES)
-        for solver in solvers:
-            times[solver].append(seconds(lambda solver=solver: settle(gas, held, solver, *few)) / FEW)  # type: ignore[misc]
-        fastest = min(times[solver][0] for solver in SOLVERS)
-        solvers = [solver for solver in SOLVERS if times[solver][0] <= 2.0 * fastest]
-    json.dump({"certified": bool(batch.certified.all()), "cantera": ct.__version__, "times": times}, sys.stdout)
+        times["gibbsmin"].append(seconds(own) / count)
+        for name, settle in ways.items():
+            took = seconds(lambda settle=settle, name=name: settle_all(settle, states[name]))  # type: ignore[misc]
+            times[name].append(took / len(states[name]))
+        first = {name: times[name][0] for name in ways}
+        ways = {name: settle for name, settle in ways.items() if first[name] <= SLOW * min(first.values())}
+    species = len(problem.system.species)
+    gases = int(problem.system.gas.sum())
+    return {
+        "certified": bool(batch.certified.all()),
+        "steps": float(batch.steps.mean()),
+        "gases": gases,
+        "condensed": species - gases,
+        "cantera": ct.__version__,
+        "few": problem.few,
+        "verdicts": told,
+        "times": times,
+    }
 
 
 if __name__ == "__main__":
-    main()
+    print(json.dumps(measure(PROBLEMS[sys.argv[1]]())))

@@ -16,7 +16,7 @@ from typing import Any
 import pytest
 from shipped.conftest import CASES, Run
 
-NAMES = sorted(path.stem for path in CASES.glob("*.toml"))
+NAMES = sorted(path.stem for path in CASES.glob("*.toml") if path.stem != "study_million")  # it has a test of its own
 MIXTURES = [name for name in NAMES if not name.startswith("train_")]
 STANDARD = 1e5  # Pa
 

@@ -27,6 +27,7 @@ MOST_LINES: Final = 7
 
 _DECADES: Final = 3.0  # over so many a logarithmic axis
 _DEEPEST: Final = 1e-8  # of the largest value, the least that a logarithmic axis shows
+_MUCH: Final = 0.2  # relative change of a key figure from which its place in its set counts
 _CHANGING: Final = 3  # key figures that are shown unasked
 _SPECIES: Final = 3  # species that are shown unasked where two inputs are varied
 
@@ -62,14 +63,18 @@ def asked_figures(source: Source) -> list[Quantity]:
 
 
 def changing_figures(source: Source) -> list[Quantity]:
-    """The key figures that change most, relative to their largest value, and say more than an input does."""
+    """Key figures that change and say more than an input does, three at most.
+
+    Those that change by more than a fifth of their largest value come first, as the set lists them, since a set
+    begins with what matters most; then the others by how much they change.
+    """
     found = []
     for one in key_quantities(source):
         values = one.values
         if not np.isfinite(values).all() or not one.varies or _is_fed(source, one):
             continue
-        low, high = one.span
-        found.append((-(high - low) / max(abs(low), abs(high)), len(found), one))
+        change = float(np.ptp(values) / np.abs(values).max())
+        found.append((-1.0 if change > _MUCH else -change, len(found), one))
     chosen: list[Quantity] = []
     for _, _, one in sorted(found):
         if len(chosen) < _CHANGING and not any(_same(one.values, other.values) for other in chosen):
@@ -84,13 +89,17 @@ def key_results(source: Source) -> list[Quantity]:
     and heat where they are results, and condensed phases that come or go, are always among them.
     """
     asked = asked_figures(source)
-    found = [*asked, *(one for one in state_quantities(source) if one.label != "pressure")]
+    states = state_quantities(source)
+    found = [*asked, *(one for one in states if one.label == "temperature")]
     if not asked:
         found += changing_figures(source)
-        main = [one for one in by_change(gas_quantities(source)) if one.varies][:_SPECIES]
+        told = {one.label.split(",")[0] for one in found}
+        gas = [one for one in by_change(gas_quantities(source)) if one.varies and one.label not in told]
+        main = gas[: max(_SPECIES - len(found) // 2, 1)]
         found += [replace(one, label=f"{one.label} in the gas, wet") for one in main]
     phases = [one for one in condensed_quantities(source) if comes_or_goes(one)][:_SPECIES]
-    return [*found, *(replace(one, label=f"amount of {one.label}") for one in phases)]
+    found += [replace(one, label=f"amount of {one.label}") for one in phases]
+    return [*found, *(one for one in states if one.label not in ("temperature", "pressure"))]
 
 
 def by_change(quantities: Sequence[Quantity]) -> list[Quantity]:
@@ -101,26 +110,27 @@ def by_change(quantities: Sequence[Quantity]) -> list[Quantity]:
 def is_logarithmic(quantities: Sequence[Quantity], floor: float) -> bool:
     """Tell whether values, as far as they lie above ``floor`` (as shown), span more than three decades.
 
-    Shares of the gas that fall below the floor count as far as it; other zeros, and amounts of phases, do not.
+    Shares of the gas that fall below the floor count as far as it; where other results reach zero, that is to be seen.
     """
     shown = np.concatenate([one.shown[np.isfinite(one.values)] for one in quantities])
-    if not shown.size or shown.min() < 0.0 or any(one.kind == "condensed" for one in quantities):
+    gas = all(one.kind == "gas" for one in quantities)
+    if not shown.size or shown.min() < 0.0 or (not gas and shown.min() == 0.0):
         return False
-    above = np.maximum(shown, floor) if all(one.kind == "gas" for one in quantities) else shown[shown > floor]
-    return bool(above.size and np.log10(above.max() / above.min()) > _DECADES)
+    above = np.maximum(shown, floor)
+    return bool(np.log10(above.max() / above.min()) > _DECADES)
 
 
 def floor_of(source: Source, quantities: Sequence[Quantity]) -> float:
-    """Lowest value of a logarithmic axis, as shown: the threshold for shares, else the decade of the least value."""
+    """Lowest value of a logarithmic axis, as shown: the decade of the least value, but for shares the threshold."""
     units = {one.unit for one in quantities}
     share = {"%": 100.0, "ppmv": 1e6}
-    if len(units) == 1 and (unit := next(iter(units))) in share:
-        return threshold(source) * share[unit]
     shown = np.concatenate([one.shown[np.isfinite(one.values)] for one in quantities])
     above = shown[shown > 0.0]
     if not above.size:
         return 1e-8
-    return float(10.0 ** np.floor(np.log10(max(above.min(), _DEEPEST * above.max()))))
+    least = threshold(source) * share.get(next(iter(units)), 0.0) if len(units) == 1 else 0.0
+    lowest = max(float(above.min()), _DEEPEST * float(above.max()))
+    return max(least, float(10.0 ** np.floor(np.log10(lowest) + 1e-9)))
 
 
 def _clipped(quantities: Sequence[Quantity], floor: float) -> list[tuple[float, float]]:

@@ -104,6 +104,8 @@ def _names(drawn: Sequence[Drawn]) -> list[str]:
 
 def _write(one: Drawn, name: str, folder: Path) -> Made:
     """Write the three files of a figure; no dates and no versions in them, so that they come out the same again."""
+    one.figure.draw_without_rendering()
+    one.figure.set_layout_engine("none")  # laid out once for both files
     told: dict[str, Any] = {"Title": one.title, "Description": one.alternative}
     one.figure.savefig(folder / f"{name}.svg", metadata={**told, "Date": None, "Creator": None})
     one.figure.savefig(folder / f"{name}.png", dpi=DPI, metadata={**told, "Software": None})

@@ -11,6 +11,7 @@ from gibbsmin.units import unit_of
 
 _ALONE: Final = ("air_ratio", "equivalence_ratio", "excess_air", "steam_to_carbon", "oxygen_to_carbon")
 _WORDS: Final = {
+    "pressure": "absolute pressure",
     "percent": "share",
     "recirculated_percent": "recirculated",
     "percent_of_feeds": "share of feeds",

@@ -16,7 +16,7 @@ from gibbsmin.report.figures.labels import label_lines
 from gibbsmin.report.figures.maps import levels_of, map_panel
 from gibbsmin.report.figures.quantities import Quantity
 from gibbsmin.report.figures.source import Source
-from gibbsmin.report.figures.style import WIDTH, canvas, with_unit
+from gibbsmin.report.figures.style import WIDTH, canvas, in_unit, with_unit
 
 _MOST: Final = 6
 _FIGURES: Final = 6
@@ -72,10 +72,11 @@ def _panels(source: Source, quantity: Quantity, order: tuple[int, int, int], fix
     across = 2 if count in (2, 4) else min(count, 3)
     down = -(-count // across)
     at = f", {', '.join(fixed)}" if fixed else ""
-    title = f"{capital(with_unit(quantity.label, quantity.unit))}{source.held}{at}"
+    is_family = a.values.size <= SHORT
+    each = f", a line for each {a.label}" if is_family else ""
+    title = f"{capital(in_unit(quantity.label, quantity.unit))}{source.held}{at}{each}"
     figure, axes = canvas(title, down, across, 2.3 * down + 0.7, sharex=True, sharey=True)
     lines = []
-    is_family = a.values.size <= SHORT
     levels = levels_of(source, whole)
     for k, panel in enumerate(axes.flat):
         if k >= count:
@@ -92,7 +93,6 @@ def _panels(source: Source, quantity: Quantity, order: tuple[int, int, int], fix
     figure.draw_without_rendering()
     for panel, named in lines:
         label_lines(panel, named)
-    note = (f"The lines are {a.label}{', ' + a.unit if a.unit else ''}.",) if is_family else ()
     what = "Lines" if is_family else "Maps"
     return Drawn(
         f"panels_{quantity.name.rpartition(' [')[0]}",
@@ -101,5 +101,5 @@ def _panels(source: Source, quantity: Quantity, order: tuple[int, int, int], fix
         f"{c.label}: {', '.join(input_value(c, float(value)) for value in c.values)}.",
         figure,
         columns(source, [quantity]),
-        (*note, *source.notes),
+        source.notes,
     )

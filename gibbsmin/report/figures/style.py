@@ -194,6 +194,11 @@ def with_unit(label: str, unit: str) -> str:
     return f"{label}, {unit}" if unit else label
 
 
+def in_unit(label: str, unit: str) -> str:
+    """Title of what is shown: words, and the unit; ``unit`` as people write it."""
+    return f"{label} in {unit}" if unit else label
+
+
 def value_with_unit(text: str, unit: str) -> str:
     """Write a number with its unit; ``unit`` as people write it."""
     return f"{text} {unit}" if unit else text
