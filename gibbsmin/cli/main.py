@@ -11,6 +11,7 @@ from gibbsmin.cli.begin import begin
 from gibbsmin.cli.check import check
 from gibbsmin.cli.messages import INTERRUPTED, say
 from gibbsmin.cli.reaction import reaction
+from gibbsmin.cli.report import report
 from gibbsmin.cli.run import run
 from gibbsmin.cli.schema import schema
 from gibbsmin.cli.species import species
@@ -30,6 +31,7 @@ for command, told in (
     (check, "Read and explain cases without solving them."),
     (species, "Find species; show the data of one."),
     (reaction, "Heat, entropy, Gibbs energy and K of a reaction over temperature."),
+    (report, "Draw the figures of result folders again."),
     (begin, "Write a commented case file to start from."),
     (schema, "Print the JSON Schema of case files."),
 ):

@@ -9,6 +9,7 @@ import typer
 
 from gibbsmin.cli.messages import INTERRUPTED, NOT_CERTIFIED, WRONG, Progress, guarded, say
 from gibbsmin.cli.messages import show as show_lines
+from gibbsmin.cli.report import draw_figures
 from gibbsmin.errors import GibbsminError, InputError
 
 if TYPE_CHECKING:
@@ -38,6 +39,10 @@ def run(
     cluster: Annotated[
         str, typer.Option(metavar="ADDRESS", help="Solve them on the Dask cluster of this scheduler.")
     ] = "",
+    figures: Annotated[
+        bool | None,
+        typer.Option("--figures/--no-figures", help="Draw figures into DIR/figures. Default: of sweeps."),
+    ] = None,
     quiet: Annotated[bool, typer.Option("--quiet", "-q", help="Print no tables; errors still show.")] = False,
 ) -> None:
     """Solve each case, print its table, and write its result folder.
@@ -62,6 +67,8 @@ def run(
             data, good = _solve_large(study, folder, show, workers, resume, cluster)
         else:
             data, good = _solve(study, folder, show)
+        if figures or (figures is None and (folder / "result.nc").is_file()):
+            draw_figures(folder, show)
         documents.append(data)
         certified = certified and good
     if as_json:

@@ -265,6 +265,8 @@ def _prepare(file: Any, plan: Plan) -> None:
             continue
         variable = file.create_variable(_safe(one), dims, float, fillvalue=empty, **squeeze)
         variable.attrs["units"], variable.attrs["long_name"] = one.unit, one.meaning
+        if one.shown:
+            variable.attrs["shown"] = one.shown
     if dims == ("point",):
         for name, unit in plan.inputs:
             file.create_variable(name, dims, float, fillvalue=empty, **squeeze).attrs["units"] = unit

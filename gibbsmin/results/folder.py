@@ -20,7 +20,12 @@ if TYPE_CHECKING:
 SCHEMA: Final = 1
 _INDENTED: Final = 200  # states up to which result.json is indented
 FILES: Final = ("result.json", "table.csv", "streams.csv", "steps.csv", "result.nc")
-"""What a result folder may hold; a folder with anything else is not replaced."""
+"""What a result folder may hold beside its figures; a folder with anything else is not replaced."""
+
+FIGURES: Final = "figures"
+"""Folder of the figures in a result folder."""
+
+_DRAWN: Final = (".svg", ".png", ".csv", ".json")
 
 
 def check_place(folder: Path) -> None:
@@ -136,9 +141,16 @@ def exchange(fresh: Path, target: Path, old: Path) -> None:
         raise
 
 
+def _is_own(path: Path) -> bool:
+    """Tell a file that a result may have, and a folder that holds figures only."""
+    if path.name == FIGURES and path.is_dir() and not path.is_symlink():
+        return all(one.is_file() and one.suffix in _DRAWN for one in path.iterdir())
+    return path.name in FILES and path.is_file()
+
+
 def _is_result(folder: Path) -> bool:
     """Tell an earlier result by its files and by what its result.json says of itself."""
-    if any(path.name not in FILES or not path.is_file() for path in folder.iterdir()):
+    if not all(_is_own(path) for path in folder.iterdir()):
         return False
     try:
         data = json.loads((folder / "result.json").read_text(encoding="utf-8"))

@@ -23,11 +23,12 @@ SHOWN: Final = 1e-6
 
 @dataclass(frozen=True)
 class Variable:
-    """A column of a large study: its ``name``, its ``unit``, and what it is."""
+    """A column of a large study: its ``name``, its ``unit``, what it is, and the unit that people read it in."""
 
     name: str
     unit: str
     meaning: str
+    shown: str = ""
 
 
 @dataclass(frozen=True)
@@ -92,7 +93,7 @@ def layout_of(results: Sequence[Result]) -> Layout:
     if result.entropies_generated is not None:
         variables.append(Variable("entropy_generated", per_K, "entropy generated in the system and its surroundings"))
     figures = {
-        f"{group}.{one.name}": Variable(f"{group}.{one.name}", one.unit, one.label)
+        f"{group}.{one.name}": Variable(f"{group}.{one.name}", one.unit, one.label, one.shown)
         for each in results
         for group, ones in each.key_figures.items()
         for one in ones

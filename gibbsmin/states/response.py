@@ -49,6 +49,7 @@ from numpy.typing import NDArray
 from gibbsmin.constants import R
 from gibbsmin.states.system import Array, System
 from gibbsmin.thermo.polynomial import enthalpy_RT, heat_capacity_R
+from gibbsmin.thermo.table import pieces_at
 
 DEPENDENT: Final = 1.0e-9
 """Part of a column of A beside those of the basis, below which it is rounding [-]."""
@@ -158,8 +159,7 @@ def response(system: System, temperature: float, pressure: float, amounts: Array
 def _standard_functions(system: System, here: NDArray[np.intp], T: float) -> tuple[Array, Array]:
     """H°/RT and Cp°/R at ``T`` [K] of the species numbered in ``here``."""
     table = system.table
-    piece = [table.start[j] + np.searchsorted(table.high[table.start[j] : table.start[j + 1]], T) for j in here]
-    a, scale = table.coefficients[piece].T, table.scale[here]
+    a, scale = table.coefficients[pieces_at(table, T)[here]].T, table.scale[here]
     return scale * enthalpy_RT(a, T, np.log(T)), scale * heat_capacity_R(a, T)
 
 

@@ -10,7 +10,6 @@ from typing import Final, TypeAlias
 import numpy as np
 from numpy.typing import NDArray
 
-from gibbsmin.constants import R
 from gibbsmin.elements import ATOMIC_WEIGHT, CHARGE
 from gibbsmin.errors import FeedError, InputError, SpeciesError, nearest
 from gibbsmin.phases.ideal_gas import IdealGas
@@ -19,7 +18,7 @@ from gibbsmin.phases.pure import Pure
 from gibbsmin.states.approach import Approaches
 from gibbsmin.thermo.database import load
 from gibbsmin.thermo.record import Species
-from gibbsmin.thermo.table import Table, make_table
+from gibbsmin.thermo.table import Table, make_table, potentials_at
 from gibbsmin.units import Measurable, quantity
 
 Array: TypeAlias = NDArray[np.float64]
@@ -235,7 +234,8 @@ class System:
 
     def standard_potentials(self, T: float) -> Array:
         """G°/RT of every species, (S,) [-], at ``T`` [K] and 1 bar."""
-        return np.array([record.gibbs_energy(T) / (R * T) for record in self.records])
+        potentials: Array = potentials_at(self.table, T)
+        return potentials
 
     def feed(self, amounts: Mapping[str, Measurable]) -> Array:
         """Element amounts of a feed.

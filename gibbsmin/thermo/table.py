@@ -47,6 +47,18 @@ def make_table(species: Sequence[Species]) -> Table:
     )
 
 
+def pieces_at(table: Table, T: float) -> Any:
+    """Place of the piece of every species that holds at ``T`` [K], (S,)."""
+    first = table.start[:-1]
+    return first + np.add.reduceat(table.high < T, first, dtype=np.int64)
+
+
+def potentials_at(table: Table, T: float) -> Any:
+    """G°/RT of every species, (S,) [-], at ``T`` [K] and 1 bar."""
+    a, lnT = table.coefficients[pieces_at(table, T)].T, np.log(T)
+    return table.scale * (enthalpy_RT(a, T, lnT) - entropy_R(a, T, lnT) - table.shift)
+
+
 class Pieces(NamedTuple):
     """The piece of every species for one range of temperature, side by side, so that loops over species are vectors."""
 

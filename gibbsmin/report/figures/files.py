@@ -18,9 +18,7 @@ import numpy as np
 from gibbsmin.errors import InputError
 from gibbsmin.report.figures.drawn import Drawn
 from gibbsmin.report.figures.style import DPI
-
-FOLDER: Final = "figures"
-"""Name of the folder of figures in a result folder."""
+from gibbsmin.results.folder import FIGURES, exchange
 
 INDEX: Final = "index.json"
 """Name of the list of figures in it."""
@@ -69,10 +67,10 @@ def write_figures(drawn: Sequence[Drawn], folder: Path, remarks: Sequence[str] =
     InputError
         The folder cannot be written.
     """
-    target = folder.absolute() / FOLDER
+    target = folder.absolute() / FIGURES
     try:
         if target.is_symlink() or (target.exists() and not target.is_dir()):
-            raise InputError(f"cannot write figures to {folder / FOLDER}: it is not a folder; move it away")
+            raise InputError(f"cannot write figures to {folder / FIGURES}: it is not a folder; move it away")
         work = Path(tempfile.mkdtemp(prefix=f".{folder.absolute().name}-", dir=folder.absolute().parent))
     except OSError as error:
         raise InputError(f"cannot write figures to {folder}: {error.strerror or error}") from error
@@ -83,7 +81,7 @@ def write_figures(drawn: Sequence[Drawn], folder: Path, remarks: Sequence[str] =
         listed = {"figures": [one._asdict() for one in made], "remarks": list(remarks)}
         text = json.dumps(listed, ensure_ascii=False, indent=1) + "\n"
         (fresh / INDEX).write_text(text, encoding="utf-8")
-        _exchange(fresh, target, work / "old")
+        exchange(fresh, target, work / "old")
     except OSError as error:
         raise InputError(f"cannot write figures to {folder}: {error.strerror or error}") from error
     finally:
@@ -123,16 +121,3 @@ def _table(one: Drawn) -> str:
     for row in zip(*columns, strict=True):
         writer.writerow(["" if isinstance(cell, float) and isnan(cell) else cell for cell in row])
     return text.getvalue()
-
-
-def _exchange(fresh: Path, target: Path, old: Path) -> None:
-    """Put ``fresh`` in the place of ``target``; bring the old one back if that fails."""
-    if not target.exists():
-        fresh.rename(target)
-        return
-    target.rename(old)
-    try:
-        fresh.rename(target)
-    except OSError:
-        old.rename(target)
-        raise

@@ -10,7 +10,6 @@ from matplotlib.axes import Axes
 from matplotlib.colors import LogNorm
 from matplotlib.ticker import LogLocator, MaxNLocator
 from numpy.typing import NDArray
-from scipy.ndimage import distance_transform_edt
 
 from gibbsmin.report.figures.axes import input_axis, scale_input
 from gibbsmin.report.figures.choice import floor_of, is_logarithmic
@@ -55,7 +54,7 @@ def result_map(source: Source, quantity: Quantity) -> Drawn:
     figure, panels = canvas(title, height=4.0)
     panel = panels[0, 0]
     values = quantity.shown if place == 1 else quantity.shown.T
-    map_panel(panel, x, y, values, levels_of(source, quantity), quantity.kind != "condensed")
+    map_panel(panel, x, y, values, levels_of(source, quantity), quantity.span[0] != 0.0)
     panel.set_ylabel(with_unit(y.label, y.unit))
     figure.draw_without_rendering()
     outlines(panel, x, y, [(one.label, one.values if place == 1 else one.values.T) for one in phases])
@@ -105,7 +104,7 @@ def map_panel(panel: Axes, x: Input, y: Input, values: Floats, levels: tuple[Flo
     levels : (array, bool)
         From `levels_of`.
     zero : bool
-        Whether a contour at zero is drawn; that of a phase's amount is its outline.
+        Whether a contour at zero is drawn; where nothing lies below, it would only follow the grid.
     """
     at, logarithmic = levels
     panel.grid(visible=False)
@@ -135,7 +134,7 @@ def outlines(panel: Axes, x: Input, y: Input, regions: Sequence[tuple[str, Float
     for label, amounts in regions:
         field = np.ma.masked_invalid(beyond_zero(amounts))
         panel.contour(x.values, y.values, field, levels=[0.0], colors=INK, linewidths=1.4, linestyles="--")
-        depth = distance_transform_edt(np.pad(amounts > 0.0, 1))[1:-1, 1:-1] / max(amounts.shape)
+        depth = _depth(amounts > 0.0) / max(amounts.shape)
         for spot in taken:
             away = (place - spot) / (_WIDE, 1.0)
             depth = np.minimum(depth, np.hypot(away[..., 0], away[..., 1]))
@@ -181,6 +180,17 @@ def beyond_zero(amounts: Floats) -> Floats:
     far = -float(np.nanmax(amounts, initial=0.0))
     edge = np.divide(total, count, out=np.full(amounts.shape, far), where=count > 0)
     return np.where(np.isnan(amounts), np.nan, np.where(there, amounts, edge))
+
+
+def _depth(inside: NDArray[np.bool_]) -> Floats:
+    """How many states lie between each state and the rim of its region, (m, n); the rim of the map is one."""
+    depth = np.zeros(inside.shape)
+    left = np.pad(inside, 1)
+    while left.any():
+        depth += left[1:-1, 1:-1]
+        core = left[1:-1, 1:-1] & left[2:, 1:-1] & left[:-2, 1:-1] & left[1:-1, 2:] & left[1:-1, :-2]
+        left = np.pad(core, 1)
+    return depth
 
 
 def _shifted(amounts: Floats, axis: int, step: int) -> Floats:

@@ -170,13 +170,28 @@ def key_quantities(source: Source) -> list[Quantity]:
     assert source.data is not None, "a sweep"
     units = typed_units(source.case, source.basis)
     found = []
-    for group, figures in (source.head.get("key_figures") or {}).items():
-        for name, told in figures.items():
-            if f"{group}.{name}" in source.data and isinstance(told.get("label"), str):
-                values = _good(source, f"{group}.{name}")
-                if np.isfinite(values).any():
-                    found.append(_key(f"{group}.{name}", told, values, units["temperature"]))
+    for name, told in _legend(source).items():
+        values = _good(source, name)
+        if np.isfinite(values).any():
+            found.append(_key(name, told, values, units["temperature"]))
     return found
+
+
+def _legend(source: Source) -> dict[str, dict[str, str]]:
+    """Label, unit and shown unit of each key figure, by SET.NAME, in the order of the result.
+
+    A study whose states are on disk only keeps them with the data set; result.json then tells their ranges.
+    """
+    assert source.data is not None, "a sweep"
+    sets = source.head.get("key_figures") or {}
+    known = {f"{group}.{name}": dict(told) for group, ones in sets.items() for name, told in ones.items()}
+    inputs = [one.name for one in source.inputs]
+    for name in source.head.get("ranges") or {}:
+        if "." in name and name in source.data and name not in inputs:
+            attributes = source.data[name].attrs
+            told = {"label": "long_name", "unit": "units", "shown": "shown"}
+            known.setdefault(name, {key: str(attributes.get(attribute, "")) for key, attribute in told.items()})
+    return {name: told for name, told in known.items() if name in source.data and told.get("label")}
 
 
 def prefixed_quantity(name: str, label: str, values: Floats, unit: str, kind: str = "state") -> Quantity:

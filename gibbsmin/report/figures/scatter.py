@@ -6,7 +6,7 @@ from collections.abc import Iterator, Sequence
 from typing import Final
 
 import numpy as np
-from scipy.stats import rankdata
+from numpy.typing import NDArray
 
 from gibbsmin.report.figures.axes import input_axis, linear_axis, log_axis, panel_title
 from gibbsmin.report.figures.choice import floor_of, is_logarithmic
@@ -14,6 +14,8 @@ from gibbsmin.report.figures.drawn import Drawn, columns, input_span, listed, sp
 from gibbsmin.report.figures.quantities import Quantity
 from gibbsmin.report.figures.source import Input, Source
 from gibbsmin.report.figures.style import WIDTH, canvas, shades, with_unit
+
+Floats = NDArray[np.float64]
 
 _ACROSS: Final = 3
 _DOWN: Final = 3
@@ -47,13 +49,16 @@ def _strongest(source: Source, rows: Sequence[Quantity]) -> list[int]:
         for quantity in rows:
             known = np.isfinite(quantity.values)
             if known.sum() > 2 and quantity.varies:
-                a, b = rankdata(one.values[known]), rankdata(quantity.values[known])
-                spread = a.std() * b.std()
-                found.append(abs(float(np.mean((a - a.mean()) * (b - b.mean())) / spread)) if spread > 0.0 else 0.0)
+                found.append(abs(float(np.corrcoef(_ranks(one.values[known]), _ranks(quantity.values[known]))[0, 1])))
         return max(found)
 
     order = sorted(range(len(source.inputs)), key=lambda k: -strength(source.inputs[k]))[:_ACROSS]
     return sorted(order)
+
+
+def _ranks(values: Floats) -> NDArray[np.intp]:
+    """Place of each value in their order, (n,)."""
+    return np.argsort(np.argsort(values, kind="stable"), kind="stable")
 
 
 def _figure(source: Source, rows: Sequence[Quantity], places: Sequence[int], name: str) -> Drawn:

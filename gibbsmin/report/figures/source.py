@@ -32,7 +32,7 @@ DESIGN_POINTS: Final = 600
 """Most points of a design that is no grid."""
 
 _CHUNK: Final = 1 << 18
-_NOT_INPUTS: Final = ("species", "stream", "step")
+_NOT_DRAWN: Final = ("reason", "enthalpy", "entropy", "gibbs_energy", "element_residual", "gap", "worst_affinity")
 
 
 @dataclass(frozen=True)
@@ -200,20 +200,19 @@ def _sweep(head: Mapping[str, Any], file: Path) -> Source:
     """Read the states of a sweep that are drawn."""
     import xarray
 
+    case = head.get("case") or {}
+    varied = [str(axis["vary"]) for axis in case.get("sweep", [])]
+    kind = str((case.get("design") or {}).get("kind", "grid"))
     with xarray.open_dataset(file, engine="h5netcdf") as data:
-        names = [str(dim) for dim in data.dims if dim not in _NOT_INPUTS]
-        names = [name for name in map(str, data["certified"].dims) if name in names]
-        design = (head.get("case") or {}).get("design") or {}
-        kind = str(design.get("kind", "grid"))
-        if kind == "grid" and names == ["point"] and "point" not in data.coords:
-            kind = "points"
+        names = [str(dimension) for dimension in data["certified"].dims]
         if kind == "grid":
             most = (LINE_POINTS, MAP_POINTS)[len(names) - 1] if len(names) < 3 else PANEL_POINTS
         else:
             most = LINE_POINTS if kind == "in step" else DESIGN_POINTS
         steps = {name: stride(data.sizes[name], most) for name in names}
-        thinned = data.isel({name: slice(None, None, step) for name, step in steps.items()}).load()
-        inputs = [name for name in names if name in data.coords] if kind == "grid" else _along(data, names[0])
+        wanted = [name for name in map(str, data.variables) if name not in _NOT_DRAWN]
+        thinned = data[wanted].isel({name: slice(None, None, step) for name, step in steps.items()}).load()
+    inputs = names if kind == "grid" else varied
     notes = tuple(
         f"Every {_ordinal(step)} {'state' if len(names) == 1 else f'value of {input_words(name)}'} is drawn."
         for name, step in steps.items()
@@ -230,11 +229,6 @@ def _sweep(head: Mapping[str, Any], file: Path) -> Source:
         for name in inputs
     )
     return Source(head, None, kind, read, thinned, notes)
-
-
-def _along(data: xarray.Dataset, dimension: str) -> list[str]:
-    """Inputs of a design that is no grid: coordinates along its points."""
-    return [str(name) for name, one in data.coords.items() if one.dims == (dimension,) and name != dimension]
 
 
 def stride(count: int, most: int) -> int:

@@ -196,7 +196,7 @@ def with_unit(label: str, unit: str) -> str:
 
 def in_unit(label: str, unit: str) -> str:
     """Title of what is shown: words, and the unit; ``unit`` as people write it."""
-    return f"{label} in {unit}" if unit else label
+    return f"{label}{',' if ',' in label else ''} in {unit}" if unit else label
 
 
 def value_with_unit(text: str, unit: str) -> str:
