@@ -40,7 +40,8 @@ class Show(Table):
     columns: list[Text] = Field(
         default=[],
         description=(
-            "Key figures that stand as columns in the table of a sweep, as SET.NAME; the names are those of table.csv."
+            "Key figures that stand as columns in the table of a sweep, as SET.NAME, of a train as STAGE.SET.NAME; the "
+            "names are those of table.csv."
         ),
         examples=[["reforming.ch4_dry", "flue gas.nox_dry"]],
     )

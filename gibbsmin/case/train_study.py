@@ -22,7 +22,7 @@ from gibbsmin.case.stage_schema import Stage, StageHeld
 from gibbsmin.case.study_frame import StudyFrame, read_feed_basis, read_feeds, read_varied
 from gibbsmin.case.train_described import describe_train
 from gibbsmin.case.train_schema import TrainCase, nodes
-from gibbsmin.errors import CaseError, InputError
+from gibbsmin.errors import CaseError, InputError, nearest
 from gibbsmin.practice.feeds.ratios import counted_carbon
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge_train import judge_train
@@ -191,6 +191,11 @@ class TrainStudy(StudyFrame):
             heating_values={one.name: one.heating_value for one in self.recipes},
             units=self.units,
         )
+        known = result.figures if self.case.show.columns else {}
+        for name in self.case.show.columns:
+            if name not in known:
+                asked = f"{nearest(name, known) or ';'} names are STAGE.SET.NAME, as in table.csv"
+                raise CaseError(f"there is no key figure {name!r}{asked}", self.path, "show.columns")
         if out is not None:
             write_folder(result, judge_train(result), Path(out))
         return result

@@ -12,6 +12,7 @@ from gibbsmin.errors import UnitError
 from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.report.columns import Column, drawn, fitting, lettered, short, unit_word
 from gibbsmin.report.design_words import varied_lines
+from gibbsmin.report.key_figure_table import shown_unit, shown_value
 from gibbsmin.report.numbers import MISSING, figures, plain
 from gibbsmin.report.sweep_table import chosen
 from gibbsmin.report.train_steps import energy_scale, scaled
@@ -52,6 +53,8 @@ def train_sweep(result: TrainResult) -> list[str]:
     lines = varied_lines(dict(zip(result.inputs, letters, strict=True)), result.case.get("design", {}))
     lines += ["", "whole train, and outlets whose temperature moves"]
     lines += drawn(fitting(inputs, [*_energies(result, shown), *_temperatures(result, shown)]))
+    if chosen_figures := _chosen(result, shown):
+        lines += ["", "chosen numbers", *drawn(fitting(inputs, chosen_figures))]
     sheet = result.sheet
     by_mass = sorted(sheet.products, key=lambda name: -np.nanmax([0.0, *sheet.streams[name].mass]))
     gases = [name for name in by_mass if np.any(sheet.streams[name].gas_total > 0.0)][:PRODUCTS]
@@ -96,6 +99,16 @@ def _input(name: str) -> str:
     key = parts[-1].removeprefix("isentropic_")
     owner = parts[-2] if parts[2] == "take" else parts[1]
     return f"{shortened(owner, 10)} {shortened(key, 12)}"
+
+
+def _chosen(result: TrainResult, shown: States) -> list[Column]:
+    """Key figures that the case names for its table, as STAGE.SET.NAME."""
+    known = result.figures
+    return [
+        Column(shortened(one.label, _HEAD), shown_unit(one), [shown_value(one, float(one.value[i])) for i in shown])
+        for name in result.case.get("show", {}).get("columns") or []
+        if (one := known.get(name)) is not None
+    ]
 
 
 def _energies(result: TrainResult, shown: States) -> list[Column]:

@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 from numpy.typing import NDArray
 
+from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.practice.figures.settled import FeedFacts
 from gibbsmin.results.account import Account
 from gibbsmin.results.key_figures import SETS, settled
@@ -134,6 +135,16 @@ class TrainResult:
         """The stages that settle, each as a result of its own, by name."""
         return {
             name: self._stage(name, step) for name, step in self.solved.steps.items() if step.changed.batch is not None
+        }
+
+    @property
+    def figures(self) -> dict[str, KeyFigure]:
+        """Key figures of all stages, by STAGE.SET.NAME."""
+        return {
+            f"{name}.{group}.{one.name}": one
+            for name, stage in self.stages.items()
+            for group, ones in stage.key_figures.items()
+            for one in ones
         }
 
     def _stage(self, name: str, step: StepResult) -> Result:
