@@ -148,7 +148,10 @@ class FakeResult:
             "title": self.title,
             "case": self.case,
             "basis": self.basis,
-            "states": [{"temperature": float(T)} for T in self.batch.temperature],
+            "states": [
+                {"temperature": float(T), "certificate": {"ok": bool(good)}}
+                for T, good in zip(self.batch.temperature, self.batch.certified, strict=True)
+            ],
         }
 
     def dataset(self) -> Any:

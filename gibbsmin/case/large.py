@@ -23,6 +23,7 @@ from gibbsmin import __version__
 from gibbsmin.errors import InputError
 from gibbsmin.practice.safety.cautions import gather, sentences
 from gibbsmin.results.archive import Archive, Plan, cuts, put
+from gibbsmin.results.exports import check_exports
 from gibbsmin.results.folder import check_place
 from gibbsmin.results.judge import judge, peaks
 from gibbsmin.results.pieces import Layout, csv_lines, layout_of, piece_of
@@ -93,11 +94,14 @@ class Ways:
         Whether parts of an interrupted run are kept.
     cluster : str
         Address of the scheduler of a Dask cluster; empty for this machine.
+    also : tuple of str
+        Formats to write the states in besides CSV and NetCDF.
     """
 
     workers: int = 1
     resume: bool = False
     cluster: str = ""
+    also: tuple[str, ...] = ()
 
 
 def run_large(study: Study, out: Path, ways: Ways, progress: Progress | None = None) -> Archived:
@@ -119,9 +123,11 @@ def run_large(study: Study, out: Path, ways: Ways, progress: Progress | None = N
     Raises
     ------
     InputError
-        The folder cannot be written, the cluster does not answer, or workers die again and again.
+        The folder cannot be written, a format is not to be had, the cluster does not answer, or workers die again and
+        again.
     """
     check_place(out)
+    check_exports(ways.also, study.all_states)
     looked = _looked_at(study)
     layout = layout_of(looked)
     plan = _plan(study, layout)
@@ -135,7 +141,7 @@ def run_large(study: Study, out: Path, ways: Ways, progress: Progress | None = N
         done += windows[number][1] - windows[number][0]
         if progress is not None:
             progress(done, plan.states)
-    document = archive.assemble(_cautions(looked))
+    document = archive.assemble(_cautions(looked), ways.also)
     return Archived(out, document)
 
 

@@ -27,6 +27,7 @@ from gibbsmin.case.study_frame import StudyFrame, read_feed_basis, read_feeds, r
 from gibbsmin.errors import CaseError, InputError, nearest
 from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.practice.flue_gas.flue_gas import flue_gas
+from gibbsmin.results.exports import check_exports
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge import judge
 from gibbsmin.results.key_figures import SETS, settled
@@ -150,7 +151,9 @@ class Study(StudyFrame):
         """Value of a key of ``[held]`` in every state, (states,), in ``unit``."""
         return number(self.case.held, name, self.feed_states, unit)
 
-    def run(self, out: str | Path | None = None, progress: Progress | None = None) -> Result:
+    def run(
+        self, out: str | Path | None = None, progress: Progress | None = None, *, also: Sequence[str] = ()
+    ) -> Result:
         """Solve all states.
 
         Parameters
@@ -159,6 +162,8 @@ class Study(StudyFrame):
             Result folder to write, as the command line does.
         progress : callable, optional
             Called with the states done and all states.
+        also : sequence of str
+            Formats to write the spreadsheets in besides CSV: ``excel``, ``parquet``.
 
         Returns
         -------
@@ -176,9 +181,10 @@ class Study(StudyFrame):
             raise InputError(f"{self.all_states:,} states are kept on disk, not in memory; use run_into(folder)")
         if out is not None:
             check_place(Path(out))
+            check_exports(also, self.all_states)
         result = self.solved(progress)
         if out is not None:
-            write_folder(result, judge(result), Path(out))
+            write_folder(result, judge(result), Path(out), also)
         return result
 
     @property
@@ -194,6 +200,7 @@ class Study(StudyFrame):
         workers: int = 1,
         resume: bool = False,
         cluster: str = "",
+        also: Sequence[str] = (),
     ) -> Archived:
         """Solve a study of any size part by part, its states kept on disk.
 
@@ -209,6 +216,8 @@ class Study(StudyFrame):
             Whether to go on from the parts of a run that was interrupted.
         cluster : str
             Address of the scheduler of a Dask cluster to solve on; empty for this machine.
+        also : sequence of str
+            Formats to write the states in besides CSV and NetCDF: ``excel``, ``parquet``.
 
         Returns
         -------
@@ -220,7 +229,7 @@ class Study(StudyFrame):
             The folder cannot be written, or holds something that is not a result; parts of another study are there;
             the cluster does not answer.
         """
-        return run_large(self, Path(out), Ways(workers, resume, cluster), progress)
+        return run_large(self, Path(out), Ways(workers, resume, cluster, tuple(also)), progress)
 
     def solved(self, progress: Progress | None = None) -> Result:
         """Solve all states in memory; as `run`, without a folder."""

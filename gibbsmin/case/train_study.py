@@ -24,6 +24,7 @@ from gibbsmin.case.train_described import describe_train
 from gibbsmin.case.train_schema import TrainCase, nodes
 from gibbsmin.errors import CaseError, InputError, nearest
 from gibbsmin.practice.feeds.ratios import counted_carbon
+from gibbsmin.results.exports import check_exports
 from gibbsmin.results.folder import check_place, write_folder
 from gibbsmin.results.judge_train import judge_train
 from gibbsmin.results.train_result import TrainResult
@@ -144,7 +145,9 @@ class TrainStudy(StudyFrame):
             found[one.name] = _feed_stream(self.feed_states, k, self.substances, 1e5 if P is None else P)
         return found
 
-    def run(self, out: str | Path | None = None, progress: Progress | None = None) -> TrainResult:
+    def run(
+        self, out: str | Path | None = None, progress: Progress | None = None, *, also: Sequence[str] = ()
+    ) -> TrainResult:
         """Solve all states.
 
         Parameters
@@ -153,6 +156,8 @@ class TrainStudy(StudyFrame):
             Result folder to write, as the command line does.
         progress : callable, optional
             Called with the states done and all states, at the end.
+        also : sequence of str
+            Formats to write the spreadsheets in besides CSV: ``excel``, ``parquet``.
 
         Returns
         -------
@@ -167,6 +172,7 @@ class TrainStudy(StudyFrame):
         """
         if out is not None:
             check_place(Path(out))
+            check_exports(also, self.states)
         try:
             solved = solve_train(self.steps(finder(self._own())), self.feed_streams())
         except RuleError as error:
@@ -197,7 +203,7 @@ class TrainStudy(StudyFrame):
                 asked = f"{nearest(name, known) or ';'} names are STAGE.SET.NAME, as in table.csv"
                 raise CaseError(f"there is no key figure {name!r}{asked}", self.path, "show.columns")
         if out is not None:
-            write_folder(result, judge_train(result), Path(out))
+            write_folder(result, judge_train(result), Path(out), also)
         return result
 
     def describe(self) -> dict[str, Any]:

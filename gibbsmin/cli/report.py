@@ -33,6 +33,10 @@ def draw_figures(folder: Path, show: bool) -> None:
     show : bool
         Whether anything is said.
     """
+    import logging
+
+    # The first drawing on a machine lists its fonts; that it does, and where it keeps the list, is not worth a word.
+    logging.getLogger("matplotlib").setLevel(logging.ERROR)
     from gibbsmin.report.figures.make import figures
     from gibbsmin.report.words import labelled
     from gibbsmin.results.folder import FIGURES

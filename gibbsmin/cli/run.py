@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+from enum import StrEnum
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated, Any
 
@@ -17,6 +19,13 @@ if TYPE_CHECKING:
     from gibbsmin.case.train_study import TrainStudy
 
 _MANY = 10_000  # states from which writing takes so long that it is announced
+
+
+class Also(StrEnum):
+    """Formats of spreadsheets besides CSV."""
+
+    EXCEL = "excel"
+    PARQUET = "parquet"
 
 
 @guarded
@@ -43,6 +52,9 @@ def run(
         bool | None,
         typer.Option("--figures/--no-figures", help="Draw figures into DIR/figures. Default: of sweeps."),
     ] = None,
+    also: Annotated[
+        list[Also] | None, typer.Option("--also", help="Write the spreadsheets as this too; may be given twice.")
+    ] = None,
     quiet: Annotated[bool, typer.Option("--quiet", "-q", help="Print no tables; errors still show.")] = False,
 ) -> None:
     """Solve each case, print its table, and write its result folder.
@@ -52,11 +64,13 @@ def run(
     """
     folders = _folders(cases, out)
     studies = _read(cases)
+    from gibbsmin.results.exports import check_exports
     from gibbsmin.results.folder import as_json as written
     from gibbsmin.results.folder import check_place
 
-    for folder in folders:
+    for study, folder in zip(studies, folders, strict=True):
         check_place(folder)
+        check_exports(also or (), study.all_states)
     documents = []
     certified = True
     for number, (study, folder) in enumerate(zip(studies, folders, strict=True)):
@@ -64,9 +78,9 @@ def run(
             typer.echo("")
         show = not as_json and not quiet
         if getattr(study, "is_large", False):
-            data, good = _solve_large(study, folder, show, workers, resume, cluster)
+            data, good = _solve_large(study, folder, show, workers, resume, cluster, also or ())
         else:
-            data, good = _solve(study, folder, show)
+            data, good = _solve(study, folder, show, also or ())
         if figures or (figures is None and (folder / "result.nc").is_file()):
             draw_figures(folder, show)
         documents.append(data)
@@ -105,7 +119,7 @@ def _read(cases: list[Path]) -> list[Study | TrainStudy]:
 
 
 def _solve_large(
-    study: Any, folder: Path, show: bool, workers: int | None, resume: bool, cluster: str
+    study: Any, folder: Path, show: bool, workers: int | None, resume: bool, cluster: str, also: Sequence[str]
 ) -> tuple[dict[str, Any], bool]:
     """Solve a study whose states are kept on disk; the document, and whether all states are certified."""
     from gibbsmin.case.large import cores
@@ -114,7 +128,7 @@ def _solve_large(
     progress = Progress("solving")
     try:
         done = study.run_into(
-            folder, progress, workers=cores() if workers is None else workers, resume=resume, cluster=cluster
+            folder, progress, workers=cores() if workers is None else workers, resume=resume, cluster=cluster, also=also
         )
     except KeyboardInterrupt:
         say("gibbsmin: stopped; what is solved is kept, run again with --resume to go on")
@@ -129,7 +143,7 @@ def _solve_large(
     return done.document, done.all_certified
 
 
-def _solve(study: Study | TrainStudy, folder: Path, show: bool) -> tuple[dict[str, Any], bool]:
+def _solve(study: Study | TrainStudy, folder: Path, show: bool, also: Sequence[str]) -> tuple[dict[str, Any], bool]:
     """Solve one case, write its folder, show it; the document, and whether all states are certified."""
     from gibbsmin.compiled import cache_is_cold
     from gibbsmin.report.summary import summary
@@ -149,7 +163,7 @@ def _solve(study: Study | TrainStudy, folder: Path, show: bool) -> tuple[dict[st
     judged = judge_train(result) if isinstance(result, TrainResult) else judge(result)
     if len(judged) > _MANY:
         say(f"Writing {len(judged)} states to {folder} ...")
-    data = write_folder(result, judged, folder)
+    data = write_folder(result, judged, folder, also)
     if isinstance(result, TrainResult):
         lines, certified = train_summary(result, judged, folder), result.certified
     else:

@@ -19,6 +19,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.errors import InputError
+from gibbsmin.results.exports import export
 from gibbsmin.results.folder import as_json, exchange
 from gibbsmin.results.pieces import Layout, Variable, csv_head
 
@@ -161,13 +162,15 @@ class Archive:
             with np.load(self._place(number), allow_pickle=False) as data:
                 yield window, {name: data[name] for name in data.files}
 
-    def assemble(self, cautions: Sequence[str]) -> dict[str, Any]:
+    def assemble(self, cautions: Sequence[str], also: Sequence[str] = ()) -> dict[str, Any]:
         """Put all parts together into the result folder, and throw them away.
 
         Parameters
         ----------
         cautions : sequence of str
             Of states that were looked at.
+        also : sequence of str
+            Formats to write the spreadsheets in besides CSV.
 
         Returns
         -------
@@ -185,6 +188,7 @@ class Archive:
             fresh.mkdir()
             document = {**self._document(fresh), "cautions": list(cautions)}
             (fresh / "result.json").write_text(as_json(document), encoding="utf-8")
+            export(fresh, also, document)
             exchange(fresh, self.folder, self.parts / "old")
             shutil.rmtree(self.parts, ignore_errors=True)
         except OSError as error:

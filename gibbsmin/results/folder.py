@@ -13,13 +13,14 @@ from typing import TYPE_CHECKING, Any, Final, Protocol
 from gibbsmin.errors import InputError
 from gibbsmin.practice.safety.cautions import Caution
 from gibbsmin.results.document import document
+from gibbsmin.results.exports import PARQUET, WORKBOOK, export
 
 if TYPE_CHECKING:
     import xarray
 
 SCHEMA: Final = 1
 _INDENTED: Final = 200  # states up to which result.json is indented
-FILES: Final = ("result.json", "table.csv", "streams.csv", "steps.csv", "result.nc")
+FILES: Final = ("result.json", "table.csv", "streams.csv", "steps.csv", "result.nc", WORKBOOK, PARQUET)
 """What a result folder may hold beside its figures; a folder with anything else is not replaced."""
 
 FIGURES: Final = "figures"
@@ -76,7 +77,9 @@ class Written(Protocol):
         """Return the states with named axes and units."""
 
 
-def write_folder(result: Written, judged: Sequence[Sequence[Caution]], folder: Path) -> dict[str, Any]:
+def write_folder(
+    result: Written, judged: Sequence[Sequence[Caution]], folder: Path, also: Sequence[str] = ()
+) -> dict[str, Any]:
     """Write a result folder.
 
     Parameters
@@ -86,6 +89,8 @@ def write_folder(result: Written, judged: Sequence[Sequence[Caution]], folder: P
         The cautions of each state.
     folder : Path
         Where; made if needed, replaced only if it holds an earlier result.
+    also : sequence of str
+        Formats to write the spreadsheets in besides CSV; see `gibbsmin.results.exports`.
 
     Returns
     -------
@@ -113,6 +118,7 @@ def write_folder(result: Written, judged: Sequence[Sequence[Caution]], folder: P
             (fresh / name).write_text(text, encoding="utf-8", newline="")
         if result.inputs:
             result.dataset().to_netcdf(fresh / "result.nc", engine="h5netcdf")
+        export(fresh, also, data)
         exchange(fresh, target, work / "old")
     except OSError as error:
         raise InputError(f"cannot write results to {folder}: {error.strerror or error}") from error

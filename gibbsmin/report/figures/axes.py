@@ -8,7 +8,7 @@ from typing import Any, Final
 
 import numpy as np
 from matplotlib.axes import Axes
-from matplotlib.axis import Axis
+from matplotlib.axis import Axis, XAxis
 from matplotlib.ticker import FuncFormatter, LogLocator, MaxNLocator, NullFormatter, NullLocator
 from numpy.typing import NDArray
 
@@ -17,6 +17,7 @@ from gibbsmin.report.figures.labels import Line
 from gibbsmin.report.figures.quantities import Quantity
 from gibbsmin.report.figures.source import Input
 from gibbsmin.report.figures.style import POINTS, with_unit
+from gibbsmin.report.words import shortened
 
 Floats = NDArray[np.float64]
 
@@ -29,6 +30,7 @@ UNIT_WORDS: Final = {
 }
 """Units as titles of axes that several results share."""
 
+_LONGEST: Final = 60  # letters of an axis title
 _FEW: Final = 25  # up to so many points each is marked
 _EVEN: Final = 1e-6
 _TITLE: Final = 5.0  # pt that a letter of a panel's title takes
@@ -40,18 +42,18 @@ def input_axis(panel: Axes, one: Input, ticks: int = 8) -> None:
     scale_input(panel.xaxis, one, ticks)
     if low < high:
         panel.set_xlim(low, high)
-    panel.set_xlabel(with_unit(one.label, one.unit))
+    panel.set_xlabel(with_unit(shortened(one.label, _LONGEST), one.unit))
 
 
 def scale_input(axis: Axis, one: Input, ticks: int = 8) -> None:
     """Make an axis logarithmic where the values of the input are spaced so, with ticks that people read."""
     axis.set_major_locator(MaxNLocator(ticks, steps=[1, 2, 2.5, 5, 10]))
-    axis.set_major_formatter(FuncFormatter(lambda value, _: number(value)))
+    axis.set_major_formatter(FuncFormatter(_tick))
     if is_geometric(one.values):
-        (axis.axes.set_xscale if axis.axis_name == "x" else axis.axes.set_yscale)("log")
+        (axis.axes.set_xscale if isinstance(axis, XAxis) else axis.axes.set_yscale)("log")
         decades = np.log10(one.values.max() / one.values.min())
         axis.set_major_locator(LogLocator(10.0, subs=(1.0,) if decades > 2.0 else (1.0, 2.0, 5.0)))
-        axis.set_major_formatter(FuncFormatter(lambda value, _: number(value)))
+        axis.set_major_formatter(FuncFormatter(_tick))
         axis.set_minor_formatter(NullFormatter())
 
 
@@ -85,7 +87,7 @@ def log_axis(panel: Axes, floor: float, top: float, shares: bool) -> None:
     panel.set_ylim(floor, max(upper, floor * 10.0))
     panel.yaxis.set_major_locator(LogLocator(10.0, numticks=12))
     panel.yaxis.set_minor_locator(NullLocator())
-    panel.yaxis.set_major_formatter(FuncFormatter(_percent_or_ppm if shares else lambda value, _: number(value)))
+    panel.yaxis.set_major_formatter(FuncFormatter(_percent_or_ppm if shares else _tick))
 
 
 def linear_axis(panel: Axes, quantities: Sequence[Quantity]) -> None:
@@ -98,7 +100,7 @@ def linear_axis(panel: Axes, quantities: Sequence[Quantity]) -> None:
     bottom = 0.0 if 0.0 <= low < 0.35 * high else low - room
     panel.set_ylim(bottom, 0.0 if high <= 0.0 and high > 0.35 * low else high + room)
     panel.yaxis.set_major_locator(MaxNLocator(6, steps=[1, 2, 2.5, 5, 10]))
-    panel.yaxis.set_major_formatter(FuncFormatter(lambda value, _: number(value)))
+    panel.yaxis.set_major_formatter(FuncFormatter(_tick))
 
 
 def draw_line(panel: Axes, one: Input, quantity: Quantity, colour: str, **stroke: Any) -> Line:
@@ -109,7 +111,7 @@ def draw_line(panel: Axes, one: Input, quantity: Quantity, colour: str, **stroke
 def draw_values(panel: Axes, x: Floats, y: Floats, label: str, colour: str, **stroke: Any) -> Line:
     """Draw one line, in the order of its abscissa."""
     order = np.argsort(x, kind="stable")
-    marks = {"marker": "o", "markersize": 2.6} if x.size <= _FEW else {}
+    marks: dict[str, Any] = {"marker": "o", "markersize": 2.6} if x.size <= _FEW else {}
     drawn = np.where(y[order] > 0.0, y[order], np.nan) if panel.get_yscale() == "log" else y[order]
     panel.plot(x[order], drawn, color=colour, **marks, **stroke)
     return Line(label, colour, x[order], drawn)
@@ -123,3 +125,8 @@ def panel_title(panel: Axes, text: str, width: float) -> None:
 
 def _percent_or_ppm(value: float, _: float) -> str:
     return f"{number(value)} %" if value > 0.0999 else f"{number(1e4 * value)} ppm"
+
+
+def _tick(value: float, _: float) -> str:
+    """Write a round value, as finely as neighbours need to differ."""
+    return f"{value:.7g}"

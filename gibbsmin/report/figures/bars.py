@@ -15,9 +15,11 @@ from gibbsmin.report.figures.quantities import threshold
 from gibbsmin.report.figures.source import Source
 from gibbsmin.report.figures.style import FAINT, POINTS, canvas, formula, shades, unit_word, value_with_unit
 from gibbsmin.report.numbers import share
+from gibbsmin.report.words import shortened
 from gibbsmin.units import from_si
 
 _MOST: Final = 20
+_LONGEST: Final = 32  # letters of a name
 _MOST_PHASES: Final = 12
 _ROW: Final = 0.19  # inch that a bar takes
 _FRAME: Final = 0.75  # inch for title and axis of a panel
@@ -69,7 +71,9 @@ def state_bars(source: Source, state: Mapping[str, Any]) -> Iterator[Drawn]:
         {
             "species": [*gas, *phases],
             "mole fraction of the gas [mol/mol gas]": np.array([*gas.values(), *(np.nan for _ in phases)], float),
-            f"amount [{source.basis}]": np.array([state["amounts"].get(name, np.nan) for name in (*gas, *phases)], float),
+            f"amount [{source.basis}]": np.array(
+                [state["amounts"].get(name, np.nan) for name in (*gas, *phases)], float
+            ),
         },
         (f"{left} more in the table.",) if left else (),
     )
@@ -98,7 +102,7 @@ def _bars(panel: Axes, names: Mapping[str, float], values: list[float], told: li
     """Draw horizontal bars, the first on top, each with its value at its end."""
     places = np.arange(len(values))
     panel.barh(places, values, height=0.7, color=shades(1)[0])
-    panel.set_yticks(places, [formula(name) for name in names])
+    panel.set_yticks(places, [shortened(formula(name), _LONGEST) for name in names])
     panel.set_ylim(max(len(values), 2) - 0.4, -0.6)
     panel.tick_params(axis="y", length=0.0)
     panel.grid(visible=False, axis="y")

@@ -25,7 +25,7 @@ Floats = NDArray[np.float64]
 MOST_LINES: Final = 7
 """Most lines in a panel."""
 
-_DECADES: Final = 3.0  # over so many a logarithmic axis
+_DECADES: Final = 3.0  # of change that count in the choice of species
 _DEEPEST: Final = 1e-8  # of the largest value, the least that a logarithmic axis shows
 _MUCH: Final = 0.2  # relative change of a key figure from which its place in its set counts
 _CHANGING: Final = 3  # key figures that are shown unasked
@@ -68,7 +68,7 @@ def changing_figures(source: Source) -> list[Quantity]:
     Those that change by more than a fifth of their largest value come first, as the set lists them, since a set
     begins with what matters most; then the others by how much they change.
     """
-    found = []
+    found: list[tuple[float, int, Quantity]] = []
     for one in key_quantities(source):
         values = one.values
         if not np.isfinite(values).all() or not one.varies or _is_fed(source, one):
@@ -76,14 +76,14 @@ def changing_figures(source: Source) -> list[Quantity]:
         change = float(np.ptp(values) / np.abs(values).max())
         found.append((-1.0 if change > _MUCH else -change, len(found), one))
     chosen: list[Quantity] = []
-    for _, _, one in sorted(found):
+    for _, _, one in sorted(found, key=lambda item: item[:2]):
         if len(chosen) < _CHANGING and not any(_same(one.values, other.values) for other in chosen):
             chosen.append(one)
     return chosen
 
 
 def key_results(source: Source) -> list[Quantity]:
-    """What is drawn where two or more inputs are varied, one result a figure.
+    """Choose what is drawn where two or more inputs are varied, one result a figure.
 
     The key figures that the case names for its table; without these the main species and key figures. Temperature
     and heat where they are results, and condensed phases that come or go, are always among them.
@@ -107,8 +107,8 @@ def by_change(quantities: Sequence[Quantity]) -> list[Quantity]:
     return sorted(quantities, key=lambda one: one.span[0] - one.span[1])
 
 
-def is_logarithmic(quantities: Sequence[Quantity], floor: float) -> bool:
-    """Tell whether values, as far as they lie above ``floor`` (as shown), span more than three decades.
+def is_logarithmic(quantities: Sequence[Quantity], floor: float, decades: float = 3.0) -> bool:
+    """Tell whether values, as far as they lie above ``floor`` (as shown), span more than three decades, or others.
 
     Shares of the gas that fall below the floor count as far as it; where other results reach zero, that is to be seen.
     """
@@ -117,7 +117,7 @@ def is_logarithmic(quantities: Sequence[Quantity], floor: float) -> bool:
     if not shown.size or shown.min() < 0.0 or (not gas and shown.min() == 0.0):
         return False
     above = np.maximum(shown, floor)
-    return bool(np.log10(above.max() / above.min()) > _DECADES)
+    return bool(np.log10(above.max() / above.min()) > decades)
 
 
 def floor_of(source: Source, quantities: Sequence[Quantity]) -> float:

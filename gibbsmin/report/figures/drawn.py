@@ -61,15 +61,13 @@ class Colours:
         return self.given.get(species)
 
 
-def columns(source: Source, quantities: Sequence[Quantity], within: tuple[int | slice, ...] = ()) -> dict[str, Cells]:
-    """Data of a figure, a row a point: inputs as typed, results in SI.
+def columns(source: Source, quantities: Sequence[Quantity]) -> dict[str, Cells]:
+    """Lay out the data of a figure, a row a point: inputs as typed, results in SI.
 
     Parameters
     ----------
     source : Source
     quantities : sequence of Quantity
-    within : tuple of int or slice, optional
-        Which part of a grid is drawn, an entry an input; all where it is empty.
 
     Returns
     -------
@@ -80,9 +78,9 @@ def columns(source: Source, quantities: Sequence[Quantity], within: tuple[int | 
     found: dict[str, Cells] = {}
     for k, one in enumerate(source.inputs):
         values = one.values if mesh is None else mesh[k]
-        found[f"{one.name} [{one.typed_unit if one.typed_unit not in ('', '1') else '-'}]"] = values[within].ravel()
+        found[f"{one.name} [{one.typed_unit if one.typed_unit not in ('', '1') else '-'}]"] = values.ravel()
     for quantity in quantities:
-        found[quantity.name] = quantity.values[within].ravel()
+        found[quantity.name] = quantity.values.ravel()
     return found
 
 
@@ -147,4 +145,3 @@ def capital(text: str) -> str:
     """
     first = text.split(" ", maxsplit=1)[0]
     return text[:1].upper() + text[1:] if first.isalpha() and first.islower() and len(first) > 1 else text
-

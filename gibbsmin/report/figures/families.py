@@ -88,8 +88,8 @@ def family_panel(
         log_axis(panel, floor, quantity.span[1], shares=quantity.kind == "gas")
     else:
         linear_axis(panel, [quantity])
-    values = quantity.shown[(slice(None), slice(None), *within)]
-    values = np.moveaxis(values, place, 0)
+    part: tuple[int | slice, ...] = (slice(None), slice(None), *within)
+    values = np.moveaxis(quantity.shown[part], place, 0)
     lines = []
     order = np.argsort(few.values, kind="stable")
     for k, colour in zip(order, shades(few.values.size), strict=True):

@@ -11,6 +11,7 @@ from matplotlib.patheffects import withStroke
 from numpy.typing import NDArray
 
 from gibbsmin.report.figures.style import FAINT, POINTS, readable
+from gibbsmin.report.words import shortened
 
 Floats = NDArray[np.float64]
 
@@ -19,6 +20,7 @@ HALO: Final = withStroke(linewidth=2.5, foreground="white")
 
 _APART: Final = 1.25  # lines of text from one label to the next
 _BESIDE: Final = 9.0  # pt from the edge to a label
+_LONGEST: Final = 32  # letters of a label
 _CANDIDATES: Final = 25
 
 
@@ -43,6 +45,7 @@ def label_lines(panel: Axes, lines: Sequence[Line]) -> None:
     size = panel.get_window_extent()
     dots = panel.figure.dpi / 72.0  # pixels per point
     width, height = size.width / dots, size.height / dots  # pt
+    lines = [line._replace(name=shortened(line.name, _LONGEST)) for line in lines]
     places = [_points(panel, line, width, height) for line in lines]
     ends = [_end(place, width, height) for place in places]
     right = [k for k, end in enumerate(ends) if end is not None]
@@ -107,7 +110,7 @@ def _points(panel: Axes, line: Line, width: float, height: float) -> Floats:
     """Points of a line in points of the page from the lower left corner, (n, 2), finer than it was drawn."""
     known = np.isfinite(line.x) & np.isfinite(line.y)
     with np.errstate(invalid="ignore", divide="ignore"):
-        there = panel.transAxes.inverted().transform(
+        there: Floats = panel.transAxes.inverted().transform(
             panel.transData.transform(np.column_stack((line.x[known], line.y[known])))
         )
     there = there[np.isfinite(there).all(axis=1)] * (width, height)

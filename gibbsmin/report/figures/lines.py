@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import textwrap
 from collections.abc import Sequence
 from dataclasses import replace
 from typing import Final
@@ -27,10 +28,11 @@ from gibbsmin.report.figures.style import DASHES, HEIGHT, INK, WIDTH, canvas, sh
 
 _NAMED: Final = 12  # species left out that are named one by one
 _MOST_PANELS: Final = 6
+_LETTER: Final = 7.0  # pixels that a letter of an axis title takes
 
 
 def axis_input(source: Source) -> Input:
-    """The input that lines run over: the first that moves where all move in step."""
+    """Find the input that lines run over: the first that moves where all move in step."""
     moving = [one for one in source.inputs if np.ptp(one.values) > 0.0]
     return (moving or list(source.inputs))[0]
 
@@ -79,6 +81,7 @@ def composition(source: Source, colours: Colours, stream: str = "", title: str =
         ]
         lines.append((panel, strokes))
     input_axis(panels[-1, 0], one)
+    _name_axis(panels[-1, 0], source, one)
     figure.draw_without_rendering()
     marks = marks_of(one, drawn)
     if drawn:
@@ -177,6 +180,7 @@ def _result_panel(panel: Axes, source: Source, one: Input, group: Sequence[Quant
     else:
         panel_title(panel, with_unit(group[0].label, unit), WIDTH * 72.0 / across - 40.0)
     input_axis(panel, one, 9 - 2 * across)
+    _name_axis(panel, source, one)
     return lines
 
 
@@ -192,6 +196,14 @@ def present(quantity: Quantity) -> Quantity:
 def over(source: Source) -> str:
     """Say what the lines run over; where inputs move in step, all of them."""
     return listed([input_span(one) for one in source.inputs])
+
+
+def _name_axis(panel: Axes, source: Source, one: Input) -> None:
+    """Add to the title of the horizontal axis the inputs that move in step with it."""
+    others = [input_span(other) for other in source.inputs if other is not one]
+    if others:
+        wrapped = textwrap.wrap(f"in step with {listed(others)}", int(panel.get_window_extent().width / _LETTER))
+        panel.set_xlabel("\n".join([panel.get_xlabel(), *wrapped]))
 
 
 def _by_unit(quantities: Sequence[Quantity]) -> list[list[Quantity]]:

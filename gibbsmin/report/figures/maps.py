@@ -22,6 +22,7 @@ from gibbsmin.report.figures.style import INK, POINTS, SCALE, canvas, in_unit, w
 Floats = NDArray[np.float64]
 
 _LEVELS: Final = 8
+_DECADES: Final = 2.0  # over so many the contours are those of decades
 _PHASES: Final = 5
 _DEPTH: Final = 0.03  # of the map that a region must be deep to be named in
 _EDGE: Final = 0.025  # of the map, where no value is written
@@ -49,7 +50,9 @@ def result_map(source: Source, quantity: Quantity) -> Drawn:
     """
     place = across(source)
     x, y = source.inputs[place], source.inputs[1 - place]
-    phases = [one for one in condensed_quantities(source) if comes_or_goes(one)][:_PHASES] if not source.is_train else []
+    phases = (
+        [one for one in condensed_quantities(source) if comes_or_goes(one)][:_PHASES] if not source.is_train else []
+    )
     title = f"{capital(in_unit(quantity.label, quantity.unit))}{source.held}"
     figure, panels = canvas(title, height=4.0)
     panel = panels[0, 0]
@@ -83,9 +86,9 @@ def levels_of(source: Source, quantity: Quantity) -> tuple[Floats, bool]:
     """
     floor = floor_of(source, [quantity])
     low, high = quantity.span
-    if is_logarithmic([quantity], floor):
+    if is_logarithmic([quantity], floor, _DECADES):
         first, last = np.log10(max(low, floor)), np.log10(high)
-        subs = (1.0,) if last - first > 4.0 else (1.0, 3.0)
+        subs = (1.0,) if last - first > 4.0 else (1.0, 3.0) if last - first > 2.5 else (1.0, 2.0, 5.0)
         return np.asarray(LogLocator(10.0, subs=subs, numticks=20).tick_values(10.0**first, 10.0**last), float), True
     if not np.isfinite(low) or not quantity.varies:
         return np.empty(0), False
@@ -126,10 +129,12 @@ def map_panel(panel: Axes, x: Input, y: Input, values: Floats, levels: tuple[Flo
 
 
 def outlines(panel: Axes, x: Input, y: Input, regions: Sequence[tuple[str, Floats]]) -> None:
-    """Outline where each phase is, by its amounts (y, x), and name it where its region is deepest and no word stands."""
+    """Outline where each phase is, by its amounts (y, x), and name it where its region is deepest and free of words."""
     size = panel.get_window_extent()
     whole = np.array([1.0, size.height / size.width])
-    place = _places(panel, [(u, v) for v in y.values for u in x.values]).reshape(y.values.size, x.values.size, 2) * whole
+    place = (
+        _places(panel, [(u, v) for v in y.values for u in x.values]).reshape(y.values.size, x.values.size, 2) * whole
+    )
     taken = [_places(panel, [text.get_position()])[0] * whole for text in panel.texts]
     for label, amounts in regions:
         field = np.ma.masked_invalid(beyond_zero(amounts))

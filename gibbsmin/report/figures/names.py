@@ -53,7 +53,7 @@ def input_words(name: str) -> str:
 
 
 def input_unit(name: str, unit: str) -> str:
-    """Unit of an input as people write it; percentages are plain numbers in the case.
+    """Write the unit of an input as people do; percentages are plain numbers in the case.
 
     Examples
     --------

@@ -63,7 +63,6 @@ def slices(source: Source, quantities: Sequence[Quantity]) -> Iterator[Drawn]:
 
 def _panels(source: Source, quantity: Quantity, order: tuple[int, int, int], fixed: Sequence[str]) -> Drawn:
     """Draw one result; ``order`` are the places of the inputs within, over the lines, and from panel to panel."""
-    few, one, third = order
     a, b, c = (source.inputs[k] for k in order)
     values = np.moveaxis(quantity.values, order, (0, 1, 2)).reshape(a.values.size, b.values.size, c.values.size)
     flat = replace(source, inputs=(a, b))
@@ -89,7 +88,9 @@ def _panels(source: Source, quantity: Quantity, order: tuple[int, int, int], fix
         panel_title(panel, f"{c.label} {input_value(c, float(c.values[k]))}", WIDTH * 72.0 / across - 30.0)
         panel.label_outer()
         if k % across == 0:
-            panel.set_ylabel(with_unit(quantity.label if is_family else a.label, quantity.unit if is_family else a.unit))
+            panel.set_ylabel(
+                with_unit(quantity.label if is_family else a.label, quantity.unit if is_family else a.unit)
+            )
     figure.draw_without_rendering()
     for panel, named in lines:
         label_lines(panel, named)

@@ -152,12 +152,10 @@ def comes_or_goes(quantity: Quantity) -> bool:
 def state_quantities(source: Source) -> list[Quantity]:
     """Temperature, pressure, heat and work, as far as they are results and vary."""
     assert source.data is not None, "a sweep"
-    found = []
     units = typed_units(source.case, source.basis)
     held = source.case.get("held") or {}
-    for key in ("temperature", "pressure"):
-        if key in source.data and held.get(key) is None:
-            found.append(_degrees(_good(source, key), key, units[key]))
+    free = [key for key in ("temperature", "pressure") if key in source.data and held.get(key) is None]
+    found = [_degrees(_good(source, key), key, units[key]) for key in free]
     for key, label in (("heat", "heat to be supplied"), ("work", "shaft work to be supplied")):
         if key in source.data and not (key == "heat" and (held.get("adiabatic") or held.get("heat") is not None)):
             unit = str(source.data[key].attrs.get("units", ""))
@@ -203,14 +201,14 @@ def prefixed_quantity(name: str, label: str, values: Floats, unit: str, kind: st
 
 
 def stream_temperatures(source: Source) -> list[Quantity]:
-    """Temperature of every stream of a train that varies."""
+    """Temperature of every stream of a train that varies by a degree or more."""
     assert source.data is not None, "a sweep"
     unit = typed_units(source.case, source.basis)["temperature"]
     found = []
     for stream in map(str, source.data["stream"].values):
         values = _masked(source, source.data["temperature"].sel(stream=stream))
         found.append(_degrees(values, "temperature", unit, stream))
-    return [one for one in found if one.varies]
+    return [one for one in found if one.span[1] - one.span[0] >= 1.0]
 
 
 def step_energies(source: Source, key: str) -> list[Quantity]:
@@ -262,8 +260,8 @@ def _gas(source: Source, names: Sequence[str]) -> list[bool]:
     if "mole_fraction" not in source.data:
         return [is_gas(name) for name in names]
     shares = source.data["mole_fraction"].values.reshape(-1, len(names))
-    parted = ((shares > 0.0) & (shares < 1.0)).any(axis=0)
-    return [bool(flag) or is_gas(name) for flag, name in zip(parted, names, strict=True)]
+    parted = np.any((shares > 0.0) & (shares < 1.0), axis=0).tolist()
+    return [flag or is_gas(name) for flag, name in zip(parted, names, strict=True)]
 
 
 def _good(source: Source, key: str) -> Floats:
@@ -285,4 +283,3 @@ def _largest(shares: Floats) -> Floats:
     flat = np.nan_to_num(shares.reshape(-1, shares.shape[-1]))
     found: Floats = flat.max(axis=0, initial=0.0)
     return found
-

@@ -73,7 +73,11 @@ def _figure(source: Source, rows: Sequence[Quantity], places: Sequence[int], nam
                 log_axis(panel, floor, quantity.span[1], shares=quantity.kind == "gas")
             else:
                 linear_axis(panel, [quantity])
-            y = np.where(quantity.shown > 0.0, quantity.shown, np.nan) if panel.get_yscale() == "log" else quantity.shown
+            y = (
+                np.where(quantity.shown > 0.0, quantity.shown, np.nan)
+                if panel.get_yscale() == "log"
+                else quantity.shown
+            )
             panel.plot(one.values, y, linestyle="", marker="o", markersize=2.2, markeredgewidth=0.0, color=shades(1)[0])
             input_axis(panel, one)
             panel.label_outer()

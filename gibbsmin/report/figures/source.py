@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
@@ -28,10 +29,12 @@ MAP_POINTS: Final = 161
 PANEL_POINTS: Final = 41
 """Most values of an input where three or more are varied."""
 
-DESIGN_POINTS: Final = 600
-"""Most points of a design that is no grid."""
+DESIGN_POINTS: Final = 512
+"""Most points of a random design; the first ones, since these fill its ranges evenly by themselves."""
 
 _CHUNK: Final = 1 << 18
+_BETWEEN: Final = " \n\r\t,"
+_STATES: Final = re.compile(r'"states"\s*:\s*\[\s*\{')
 _NOT_DRAWN: Final = ("reason", "enthalpy", "entropy", "gibbs_energy", "element_residual", "gap", "worst_affinity")
 
 
@@ -167,33 +170,29 @@ def read_head(file: Path) -> tuple[dict[str, Any], list[Any]]:
         if not isinstance(data, dict):
             raise ValueError("not an object")
         return data, list(data.get("states", []))
-    decoder, head = json.JSONDecoder(), {}
+    decoder, head = json.JSONDecoder(), dict[str, Any]()
     with file.open(encoding="utf-8") as text:
         rest = text.read(_CHUNK).lstrip()
         if not rest.startswith("{"):
             raise ValueError("not an object")
         rest = rest[1:]
         while True:
+            rest = rest.lstrip(_BETWEEN)
+            if rest.startswith("}") or _STATES.match(rest):
+                return head, []
             try:
-                rest = rest.lstrip(" \n\r\t,")
-                if rest.startswith("}") or rest.startswith('"states"'):
-                    return head, []
                 key, at = decoder.raw_decode(rest)
-                value, end = decoder.raw_decode(rest[at:].lstrip(" \n\r\t").removeprefix(":").lstrip(" \n\r\t"))
-                tail = rest[at:].lstrip(" \n\r\t").removeprefix(":").lstrip(" \n\r\t")[end:]
+                behind = rest[at:].lstrip(_BETWEEN).removeprefix(":").lstrip(_BETWEEN)
+                value, at = decoder.raw_decode(behind)
+                if not behind[at:]:
+                    raise ValueError("a number may go on")
             except ValueError:
                 more = text.read(_CHUNK)
                 if not more:
                     raise
                 rest += more
                 continue
-            if not tail:
-                more = text.read(_CHUNK)
-                if not more:
-                    raise ValueError("ends too soon")
-                rest += more
-                continue
-            head[key], rest = value, tail
+            head[key], rest = value, behind[at:]
 
 
 def _sweep(head: Mapping[str, Any], file: Path) -> Source:
@@ -205,19 +204,21 @@ def _sweep(head: Mapping[str, Any], file: Path) -> Source:
     kind = str((case.get("design") or {}).get("kind", "grid"))
     with xarray.open_dataset(file, engine="h5netcdf") as data:
         names = [str(dimension) for dimension in data["certified"].dims]
-        if kind == "grid":
-            most = (LINE_POINTS, MAP_POINTS)[len(names) - 1] if len(names) < 3 else PANEL_POINTS
-        else:
-            most = LINE_POINTS if kind == "in step" else DESIGN_POINTS
-        steps = {name: stride(data.sizes[name], most) for name in names}
+        random = kind not in ("grid", "in step")
+        most = {1: LINE_POINTS, 2: MAP_POINTS}.get(len(names), PANEL_POINTS)
+        steps = {name: 1 if random else stride(data.sizes[name], most) for name in names}
+        last = DESIGN_POINTS if random else None
         wanted = [name for name in map(str, data.variables) if name not in _NOT_DRAWN]
-        thinned = data[wanted].isel({name: slice(None, None, step) for name, step in steps.items()}).load()
+        thinned = data[wanted].isel({name: slice(None, last, step) for name, step in steps.items()}).load()
+        fewer = random and data.sizes[names[0]] > DESIGN_POINTS
     inputs = names if kind == "grid" else varied
     notes = tuple(
         f"Every {_ordinal(step)} {'state' if len(names) == 1 else f'value of {input_words(name)}'} is drawn."
         for name, step in steps.items()
         if step > 1
     )
+    if fewer:
+        notes = (f"The first {DESIGN_POINTS} states are drawn.",)
     read = tuple(
         Input(
             name,
@@ -237,7 +238,7 @@ def stride(count: int, most: int) -> int:
     Examples
     --------
     >>> stride(100, 401), stride(1001, 161), stride(1000, 161)
-    (1, 8, 7)
+    (1, 8, 9)
     """
     if count <= most:
         return 1

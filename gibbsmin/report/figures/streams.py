@@ -75,7 +75,9 @@ def stream_bars(source: Source, state: Mapping[str, Any], colours: Colours) -> I
             start += n
         temperature = one.get("temperature")
         degrees = unit_word(units["temperature"])
-        text = "" if temperature is None else value_with_unit(f"{from_si(temperature, units['temperature']):.0f}", degrees)
+        text = (
+            "" if temperature is None else value_with_unit(f"{from_si(temperature, units['temperature']):.0f}", degrees)
+        )
         panel.annotate(
             text, (scale * one["amount"], row), (4.0, 0.0), textcoords="offset points", va="center",
             fontsize=POINTS - 1.0, annotation_clip=False,
@@ -126,7 +128,7 @@ def _column(values: Any) -> np.ndarray[Any, np.dtype[np.float64]]:
 
 
 def products(source: Source) -> list[str]:
-    """The streams that leave the train, the largest first, three at most."""
+    """Name the streams that leave the train, the largest first, three at most."""
     assert source.data is not None, "a sweep"
     known = {str(name) for name in source.data["stream"].values}
     leaving = [str(name) for name in source.head.get("products", []) if name in known]
@@ -162,14 +164,16 @@ def train_lines(source: Source, colours: Colours) -> Iterator[Drawn]:
 
 
 def train_results(source: Source) -> list[Quantity]:
-    """What is drawn of a train where two or more inputs are varied: main species of the products, and temperatures."""
+    """Choose what is drawn of a train over two inputs or more: main species of the products, and temperatures."""
     found: list[Quantity] = []
     for stream in products(source):
         shares = [*by_change(gas_quantities(source, stream))[:2], *condensed_quantities(source, stream)[:1]]
         label = stream.replace("_", " ")
         found += [
-            Quantity(one.name, f"{one.label} in {label}", one.values, one.unit, one.factor, one.zero, one.kind, one.species)
+            Quantity(
+                one.name, f"{one.label} in {label}", one.values, one.unit, one.factor, one.zero, one.kind, one.species
+            )
             for one in shares
             if one.varies
         ]
-    return found + [one for one in by_change(stream_temperatures(source))][:2]
+    return found + by_change(stream_temperatures(source))[:2]

@@ -2,14 +2,15 @@
 
 Seven line colours, searched for so that any two differ by at least 24 CIELAB units to usual eyes and to the three kinds
 of colour-blindness (simulated after Machado, Oliveira & Fernandes 2009), by 7 in lightness, so that they stay apart in
-grey, and so that each has a contrast of 3 on white. What has an order (the values of an input) is drawn in shades of one
-colour, light to dark.
+grey, and so that each has a contrast of 3 on white. What has an order (the values of an input) is drawn in shades of
+one colour, light to dark.
 """
 
 from __future__ import annotations
 
 import re
 import textwrap
+import warnings
 from collections.abc import Iterator
 from contextlib import contextmanager
 from typing import Any, Final
@@ -47,7 +48,7 @@ DPI: Final = 200
 POINTS: Final = 9.0
 """Size of the letters, [pt]."""
 
-_LOOK: Final[dict[str, Any]] = {
+_LOOK: Final[Any] = {
     "font.family": "DejaVu Sans",
     "font.size": POINTS,
     "text.color": INK,
@@ -83,8 +84,12 @@ _READABLE: Final = 4.5  # contrast that words need
 
 @contextmanager
 def styled() -> Iterator[None]:
-    """Draw and write in the look of the project, whatever the reader's own settings are."""
-    with mpl.rc_context():
+    """Draw and write in the look of the project, whatever the reader's own settings are.
+
+    A sign that the letters do not have comes out as an empty box, and no more is made of it.
+    """
+    with mpl.rc_context(), warnings.catch_warnings():
+        warnings.filterwarnings("ignore", message="Glyph .* missing from font")
         mpl.rcdefaults()
         mpl.rcParams.update(_LOOK)
         yield
