@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
@@ -11,6 +12,7 @@ from numpy.typing import NDArray
 from gibbsmin.case.feed_schema import Feed
 from gibbsmin.case.feed_states import FeedStates, ReturnedGas
 from gibbsmin.case.fields import RuleError, in_si
+from gibbsmin.case.flue_gas_schema import FlueGasTable
 from gibbsmin.case.schema import Case
 from gibbsmin.errors import InputError
 from gibbsmin.practice.flue_gas.emissions import reference_oxygen
@@ -118,23 +120,35 @@ def closed_feeds(study: Study) -> FeedStates:
         raise RuleError(str(error), "feeds", name, key or "flue_gas_oxygen_percent") from None
 
 
-def setting(case: Case, feeds: FeedStates) -> FlueGasSetting:
-    """Read how the numbers of the flue gas are reported."""
-    table, back = case.flue_gas, returns(case)
-    assert table is not None, "asked for where there is a table"
+def setting(
+    table: FlueGasTable, columns: Mapping[str, Floats], at: str, recirculated: Floats | float = 0.0
+) -> FlueGasSetting:
+    """Read how the numbers of the flue gas are reported.
+
+    Parameters
+    ----------
+    table : FlueGasTable
+    columns : mapping of str to array (states,)
+        Varied inputs in SI, by dotted name.
+    at : str
+        How the dotted names of this table begin, with the dot.
+    recirculated : array (states,) or float
+        Part of the flue gas that goes back, [-].
+
+    Returns
+    -------
+    FlueGasSetting
+    """
     reference = table.reference_oxygen_percent
     share = None if reference is None else reference / 100.0
     if table.application is not None:
         share = reference_oxygen(table.application).oxygen
     stack = table.stack_temperature
-    recirculated: Floats | float = 0.0
-    if back is not None:
-        recirculated = _read_share(back, feeds)
     return FlueGasSetting(
         reference_oxygen=share,
         air_oxygen=table.air_oxygen_percent / 100.0,
         only_above_reference=table.only_above_reference,
-        stack_temperature=None if stack is None else feeds.columns.get("flue_gas.stack_temperature", in_si(stack, "K")),
+        stack_temperature=None if stack is None else columns.get(f"{at}stack_temperature", in_si(stack, "K")),
         stack_pressure=None if table.stack_pressure is None else in_si(table.stack_pressure, "Pa"),
         reference_temperature=in_si(table.loss_reference_temperature, "K"),
         wall_loss=table.wall_loss_percent / 100.0,
@@ -143,6 +157,12 @@ def setting(case: Case, feeds: FeedStates) -> FlueGasSetting:
         sulfur_trioxide_share=None if table.sulfur_trioxide_percent is None else table.sulfur_trioxide_percent / 100.0,
         recirculated=recirculated,
     )
+
+
+def recirculated(case: Case, feeds: FeedStates) -> Floats | float:
+    """Part of the flue gas that goes back, (states,), [-]; zero where none does."""
+    back = returns(case)
+    return 0.0 if back is None else _read_share(back, feeds)
 
 
 def _wanted(study: Study, name: str) -> Floats | None:
@@ -168,8 +188,13 @@ def _read_share(back: Return, feeds: FeedStates) -> Floats | float:
     return ratio / (1.0 + ratio)
 
 
-def _returned(study: Study, back: Return, amounts: Floats, held_pressure: Floats) -> ReturnedGas:
-    """Give the returned gas its temperature and pressure: those of its table, else those of the flue gas."""
+def _returned(study: Study, back: Return, amounts: Floats, held_pressure: Floats) -> ReturnedGas | None:
+    """Give the returned gas its temperature and pressure: those of its table, else those of the flue gas.
+
+    None where nothing goes back.
+    """
+    if not amounts.any():
+        return None
     given = {"temperature": (back.feed.temperature, "K"), "pressure": (back.feed.pressure, "Pa")}
     other = {"temperature": frozen_at(study), "pressure": held_pressure}
     found = {}

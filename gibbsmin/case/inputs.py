@@ -116,6 +116,8 @@ def train_inputs(case: TrainCase) -> dict[str, Limits]:
             if getattr(stage.held, key, None) is not None:
                 found[f"{at}.held.{key}"] = limits if key != "heat" else limits._replace(units=(heat,))
         found |= rule_inputs(stage, f"{at}.", case.feeds)
+        if stage.flue_gas is not None and stage.flue_gas.stack_temperature is not None:
+            found[f"{at}.flue_gas.stack_temperature"] = _TEMPERATURE
         for side, take in stage.take.items():
             for key, limits in (("percent", _PERCENT), ("ratio", _RATIO), ("flow", Limits((_amount(case.feeds),)))):
                 if getattr(take, key) is not None:

@@ -7,6 +7,7 @@ from typing import Annotated, Final, Literal
 from pydantic import Field, model_validator
 
 from gibbsmin.case.fields import Flow, Heat, Pressure, Ratio, RuleError, Table, Temperature, Text
+from gibbsmin.case.flue_gas_schema import FlueGasTable
 from gibbsmin.case.key_sets import KeySet
 from gibbsmin.case.rules_schema import Approach, Constraint, Percent
 from gibbsmin.case.species_schema import SpeciesTable
@@ -142,6 +143,14 @@ class Stage(Table):
         description="Side streams, by name, parted one after the other; the rest is the stream of the step.",
         examples=[{"water": {"of": ["H2O(l)"], "percent": 100.0}}],
     )
+    flue_gas: FlueGasTable | None = Field(
+        default=None,
+        description=(
+            "How the flue gas of this step is reported: what all feeds before it burn to, less what goes back. Its "
+            "composition is that of the step, so that frozen_at has no place here."
+        ),
+        examples=[{"application": "solid fuel", "stack_temperature": "140 degC"}],
+    )
     key_figures: list[KeySet] = Field(
         default=[], description="Sets of the trade's numbers that are reported of this step.", examples=[["shift"]]
     )
@@ -154,8 +163,11 @@ class Stage(Table):
             raise RuleError("the step takes no stream; name its inlets", "inlets")
         if self.species.files:
             raise RuleError("files of own species are named in the table [species]", "species", "files")
+        if self.flue_gas is not None and self.flue_gas.frozen_at is not None:
+            text = "in a train a step of its own holds the temperature at which a composition is frozen"
+            raise RuleError(text, "flue_gas", "frozen_at")
         if self.frozen or self.held is None:
-            rules = [key for key in ("approach", "constraint", "key_figures") if getattr(self, key)]
+            rules = [key for key in ("approach", "constraint", "key_figures", "flue_gas") if getattr(self, key)]
             if rules:
                 raise RuleError(f"nothing reacts in this step, so {rules[0]} says nothing", rules[0])
         return self

@@ -15,7 +15,7 @@ from gibbsmin.case.conditions import Conditions, number, read_conditions
 from gibbsmin.case.described import describe
 from gibbsmin.case.feed_states import FeedStates, feed_facts
 from gibbsmin.case.fields import RuleError
-from gibbsmin.case.flue_gas import closed_feeds, frozen, setting
+from gibbsmin.case.flue_gas import closed_feeds, frozen, recirculated, setting
 from gibbsmin.case.large import LARGE, Archived, Ways, run_large
 from gibbsmin.case.rules import Rules, read_rules
 from gibbsmin.case.schema import Case
@@ -279,7 +279,8 @@ class Study(StudyFrame):
             fresh = feed_facts(feeds, returned=False)
             here = settled(result.batch, fresh, result.heats, is_flow)
             gas = settled(frozen(self, result.batch, elements), fresh, result.heats, is_flow)
-            found["flue gas"] = flue_gas(here, setting(self.case, feeds), gas)
+            told = setting(self.case.flue_gas, feeds.columns, "flue_gas.", recirculated(self.case, feeds))
+            found["flue gas"] = flue_gas(here, told, gas)
         if self.case.key_figures:
             here = settled(result.batch, feed_facts(feeds, returned=True), result.heats, is_flow)
             found |= {name: SETS[name](here) for name in self.case.key_figures}

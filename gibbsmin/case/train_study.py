@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 
 from gibbsmin.case.feed_states import FeedStates
 from gibbsmin.case.fields import RuleError, in_si
+from gibbsmin.case.flue_gas import setting
 from gibbsmin.case.recipe import Find, Recipe
 from gibbsmin.case.rules import UNCONVERTED, Rules, read_rules
 from gibbsmin.case.selection import choose_system, finder
@@ -193,6 +194,11 @@ class TrainStudy(StudyFrame):
             display_units=shown_units(self.case, self.basis),
             solved=solved,
             key_sets={stage.name: tuple(stage.key_figures) for stage in self.case.stage},
+            flue_gas={
+                stage.name: setting(stage.flue_gas, self.columns, f"stages.{stage.name}.flue_gas.")
+                for stage in self.case.stage
+                if stage.flue_gas is not None
+            },
             surroundings_temperature=in_si(self.case.surroundings.temperature, "K"),
             heating_values={one.name: one.heating_value for one in self.recipes},
             units=self.units,

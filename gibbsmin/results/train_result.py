@@ -11,11 +11,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from gibbsmin.practice.figures.key_figure import KeyFigure
-from gibbsmin.practice.figures.settled import FeedFacts
+from gibbsmin.practice.figures.settled import FeedFacts, Settled
+from gibbsmin.practice.flue_gas.flue_gas import FlueGasSetting, flue_gas
 from gibbsmin.results.account import Account
 from gibbsmin.results.key_figures import SETS, settled
 from gibbsmin.results.plain import plain
 from gibbsmin.results.result import FeedAmounts, Result
+from gibbsmin.results.stage_flue_gas import before, leaving
 from gibbsmin.results.stream_sheet import Entry, StreamSheet, stream_sheet
 from gibbsmin.results.train_conversion import Conversion, conversions
 from gibbsmin.results.train_spreadsheet import train_spreadsheets
@@ -58,6 +60,8 @@ class TrainResult:
         Streams and steps.
     key_sets : dict of str to tuple of str
         Sets of key figures that are asked of each stage.
+    flue_gas : dict of str to FlueGasSetting
+        How the flue gas of a stage is reported, by the name of the stage.
     surroundings_temperature : float
         [K].
     heating_values : dict of str to (float, float) or None
@@ -77,6 +81,7 @@ class TrainResult:
     display_units: dict[str, str]
     solved: Solved
     key_sets: Mapping[str, Sequence[str]]
+    flue_gas: Mapping[str, FlueGasSetting]
     surroundings_temperature: float
     heating_values: Mapping[str, tuple[float, float] | None]
     units: Floats
@@ -176,10 +181,20 @@ class TrainResult:
                 surroundings_temperature=self.surroundings_temperature,
             ),
             key_figures={
-                group: [replace(one, value=np.where(batch.certified, one.value, np.nan)) for one in SETS[group](here)]
-                for group in self.key_sets.get(name, ())
+                group: [replace(one, value=np.where(batch.certified, one.value, np.nan)) for one in figures]
+                for group, figures in self._key_figures(name, here).items()
             },
         )
+
+    def _key_figures(self, name: str, here: Settled) -> dict[str, list[KeyFigure]]:
+        """Work out the numbers of the trade that are asked of a stage, by set."""
+        found: dict[str, list[KeyFigure]] = {}
+        if name in self.flue_gas:
+            feeds, back = before(self.solved, self.recycled, name)
+            facts = {feed: self._facts(feed, self.solved.feeds[feed]) for feed in feeds}
+            gas = leaving(self.solved, back, here, facts)
+            found["flue gas"] = flue_gas(gas, self.flue_gas[name], gas)
+        return found | {group: SETS[group](here) for group in self.key_sets.get(name, ())}
 
     def _vouched(self, batch: Batch | None) -> Batch:
         """Return settled states, without those in which recycles are not steady: their inlets are none of the train."""
