@@ -93,6 +93,18 @@ def conversion_table(result: TrainResult, index: int) -> list[str]:
     return lines + labelled("conversion", f"{told}; of a step: 1 - out/in of its own")
 
 
+def recovery_table(result: TrainResult, index: int) -> list[str]:
+    """Lines of the products by which the elements leave, in one state."""
+    found = result.recoveries
+    products = [name for name in result.solved.products if any(name in parts for parts in found.values())]
+    lines: list[str] = []
+    for names in blocks(products):
+        lines += ["", *head_rows("elements leave, %", names)]
+        for symbol, parts in found.items():
+            lines.append(row(f"  {symbol}", [_percent(parts[name][index]) if name in parts else "" for name in names]))
+    return lines
+
+
 def energy_scale(values: Floats) -> tuple[float, str]:
     """Choose the prefix that keeps the largest of energies handy: its factor and its letter."""
     largest = np.nan_to_num(np.abs(values)).max(initial=0.0)

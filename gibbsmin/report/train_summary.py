@@ -11,7 +11,7 @@ from gibbsmin.practice.figures.key_figure import KeyFigure
 from gibbsmin.practice.safety.cautions import CLOSING, Caution, gather
 from gibbsmin.report.key_figure_table import state_key_figures, sweep_key_figures
 from gibbsmin.report.table import heading
-from gibbsmin.report.train_steps import conversion_table, step_table, train_certificate
+from gibbsmin.report.train_steps import conversion_table, recovery_table, step_table, train_certificate
 from gibbsmin.report.train_streams import stream_tables
 from gibbsmin.report.train_sweep import base_state, conversion_figures, state_words, train_sweep
 from gibbsmin.report.words import labelled
@@ -59,8 +59,9 @@ def train_summary(result: TrainResult, judged: Sequence[Sequence[Caution]], fold
 
 
 def _state(result: TrainResult, index: int) -> list[str]:
-    """Streams, steps and conversions of one state."""
-    return [*stream_tables(result, index), *step_table(result, index), *conversion_table(result, index)]
+    """Streams, steps, conversions of one state, and where its elements leave."""
+    parts = (stream_tables, step_table, conversion_table, recovery_table)
+    return [line for part in parts for line in part(result, index)]
 
 
 def _key_figures(result: TrainResult) -> dict[str, Sequence[KeyFigure]]:

@@ -74,13 +74,18 @@ def train_sweep(result: TrainResult) -> list[str]:
 
 
 def conversion_figures(result: TrainResult) -> dict[str, list[KeyFigure]]:
-    """Conversions overall and per pass as numbers along a sweep."""
+    """Conversions overall and per pass, and where the elements leave, as numbers along a sweep."""
     rows = []
     for name, one in result.conversions.items():
         rows.append(KeyFigure("overall", f"{name}, overall", one.overall, "1", "%"))
         if one.per_pass is not None:
             rows.append(KeyFigure("per_pass", f"{name}, per pass", one.per_pass, "1", "%"))
-    return {"conversion": rows} if rows else {}
+    leaving = [
+        KeyFigure(name, f"{symbol} in {name}", values, "1", "%")
+        for symbol, parts in result.recoveries.items()
+        for name, values in parts.items()
+    ]
+    return {title: found for title, found in (("conversion", rows), ("elements leave", leaving)) if found}
 
 
 def _inputs(result: TrainResult, shown: States) -> list[Column]:

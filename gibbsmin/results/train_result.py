@@ -20,6 +20,7 @@ from gibbsmin.results.result import FeedAmounts, Result
 from gibbsmin.results.stage_flue_gas import before, leaving
 from gibbsmin.results.stream_sheet import Entry, StreamSheet, stream_sheet
 from gibbsmin.results.train_conversion import Conversion, conversions
+from gibbsmin.results.train_recovery import recoveries
 from gibbsmin.results.train_spreadsheet import train_spreadsheets
 from gibbsmin.solver.status import UNSETTLED
 from gibbsmin.states.batch import Batch
@@ -113,6 +114,11 @@ class TrainResult:
     def conversions(self) -> dict[str, Conversion]:
         """How much of what is fed reacts, by substance."""
         return conversions(self.solved, self.recycled)
+
+    @cached_property
+    def recoveries(self) -> dict[str, dict[str, Floats]]:
+        """Part of each element that is fed, by the product that carries it away."""
+        return recoveries(self.solved)
 
     @cached_property
     def accounts(self) -> dict[str, StepAccount]:
@@ -232,9 +238,9 @@ class TrainResult:
         -------
         dict
             Safe for JSON. Each state has ``streams``, ``stages`` (as the states of a case of one mixture) and
-            ``steps`` (heat, work, what is lost), and ``train`` (the whole, with the conversions and the residual of
-            the recycles). A stream holds each substance with its frozen part. ``certificate`` is the worst of those of
-            the stages.
+            ``steps`` (heat, work, what is lost), and ``train`` (the whole, with the conversions, where the elements
+            leave, and the residual of the recycles). A stream holds each substance with its frozen part.
+            ``certificate`` is the worst of those of the stages.
         """
         stages = {name: result.to_dict()["states"] for name, result in self.stages.items()}
         legend = {name: result.legend() for name, result in self.stages.items() if result.key_figures}
@@ -262,6 +268,10 @@ class TrainResult:
                 "recycle_residual": 0.0 if loop is None else plain(loop.residual[i]),
                 "recycle_rounds": 0 if loop is None else loop.rounds,
                 "conversion": {name: _conversion(one, i) for name, one in self.conversions.items()},
+                "recovery": {
+                    symbol: {name: plain(values[i]) for name, values in parts.items()}
+                    for symbol, parts in self.recoveries.items()
+                },
             },
             "certificate": {
                 **{key: plain(values[i]) for key, values in self.proof.items()},

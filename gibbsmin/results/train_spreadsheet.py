@@ -67,6 +67,9 @@ def _states(result: TrainResult) -> str:
             add(f"train.{name}.conversion_per_pass", "1", one.per_pass)
         for step, values in one.steps.items():
             add(f"{step}.{name}.conversion", "1", values)
+    for symbol, parts in result.recoveries.items():
+        for product, values in parts.items():
+            add(f"{product}.{symbol}.recovery", "1", values)
     for name, stage in result.stages.items():
         for group, figures in stage.key_figures.items():
             for figure in figures:

@@ -38,11 +38,16 @@ take = {{ purge = {{ percent = {purge} }} }}
 """
 
 
-def conversion(path: Path, text: str) -> dict[str, Any]:
+def whole(path: Path, text: str) -> dict[str, Any]:
     (path / "case.toml").write_text(text)
     result = read_case(path / "case.toml").run()
     assert result.certified.all()
-    found: dict[str, Any] = result.to_dict()["states"][0]["train"]["conversion"]
+    found: dict[str, Any] = result.to_dict()["states"][0]["train"]
+    return found
+
+
+def conversion(path: Path, text: str) -> dict[str, Any]:
+    found: dict[str, Any] = whole(path, text)["conversion"]
     return found
 
 
@@ -54,6 +59,18 @@ def test_converter_with_recycle_and_purge(tmp_path: Path, X: float, purge: float
     assert found["overall"] == pytest.approx(X / (X + purge - X * purge), rel=1e-8)
     assert found["per_pass"] == pytest.approx(X, rel=1e-8)
     assert found["steps"] == {"converter": pytest.approx(X, rel=1e-8)}
+
+
+@pytest.mark.parametrize(("X", "purge"), [(0.3, 0.05), (0.9, 0.5)])
+def test_where_the_elements_leave(tmp_path: Path, X: float, purge: float) -> None:
+    # The carbon that reacts leaves as CO2 by the side stream, the rest as CO by the purge. 45 mol CO react with 45 of
+    # the 50 mol water, so that of the hydrogen 0.9 times as much leaves with it.
+    found = whole(tmp_path, LOOP.format(left=100.0 * (1.0 - X), purge=100.0 * purge))["recovery"]
+    overall = X / (X + purge - X * purge)
+    assert set(found) == {"C", "H"}
+    assert found["C"] == pytest.approx({"separator.product": overall, "splitter.purge": 1.0 - overall}, rel=1e-8)
+    assert found["H"]["separator.product"] == pytest.approx(0.9 * overall, rel=1e-8)
+    assert sum(found["H"].values()) == pytest.approx(1.0, rel=1e-9)
 
 
 def test_what_condenses_is_not_converted_and_what_passes_is_not_told(tmp_path: Path) -> None:
