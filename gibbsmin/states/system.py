@@ -261,14 +261,19 @@ class System:
             amount = quantity(value, "mol", f"the amount of {name}")
             if amount < 0.0:
                 raise FeedError(f"the amount of {name} is negative: {value}")
-            record = self.records[self.index[name]] if name in self.index else load().get(name)
-            column = self._column(record)
-            parts = [*record.elements, CHARGE] if record.charge else list(record.elements)
-            missing = [] if record.name in self.inert else [part for part in parts if part not in self.elements]
-            if amount > 0.0 and missing:
-                raise FeedError(f"the feed holds {name}, but no species of the system holds {' and '.join(missing)}")
-            total += amount * column
+            if name in self.index:
+                total += amount * self.element_matrix[:, self.index[name]]
+            else:
+                total += amount * self._column_of_other(load().get(name), name, amount > 0.0)
         return total
+
+    def _column_of_other(self, record: Species, name: str, is_fed: bool) -> Array:
+        """Column of a species that is fed, whether or not it may form; see `feed`."""
+        parts = [*record.elements, CHARGE] if record.charge else list(record.elements)
+        missing = [] if record.name in self.inert else [part for part in parts if part not in self.elements]
+        if is_fed and missing:
+            raise FeedError(f"the feed holds {name}, but no species of the system holds {' and '.join(missing)}")
+        return self._column(record)
 
     def __repr__(self) -> str:
         gases = int(self.gas.sum())

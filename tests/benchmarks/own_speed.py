@@ -7,11 +7,12 @@ The argument is ``numbers``, ``processors`` or ``arithmetic``. States are those 
 from __future__ import annotations
 
 import json
+import os
 import sys
 from collections.abc import Callable
 from concurrent.futures import ThreadPoolExecutor
-from statistics import median
 from time import perf_counter, process_time
+from typing import Any
 
 import numba
 import numpy as np
@@ -22,67 +23,77 @@ from gibbsmin.states.batch import Batch
 from gibbsmin.states.solve import equilibria
 
 NUMBERS = (1_000, 10_000, 100_000, 1_000_000)
-MOST = 2_000_000
-"""States solved of each number in all: a small number is solved the more often."""
+LEAST = 300_000
+"""States of each number that a round solves at least: a small number is solved the more often."""
 ROUNDS = 7
 
 
-def states(count: int) -> tuple[Callable[[slice], Batch], int]:
-    """Return a function that solves a part of so many unrelated states, and how many there are."""
-    problem = methane_in_air("TP")
-    times = -(-count // len(problem.feeds))
-    b = np.tile(problem.feeds @ problem.system.element_matrix.T, (times, 1))[:count]
-    T, P = (np.tile(problem.conditions[name], times)[:count] for name in ("temperature", "pressure"))
+def repeated(count: int) -> Callable[[slice], Batch]:
+    """Return a function that solves a part of so many states: the same thousand unrelated ones over and over."""
+    problem, few = methane_in_air("TP"), NUMBERS[0]
+    b = np.tile(problem.feeds[:few] @ problem.system.element_matrix.T, (count // few, 1))
+    T, P = (np.tile(problem.conditions[name][:few], count // few) for name in ("temperature", "pressure"))
 
     def solve(part: slice) -> Batch:
         return equilibria(problem.system, element_amounts=b[part], temperature=T[part], pressure=P[part])
 
-    return solve, count
+    return solve
 
 
-def numbers() -> dict[str, list[float]]:
-    """Seconds of the processor a state, of every call, by the number of states; what is repeated is the same 1000."""
-    problem = methane_in_air("TP")
-    few = NUMBERS[0]
-    first = problem.feeds[:few] @ problem.system.element_matrix.T
-    found: dict[str, list[float]] = {str(count): [] for count in NUMBERS}
+def numbers() -> dict[str, list[list[float]]]:
+    """Seconds a state in each round, by the number of states in a call: of the program, and of the system.
+
+    The system's share is what it takes to hand out memory, which differs between machines: one that is virtual may have
+    to get each page from its host.
+    """
+    found: dict[str, list[list[float]]] = {str(count): [] for count in NUMBERS}
+    solvers = {count: repeated(count) for count in NUMBERS}
     for _ in range(3):
-        for count in NUMBERS:
-            b = np.tile(first, (count // few, 1))
-            T, P = (np.tile(problem.conditions[name][:few], count // few) for name in ("temperature", "pressure"))
-            for _ in range(max(1, min(MOST // 3 // count, 100))):
-                start = process_time()
-                batch = equilibria(problem.system, element_amounts=b, temperature=T, pressure=P)
-                found[str(count)].append((process_time() - start) / count)
-                assert batch.certified.all()
-                del batch
+        for count, solve in solvers.items():
+            calls = -(-LEAST // count)
+            before = os.times()
+            for _ in range(calls):
+                solve(slice(count))
+            after = os.times()
+            used = [(after.user - before.user) / (calls * count), (after.system - before.system) / (calls * count)]
+            found[str(count)].append(used)
     return found
 
 
 def processors() -> dict[str, list[float]]:
-    """Seconds by the clock of 100,000 states, all by one thread and halves by two, in alternating rounds."""
-    solve, count = states(100_000)
+    """Seconds by the clock, all by one thread and halves by two, in alternating rounds; ``bare`` ones of `step`."""
+    count, steps = 100_000, 4_000_000
+    solve = repeated(count)
     halves = [slice(0, count // 2), slice(count // 2, count)]
-    found: dict[str, list[float]] = {"one": [], "two": []}
+    rooms = [bare_arrays(), bare_arrays()]
+    found: dict[str, list[float]] = {name: [] for name in ("one", "two", "bare one", "bare two")}
     with ThreadPoolExecutor(2) as pool:
-        list(pool.map(solve, halves))
+        works: dict[str, Callable[[], object]] = {
+            "one": lambda: solve(slice(count)),
+            "two": lambda: list(pool.map(solve, halves)),
+            "bare one": lambda: step(steps, False, *rooms[0]),
+            "bare two": lambda: list(pool.map(lambda room: step(steps // 2, False, *room), rooms)),
+        }
+        for work in works.values():
+            work()
         for _ in range(ROUNDS):
-            start = perf_counter()
-            solve(slice(count))
-            found["one"].append(perf_counter() - start)
-            start = perf_counter()
-            list(pool.map(solve, halves))
-            found["two"].append(perf_counter() - start)
+            for name, work in works.items():
+                start = perf_counter()
+                work()
+                found[name].append(perf_counter() - start)
     return found
 
 
-@numba.njit(fastmath={"reassoc", "contract", "nsz"}, error_model="numpy")
-def bare(steps: int, u: np.ndarray, n: np.ndarray, row: np.ndarray, nu: np.ndarray, H: np.ndarray, bits: np.ndarray) -> None:
-    """Do the least that a Newton step can be: an exponential a species, and one triangle of the matrix of eq. (6)."""
-    raw = bits.view(np.float64)
+@numba.njit(fastmath={"reassoc", "contract", "nsz"}, error_model="numpy", nogil=True)
+def step(steps: int, library: bool, u: Any, n: Any, row: Any, nu: Any, H: Any, raw: Any, bits: Any) -> None:
+    """Do the least that Newton steps can be: an exponential a species, and one triangle of the matrix of eq. (6)."""
     for _ in range(steps):
-        u[0] = -1.0 / (1.0 + H[0, 0])  # each step waits for the one before
-        exponentials(u.size, u, n, raw, bits)
+        u[0] = -1.0 / (1.0 + abs(H[0, 0]))  # each step waits for the one before
+        if library:
+            for j in range(u.size):
+                n[j] = np.exp(u[j])
+        else:
+            exponentials(u.size, u, n, raw, bits)
         for p in range(nu.shape[0]):
             for j in range(u.size):
                 row[j] = nu[p, j] * n[j]
@@ -93,29 +104,35 @@ def bare(steps: int, u: np.ndarray, n: np.ndarray, row: np.ndarray, nu: np.ndarr
                 H[p, q] = total
 
 
-def arithmetic() -> dict[str, list[float] | float]:
-    """Seconds of a bare step and of a state, in alternating rounds, and Newton steps a state.
+def bare_arrays() -> tuple[np.ndarray, ...]:
+    """Arrays for `step`. Argon is not in the feed, which leaves 52 species and 4 elements."""
+    S, E, rng = 52, 4, np.random.default_rng(3)
+    nu, raw = rng.integers(-2, 4, (E, S)).astype(float), np.zeros(S)
+    return rng.uniform(-30.0, 0.0, S), np.zeros(S), np.zeros(S), nu, np.zeros((E, E)), raw, raw.view(np.int64)
 
-    Argon is not in the feed, which leaves 52 species and 4 elements.
+
+def arithmetic() -> dict[str, list[float] | float]:
+    """Seconds of a state and of bare steps, in alternating rounds, and Newton steps a state.
+
+    ``bare`` takes gibbsmin's own exponential, ``library`` that of the library of C.
     """
-    solve, count = states(2_000)
-    S, E, steps = 52, 4, 20_000
-    rng = np.random.default_rng(3)
-    u, nu = rng.uniform(-30.0, 0.0, S), rng.integers(-2, 4, (E, S)).astype(float)
-    arrays = (u, np.zeros(S), np.zeros(S), nu, np.zeros((E, E)), np.zeros(S, np.int64))
-    bare(1, *arrays)
+    count, steps, room = 2_000, 20_000, bare_arrays()
+    solve = repeated(count)
     taken = float(solve(slice(count)).steps.mean())
-    found: dict[str, list[float] | float] = {"steps": taken}
-    bare_times, own_times = [], []
+    works: dict[str, tuple[Callable[[], object], int]] = {
+        "own": (lambda: solve(slice(count)), count),
+        "bare": (lambda: step(steps, False, *room), steps),
+        "library": (lambda: step(steps, True, *room), steps),
+    }
+    found: dict[str, list[float]] = {name: [] for name in works}
+    for work, _ in works.values():
+        work()
     for _ in range(2 * ROUNDS):
-        start = process_time()
-        bare(steps, *arrays)
-        bare_times.append((process_time() - start) / steps)
-        start = process_time()
-        solve(slice(count))
-        own_times.append((process_time() - start) / count)
-    ratio = median(own / (taken * step) for own, step in zip(own_times, bare_times, strict=True))
-    return {**found, "bare": bare_times, "own": own_times, "ratio": ratio}
+        for name, (work, times) in works.items():
+            start = process_time()
+            work()
+            found[name].append((process_time() - start) / times)
+    return {"steps": taken, **found}
 
 
 if __name__ == "__main__":
