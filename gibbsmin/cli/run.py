@@ -50,7 +50,7 @@ def run(
     ] = "",
     figures: Annotated[
         bool | None,
-        typer.Option("--figures/--no-figures", help="Draw figures into DIR/figures. Default: of sweeps."),
+        typer.Option("--figures/--no-figures", help="Draw figures into DIR/figures. Default: of sweeps and trains."),
     ] = None,
     also: Annotated[
         list[Also] | None, typer.Option("--also", help="Write the spreadsheets as this too; may be given twice.")
@@ -81,7 +81,8 @@ def run(
             data, good = _solve_large(study, folder, show, workers, resume, cluster, also or ())
         else:
             data, good = _solve(study, folder, show, also or ())
-        if figures or (figures is None and (folder / "result.nc").is_file()):
+        is_sweep_or_train = any((folder / name).is_file() for name in ("result.nc", "streams.csv"))
+        if figures or (figures is None and is_sweep_or_train):
             draw_figures(folder, show)
         documents.append(data)
         certified = certified and good

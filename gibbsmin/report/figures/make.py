@@ -13,6 +13,7 @@ from gibbsmin.report.figures.files import Made, write_figures
 from gibbsmin.report.figures.lines import composition, result_panels
 from gibbsmin.report.figures.maps import result_map
 from gibbsmin.report.figures.panels import slices
+from gibbsmin.report.figures.plan import train_plan
 from gibbsmin.report.figures.quantities import state_quantities
 from gibbsmin.report.figures.scatter import scatter
 from gibbsmin.report.figures.source import Source, read_source
@@ -56,6 +57,8 @@ def draw(source: Source) -> Iterator[Drawn]:
         What answers the case first.
     """
     colours = Colours()
+    if source.is_train:
+        yield from train_plan(source)
     if source.state is not None:
         yield from stream_bars(source, source.state, colours) if source.is_train else state_bars(source, source.state)
     elif source.kind not in ("grid", "in step"):
