@@ -135,7 +135,7 @@ def train_folder(folder: Path, points: int) -> xarray.Dataset | None:
     folder.mkdir(parents=True, exist_ok=True)
     case = {
         "feeds": {"feed": {"flow": "1 kmol/h", "temperature": "25 degC"}},
-        "stage": [{"name": "heater", "held": {}}],
+        "stage": [{"name": "heater", "inlets": ["feed"], "held": {}}],
     }
     head = {
         "schema": 1,

@@ -34,7 +34,7 @@ def test_run_prints_the_streams_and_writes_the_files(here: Path) -> None:
     assert "certificate " in out
     assert max(map(len, out.splitlines())) <= 80
     assert sorted(p.name for p in Path("results/case").iterdir()) == [
-        "result.json", "steps.csv", "streams.csv", "table.csv",
+        "figures", "result.json", "steps.csv", "streams.csv", "table.csv",
     ]  # fmt: skip
 
 

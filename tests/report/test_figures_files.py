@@ -47,7 +47,7 @@ def test_single_state_without_certificate_is_not_drawn(tmp_path: Path) -> None:
 
 def test_streams_of_a_train(tmp_path: Path) -> None:
     train_folder(tmp_path, 1)
-    (made,) = figures(tmp_path)
+    _, made = figures(tmp_path)
     assert made.name == "streams"
     with (tmp_path / "figures" / "streams.csv").open(newline="", encoding="utf-8") as file:
         rows = list(csv.DictReader(file))

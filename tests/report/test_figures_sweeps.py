@@ -246,12 +246,12 @@ def test_train(tmp_path: Path) -> None:
     data: Any = train_folder(tmp_path, 9)
     made = figures(tmp_path)
     whole(tmp_path, made)
-    assert [one.name for one in made] == ["composition_hot_side", "temperatures", "energy"]
+    assert [one.name for one in made] == ["steps", "composition_hot_side", "temperatures", "energy"]
     found = table(tmp_path, "composition_hot_side")
     assert list(found["hot.side: H2O(l) [mol/s]"]) == list(
         data["amount"].sel(stream="hot.side", species="H2O(l)").values
     )
-    assert "side taken at heater from 1 to 2 %" in made[0].alternative
+    assert "side taken at heater from 1 to 2 %" in made[1].alternative
 
 
 def test_species_keep_their_colours(tmp_path: Path) -> None:

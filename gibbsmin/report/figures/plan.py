@@ -72,7 +72,7 @@ def train_plan(source: Source) -> Iterator[Drawn]:
         title,
         f"The steps of the train in the order in which they are solved: {listed([stage['name'] for stage in stages])}.",
         figure,
-        {head: list(cells) for head, cells in zip(("stream", "to", "recycled"), zip(*ways, strict=True), strict=True)},
+        {head: [way[k] for way in ways] for k, head in enumerate(("stream", "to", "recycled"))},
         ("Of varied inputs the values of the case itself are shown.",) if source.inputs else (),
     )
 
