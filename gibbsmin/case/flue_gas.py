@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
@@ -22,7 +22,9 @@ from gibbsmin.studies.flue_gas import air_for_oxygen, returned_gas
 from gibbsmin.studies.sweep import solve_in_chunks
 
 if TYPE_CHECKING:
+    from gibbsmin.case.recipe import Recipe
     from gibbsmin.case.study import Study
+    from gibbsmin.case.train_study import TrainStudy
 
 Floats = NDArray[np.float64]
 
@@ -96,28 +98,57 @@ def closed_feeds(study: Study) -> FeedStates:
 
     def oxygen(ratio: Floats) -> Floats:
         assert air is not None, "asked for where there is air to find"
-        batch = settle(study.elements_of(closed({air.name: ratio})))
-        gas = np.where(study.system.gas, batch.amounts, 0.0)
-        at = {name: k for k, name in enumerate(study.system.species)}
-        dry = gas.sum(axis=1) - (gas[:, at["H2O"]] if "H2O" in at else 0.0)
-        return np.asarray(gas[:, at["O2"]] / dry)
+        return dry_oxygen(settle(study.elements_of(closed({air.name: ratio}))))
 
     try:
         if air is None:
             return closed({})
-        wanted = _wanted(study, air.name)
-        assert wanted is not None, "that is how the air was found"
         if "O2" not in study.system.species:
             raise InputError("O2 is not among the species that may form")
-        dry = air.gas - air.of_composition(H=2.0, O=1.0)
-        oxidant = air.of_composition(O=2.0) / dry if dry > 0.0 else 0.0
-        first = np.full(study.states, 1.0) + 0.95 * wanted / np.maximum(oxidant - wanted, 1e-3)
-        return closed({air.name: air_for_oxygen(wanted, oxidant, first, oxygen)})
+        return closed({air.name: air_ratio(study, air, oxygen)})
     except RuleError:
         raise
     except InputError as error:
         name, key = (back.name, "composition") if air is None and back else (air.name if air else "", "")
         raise RuleError(str(error), "feeds", name, key or "flue_gas_oxygen_percent") from None
+
+
+def dry_oxygen(batch: Batch) -> Floats:
+    """O2 of the dry gas of settled states, (states,), mole fraction."""
+    gas = {name: np.zeros(len(batch)) for name in ("H2O", "O2", "")}
+    for k, record in enumerate(batch.system.records):
+        if not record.condensed:
+            gas[record.substance if record.substance in gas else ""] += batch.amounts[:, k]
+    return np.asarray(gas["O2"] / (gas["O2"] + gas[""]))
+
+
+def air_ratio(study: Study | TrainStudy, air: Recipe, oxygen: Callable[[Floats], Floats]) -> Floats:
+    """Find the air ratio that gives a flue gas the oxygen that the table of the air asks for.
+
+    Parameters
+    ----------
+    study : Study or TrainStudy
+    air : Recipe
+        The air.
+    oxygen : callable
+        From air ratios (states,) to O2 of the dry flue gas (states,).
+
+    Returns
+    -------
+    array (states,)
+        Air ratio, [-].
+
+    Raises
+    ------
+    InputError
+        No air gives so much oxygen.
+    """
+    wanted = _wanted(study, air.name)
+    assert wanted is not None, "that is how the air was found"
+    dry = air.gas - air.of_composition(H=2.0, O=1.0)
+    oxidant = air.of_composition(O=2.0) / dry if dry > 0.0 else 0.0
+    first = np.full(study.states, 1.0) + 0.95 * wanted / np.maximum(oxidant - wanted, 1e-3)
+    return air_for_oxygen(wanted, oxidant, first, oxygen)
 
 
 def setting(
@@ -165,7 +196,7 @@ def recirculated(case: Case, feeds: FeedStates) -> Floats | float:
     return 0.0 if back is None else _read_share(back, feeds)
 
 
-def _wanted(study: Study, name: str) -> Floats | None:
+def _wanted(study: Study | TrainStudy, name: str) -> Floats | None:
     """O2 that the flue gas is to hold by the air of this name, (states,), mole fraction."""
     percent = study.case.feeds[name].flue_gas_oxygen_percent
     if percent is None:

@@ -48,12 +48,16 @@ class TrainCase(CaseFrame):
                         message = f"{name!r} will not do as the name of a {kind}; use up to 40 letters, digits, _ and -"
                         raise RuleError(message, "stage", k, key)
         for name, feed in self.feeds.items():
-            if feed.composition == "flue gas" or feed.flue_gas_oxygen_percent is not None:
-                raise RuleError(
-                    "in a train flue gas goes back as a recycled stream, and its oxygen follows from the air ratio;"
-                    " give the feed another composition or size",
-                    *("feeds", name),
-                )
+            if feed.composition == "flue gas":
+                text = "in a train flue gas goes back as a recycled stream; give the feed another composition"
+                raise RuleError(text, "feeds", name)
+        airs = [name for name, feed in self.feeds.items() if feed.flue_gas_oxygen_percent is not None]
+        if len(airs) > 1:
+            text = f"{airs[0]} is sized by the oxygen of the flue gas already; one feed can be"
+            raise RuleError(text, "feeds", airs[1], "flue_gas_oxygen_percent")
+        if airs and sum(stage.flue_gas is not None for stage in self.stage) != 1:
+            text = "say which step has the flue gas that is meant: give exactly one of them a table flue_gas"
+            raise RuleError(text, "feeds", airs[0], "flue_gas_oxygen_percent")
         try:
             ordered(nodes(self), self.feeds)
         except GraphError as error:

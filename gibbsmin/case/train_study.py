@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
+from functools import cached_property
 from pathlib import Path
 from typing import Any
 
@@ -12,7 +13,7 @@ from numpy.typing import NDArray
 
 from gibbsmin.case.feed_states import FeedStates
 from gibbsmin.case.fields import RuleError, in_si
-from gibbsmin.case.flue_gas import setting
+from gibbsmin.case.flue_gas import air_ratio, dry_oxygen, setting
 from gibbsmin.case.recipe import Find, Recipe
 from gibbsmin.case.rules import UNCONVERTED, Rules, read_rules
 from gibbsmin.case.selection import choose_system, finder
@@ -67,12 +68,15 @@ class TrainStudy(StudyFrame):
         Its rules.
     substances : Substances
         The species of all streams.
+    ratios : dict of str to array (states,)
+        Air ratios that were found for feeds that the oxygen of a flue gas sizes.
     """
 
     case: TrainCase
     systems: Mapping[str, System]
     rules: Mapping[str, Rules]
     substances: Substances
+    ratios: Mapping[str, Floats] = field(default_factory=dict)
 
     @classmethod
     def of(cls, case: TrainCase, own: Sequence[Species] = (), path: str = "", sha256: str = "") -> TrainStudy:
@@ -123,6 +127,30 @@ class TrainStudy(StudyFrame):
     def order(self) -> list[str]:
         """Names of the stages in the order in which they are solved."""
         return ordered(nodes(self.case), self.case.feeds)
+
+    @cached_property
+    def feed_states(self) -> FeedStates:
+        """The feeds in every state."""
+        return replace(super().feed_states, ratios=self.ratios)
+
+    def sized(self) -> TrainStudy:
+        """Find the air that gives a flue gas its oxygen; the study itself where there is none to find."""
+        airs = [one for one in self.recipes if self.case.feeds[one.name].flue_gas_oxygen_percent is not None]
+        if not airs:
+            return self
+        (air,), (stage,) = airs, [one.name for one in self.case.stage if one.flue_gas is not None]
+        find = finder(self._own())
+
+        def oxygen(ratio: Floats) -> Floats:
+            tried = replace(self, ratios={air.name: ratio})
+            batch = solve_train(tried.steps(find), tried.feed_streams()).steps[stage].changed.batch
+            assert batch is not None, "a step with a flue gas settles"
+            return dry_oxygen(batch)
+
+        try:
+            return replace(self, ratios={air.name: air_ratio(self, air, oxygen)})
+        except InputError as error:
+            raise RuleError(str(error), "feeds", air.name, "flue_gas_oxygen_percent") from None
 
     def steps(self, find: Find) -> list[Step]:
         """Make the steps of the train, in the order of the file."""
@@ -175,7 +203,8 @@ class TrainStudy(StudyFrame):
             check_place(Path(out))
             check_exports(also, self.states)
         try:
-            solved = solve_train(self.steps(finder(self._own())), self.feed_streams())
+            study = self.sized()
+            solved = solve_train(study.steps(finder(self._own())), study.feed_streams())
         except RuleError as error:
             raise CaseError(error.message, self.path, dotted(error.key)) from None
         except InputError as error:
@@ -201,7 +230,7 @@ class TrainStudy(StudyFrame):
             },
             surroundings_temperature=in_si(self.case.surroundings.temperature, "K"),
             heating_values={one.name: one.heating_value for one in self.recipes},
-            units=self.units,
+            units=study.units,
         )
         known = result.figures if self.case.show.columns else {}
         for name in self.case.show.columns:

@@ -80,6 +80,24 @@ def test_a_train_reports_the_flue_gas_of_one_mixture(recycle: bool, tmp_path: Pa
         assert value == pytest.approx(figures[name], rel=1e-7), name
 
 
+@pytest.mark.parametrize("recycle", ['recycled = ["cooler.back"]\n', ""])
+def test_air_for_the_oxygen_of_the_flue_gas(recycle: str, tmp_path: Path) -> None:
+    swept = (
+        TRAIN.replace("air_ratio = 1.1", "flue_gas_oxygen_percent = 3.0").replace(
+            "take = { back = { percent = 40.0 } }", "take = { back = { percent = 40.0 } }" if recycle else ""
+        )
+        + '[[sweep]]\nvary = "feeds.air.flue_gas_oxygen_percent"\nvalues = [1.0, 3.0, 6.0]\n'
+    ).replace('recycled = ["cooler.back"]\n', recycle)
+    figures = read(swept, tmp_path).run().figures
+    assert figures["boiler.flue gas.oxygen_dry"].value == pytest.approx([0.01, 0.03, 0.06], rel=1e-8)
+    one = ONE.replace("air_ratio = 1.1", "flue_gas_oxygen_percent = 3.0").replace(
+        "recirculated_percent = 40.0", f"recirculated_percent = {40.0 if recycle else 0.0}"
+    )
+    alone = {f.name: f.value for f in read(one, tmp_path).run().key_figures["flue gas"]}
+    ratio = figures["boiler.flue gas.air_ratio_fed"].value
+    assert ratio[1] == pytest.approx(alone["air_ratio_fed"][0], rel=1e-8)
+
+
 def test_the_stack_temperature_is_varied_by_its_dotted_name(tmp_path: Path) -> None:
     swept = TRAIN + '[[sweep]]\nvary = "stages.boiler.flue_gas.stack_temperature"\nvalues = ["120 degC", "180 degC"]\n'
     result = read(swept, tmp_path).run()
@@ -98,3 +116,11 @@ def test_the_stack_temperature_is_varied_by_its_dotted_name(tmp_path: Path) -> N
 def test_what_makes_no_sense_is_refused(old: str, new: str, told: str, tmp_path: Path) -> None:
     with pytest.raises(CaseError, match=told):
         read(TRAIN.replace(old, new), tmp_path)
+
+
+def test_air_by_oxygen_needs_one_flue_gas_and_one_that_can_be(tmp_path: Path) -> None:
+    sized = TRAIN.replace("air_ratio = 1.1", "flue_gas_oxygen_percent = 3.0")
+    with pytest.raises(CaseError, match="which step has the flue gas"):
+        read(sized.replace(f"flue_gas = {{ {FLUE} }}\n", ""), tmp_path)
+    with pytest.raises(CaseError, match="can hold between 0 and"):
+        read(sized.replace("oxygen_percent = 3.0\nt", "oxygen_percent = 30.0\nt"), tmp_path).run()
